@@ -1,0 +1,278 @@
+"""Commands and role words give the joined phrases their meaning.
+
+"to 500 mL" after "make up" is a final volume, after "add ... to 500 mL of water" it is a dose;
+"pH 7.2" after "adjust" is an instruction, after "the pH is" a claim.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import replace
+
+from soplint.notation.build import Condition, Part, Role
+from soplint.notation.phrases import (
+    Claim,
+    Command,
+    Dose,
+    Equivalent,
+    Loose,
+    Material,
+    Mixture,
+    Phrase,
+    SetPH,
+    ToVolume,
+    Ware,
+)
+from soplint.quantities.model import Measure
+
+_ROLES = {
+    "IN": "in",
+    "WITH": "with",
+    "INTO": "into",
+    "TO": "to",
+    "UPTO": "to",
+    "FROM": "from",
+    "OF": "of",
+    "PER": "per",
+}
+_CLAIMING = ("GIVES", "FINALCONC")
+
+
+class Meaning:
+    """Walks the parts of one sentence once."""
+
+    def __init__(self, found: Sequence[Part]) -> None:
+        self.found = found
+        self.phrases: list[Phrase] = []
+        self.command: str | None = None
+        self.claiming: str | None = None
+        self.adjusting = False
+        self.ph_word = False
+        self.between: list[str] = []  # roles since the last phrase
+        self.reagents: list[Material] = []  # named with an adjustment before its pH
+
+    def read(self) -> list[Phrase]:
+        """The typed phrases of the sentence."""
+        index = 0
+        while index < len(self.found):
+            index += self._step(index)
+        return self.phrases
+
+    def _step(self, index: int) -> int:
+        part = self.found[index]
+        if isinstance(part, Role):
+            self._role(part)
+            return 1
+        used = 1
+        if isinstance(part, Command):
+            self._command(part)
+        elif isinstance(part, ToVolume):
+            used = self._to_volume(part, index)
+        elif isinstance(part, Dose):
+            self._dose(part)
+        elif isinstance(part, Material):
+            self._material(part, index)
+        elif isinstance(part, Condition):
+            self._condition(part)
+        elif isinstance(part, Ware):
+            self.phrases.append(replace(part, role=self._last_role()))
+        elif isinstance(part, Loose):
+            self._loose(part, index)
+        self.between = []
+        return used
+
+    def _last_role(self) -> str | None:
+        for kind in reversed(self.between):
+            if kind in _ROLES:
+                return _ROLES[kind]
+        return None
+
+    def _role(self, role: Role) -> None:
+        self.between.append(role.kind)
+        if role.kind in _CLAIMING:
+            self.claiming = role.kind
+        elif role.kind in ("EQUIVALENT", "EACHML"):
+            self.phrases.append(Command(role.start, role.end, role.kind))
+        elif role.kind == "PHWORD":
+            self.ph_word = True
+        elif role.kind == "THEN":
+            self.claiming = None
+            self.adjusting = False
+        elif role.kind == "OPTIONAL":
+            self.phrases.append(Command(role.start, role.end, "OPTIONAL"))
+
+    def _command(self, command: Command) -> None:
+        self.phrases.append(command)
+        self.command = command.kind
+        self.claiming = None
+        if command.kind == "ADJUST":
+            self.adjusting = True
+            self.reagents = []
+        elif command.kind not in ("MIX", "ADD", "VERIFY"):
+            self.adjusting = False
+
+    # --- volumes ---------------------------------------------------------------------------------
+
+    def _to_volume(self, part: ToVolume, index: int) -> int:
+        after = self.found[index + 1 : index + 3]
+        poured = (
+            len(after) == 2
+            and isinstance(after[0], Role)
+            and after[0].kind == "OF"
+            and isinstance(after[1], Material)
+            and not part.said_final
+        )
+        if poured and part.volume is not None and self.command not in ("MAKE_UP", "DILUTE"):
+            material = after[1]
+            assert isinstance(material, Material)
+            self.phrases.append(
+                Dose(part.start, material.end, part.volume, material, role="to", command=self.command)
+            )
+            return 3
+        diluent: Material | None = None
+        last = self.phrases[-1] if self.phrases else None
+        if isinstance(last, Material) and (last.is_water or self.command in ("MAKE_UP", "ADD")):
+            if not self.between or self.between == ["COMMA"]:
+                diluent = last
+                self.phrases.pop()
+        self.phrases.append(replace(part, command=self.command, diluent=diluent))
+        self.adjusting = False
+        return 1
+
+    # --- doses -----------------------------------------------------------------------------------
+
+    def _dose(self, dose: Dose) -> None:
+        dose = replace(dose, role=self._last_role(), command=self.command)
+        last = self.phrases[-1] if self.phrases else None
+        if isinstance(last, Dose) and self.between and self.between[-1] == "OR":
+            self.phrases[-1] = replace(last, alternatives=(*last.alternatives, dose), end=dose.end)
+            return
+        if isinstance(last, SetPH) and dose.role == "with":
+            reagents = last.reagents + ((dose.material,) if dose.material else ())
+            self.phrases[-1] = replace(last, doses=(*last.doses, dose), reagents=reagents)
+            return
+        self.phrases.append(dose)
+        self._equivalent()
+
+    def _equivalent(self) -> None:
+        """Join "each mL of TITRANT is equivalent to MASS of ANALYTE" into one phrase."""
+        phrases = self.phrases
+        if len(phrases) < 3:
+            return
+        mass, middle, left = phrases[-1], phrases[-2], phrases[-3]
+        if not (isinstance(mass, Dose) and isinstance(middle, Command)):
+            return
+        if middle.kind != "EQUIVALENT" or mass.amount.dimension not in ("mass", "amount"):
+            return
+        titrant = left.material if isinstance(left, Dose) else left
+        if not isinstance(titrant, Material):
+            return
+        volume = left.amount if isinstance(left, Dose) else None
+        first = len(phrases) - 3
+        if first and isinstance(phrases[first - 1], Command):
+            before = phrases[first - 1]
+            if isinstance(before, Command) and before.kind == "EACHML":
+                first -= 1
+        start = phrases[first].start
+        phrases[first:] = [Equivalent(start, mass.end, titrant, volume, mass)]
+
+    # --- materials -------------------------------------------------------------------------------
+
+    def _material(self, material: Material, index: int) -> None:
+        role = self._last_role()
+        material = replace(material, role=role)
+        last = self.phrases[-1] if self.phrases else None
+        if material.ph is not None and self._sets_ph(material, role):
+            self._set_ph(material)
+        elif not material.words:
+            self._nameless(material, role)
+        elif self.claiming and (material.strengths or material.finals):
+            for strength in material.strengths or material.finals:
+                self._claim(material, strength)
+        elif isinstance(last, SetPH) and (
+            role == "with" or (last.reagents and self.between and self.between[-1] in ("OR", "AND"))
+        ):
+            self.phrases[-1] = replace(last, reagents=(*last.reagents, material))
+        elif self.adjusting and role == "with":
+            self.reagents.append(material)
+        elif self.adjusting and self.reagents and self.between[-1:] == ["OR"]:
+            self.reagents.append(material)
+        elif isinstance(last, ToVolume) and last.diluent is None and role in ("with", "of"):
+            self.phrases[-1] = replace(last, diluent=material)
+        elif isinstance(last, ToVolume) and self.between == ["COMMA"] and material.is_water:
+            self.phrases[-1] = replace(last, diluent=material)
+        else:
+            self.phrases.append(material)
+
+    def _sets_ph(self, material: Material, role: str | None) -> bool:
+        """Whether the pH of this material is an instruction."""
+        if material.words and not self.adjusting:
+            return False
+        if self.adjusting:
+            return not material.words or material.ph is not None and material.start == material.ph.start
+        return role == "to" and self.ph_word and not material.words and self.claiming is None
+
+    def _set_ph(self, material: Material) -> None:
+        assert material.ph is not None
+        reagents = tuple(self.reagents)
+        if material.words:
+            reagents += (replace(material, ph=None),)
+        self.phrases.append(
+            SetPH(material.start, material.end, material.ph, material.temperature, reagents)
+        )
+        self.reagents = []
+
+    def _nameless(self, material: Material, role: str | None) -> None:
+        if material.ph is not None and not material.strengths:
+            said = self.ph_word or "IS" in self.between or "GIVES" in self.between
+            if said or self.command in ("VERIFY", "CALIBRATE"):
+                self.phrases.append(Claim(material.start, material.end, material.ph, kind="pH"))
+                return
+        if self.claiming or (self.command == "DILUTE" and role == "to"):
+            for strength in material.strengths:
+                self._claim(None, strength)
+            return
+        self.phrases.append(material)
+
+    def _claim(self, material: Material | None, strength: Measure) -> None:
+        start = min(strength.start, material.start) if material else strength.start
+        end = max(strength.end, material.end) if material else strength.end
+        kind = "fold" if strength.dimension == "fold" else "strength"
+        self.phrases.append(Claim(start, end, strength, material, kind))
+
+    # --- loose quantities ----------------------------------------------------------------------------
+
+    def _condition(self, part: Condition) -> None:
+        last = self.phrases[-1] if self.phrases else None
+        if isinstance(last, SetPH) and last.temperature is None:
+            self.phrases[-1] = replace(last, temperature=part.loose.measure)
+        else:
+            self.phrases.append(part.loose)
+
+    def _loose(self, part: Loose, index: int) -> None:
+        last = self.phrases[-1] if self.phrases else None
+        if part.measure.dimension == "ratio":
+            materials = self._trailing_materials()
+            if len(materials) == len(part.measure.parts) or len(materials) >= 2:
+                start = materials[0].start
+                del self.phrases[len(self.phrases) - len(materials) :]
+                self.phrases.append(Mixture(start, part.end, part.measure, tuple(materials)))
+                return
+        if part.measure.dimension == "temperature" and isinstance(last, SetPH):
+            if last.temperature is None:
+                self.phrases[-1] = replace(last, temperature=part.measure)
+                return
+        self.phrases.append(part)
+
+    def _trailing_materials(self) -> list[Material]:
+        found: list[Material] = []
+        for phrase in reversed(self.phrases):
+            if not isinstance(phrase, Material) or not phrase.words:
+                break
+            found.append(phrase)
+        return found[::-1]
+
+
+def meaning(found: Sequence[Part]) -> list[Phrase]:
+    """The typed phrases of a sentence whose parts have been joined."""
+    return Meaning(found).read()

@@ -1,0 +1,171 @@
+"""From the parse tree to materials and doses: the phrases that need no neighbour."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass, field
+
+from lark import Token, Tree
+
+from soplint.notation.phrases import Dose, Material
+from soplint.notation.terminals import Terminal
+from soplint.quantities.model import Measure
+from soplint.substances.model import Match
+
+Node = Tree[Token] | Token
+
+
+@dataclass(slots=True)
+class Remarks:
+    """What a bracket says about the thing before it."""
+
+    strengths: list[Measure] = field(default_factory=list)
+    finals: list[Measure] = field(default_factory=list)
+    amounts: list[Measure] = field(default_factory=list)
+    ph: Measure | None = None
+    temperature: Measure | None = None
+    molar_mass: Measure | None = None
+    density: Measure | None = None
+    names: list[Match] = field(default_factory=list)
+
+
+class Reader:
+    """Reads nodes of one sentence; holds its characters and terminals."""
+
+    def __init__(self, chars: str, terminals: Sequence[Terminal]) -> None:
+        self.chars = chars
+        self.terminals = terminals
+
+    def terminal(self, token: Token) -> Terminal:
+        """The terminal that a token counts."""
+        return self.terminals[token.start_pos or 0]
+
+    def tokens(self, node: Node) -> Iterator[Terminal]:
+        """All terminals below a node, left to right."""
+        stack: list[Node] = [node]
+        while stack:
+            top = stack.pop()
+            if isinstance(top, Token):
+                yield self.terminal(top)
+            else:
+                stack.extend(reversed(top.children))
+
+    def bounds(self, node: Node) -> tuple[int, int]:
+        """First and last offset of a node."""
+        found = list(self.tokens(node))
+        return found[0].start, found[-1].end
+
+    # --- materials -----------------------------------------------------------------------------
+
+    def material(self, tree: Tree[Token]) -> Material:
+        """A material with its strengths and the remarks in its brackets."""
+        words, match, solution = "", None, False
+        before: list[Measure] = []
+        remarks = Remarks()
+        for child in tree.children:
+            assert isinstance(child, Tree)
+            if child.data == "head":
+                words, match, solution = self._head(child)
+            elif child.data == "strengths":
+                before = [m for m in (t.measure for t in self.tokens(child)) if m is not None]
+            else:
+                self._tail(child, before, remarks)
+        start, end = self.bounds(tree)
+        ph = next((m for m in before if m.dimension == "pH"), None) or remarks.ph
+        return Material(
+            start,
+            end,
+            words,
+            match,
+            solution,
+            strengths=tuple(m for m in before if m.dimension != "pH"),
+            ph=ph,
+            temperature=remarks.temperature,
+            bracket=tuple(remarks.strengths + remarks.amounts),
+            finals=tuple(remarks.finals),
+            molar_mass=remarks.molar_mass,
+            density=remarks.density,
+        )
+
+    def _head(self, tree: Tree[Token]) -> tuple[str, Match | None, bool]:
+        found = list(self.tokens(tree))
+        matches = [t.match for t in found if t.match is not None]
+        solution = any(t.kind == "SOLUTION" for t in found)
+        words = self.chars[found[0].start : found[-1].end]
+        distinct = {m.substances[0].family for m in matches if m.substances}
+        return words, (matches[0] if len(distinct) == 1 else None), solution
+
+    def _tail(self, tree: Tree[Token], before: list[Measure], remarks: Remarks) -> None:
+        for child in tree.children:
+            if isinstance(child, Tree) and child.data == "bracket":
+                self.remarks(child, remarks)
+            else:
+                for terminal in self.tokens(child):
+                    if terminal.kind == "MOLARMASS":
+                        remarks.molar_mass = terminal.measure
+                    elif terminal.kind == "DENSITY":
+                        remarks.density = terminal.measure
+                    elif terminal.measure is not None:
+                        before.append(terminal.measure)
+
+    def remarks(self, bracket: Tree[Token], into: Remarks) -> Remarks:
+        """What the bracket says, added to ``into``."""
+        found = list(self.tokens(bracket))
+        final = any(t.kind in ("FINAL", "FINALCONC") for t in found)
+        solvent = False
+        for terminal in found:
+            measure = terminal.measure
+            if terminal.kind == "IN":
+                solvent = True  # "(10 g/L in ethanol 96 % v/v)": what follows is the solvent's
+            elif terminal.match is not None and not solvent:
+                into.names.append(terminal.match)
+            if measure is None or solvent:
+                continue
+            if terminal.kind in ("STRENGTH", "PERCENT", "FOLD"):
+                (into.finals if final else into.strengths).append(measure)
+            elif terminal.kind == "PH":
+                into.ph = into.ph or measure
+            elif terminal.kind == "MOLARMASS":
+                into.molar_mass = into.molar_mass or measure
+            elif terminal.kind == "DENSITY":
+                into.density = into.density or measure
+            elif terminal.kind == "TEMPERATURE":
+                into.temperature = into.temperature or measure
+            elif terminal.kind in ("MASS", "VOLUME", "AMOUNT", "RATIO"):
+                into.amounts.append(measure)
+        return into
+
+    # --- doses -----------------------------------------------------------------------------------
+
+    def dose(self, tree: Tree[Token]) -> Dose:
+        """An amount with its material, if one follows."""
+        amount: Measure | None = None
+        each = False
+        material: Material | None = None
+        remarks = Remarks()
+        for child in tree.children:
+            if not isinstance(child, Tree):
+                continue
+            if child.data == "material":
+                material = self.material(child)
+            elif child.data == "amount":
+                for part in child.children:
+                    if isinstance(part, Tree) and part.data == "quantity":
+                        amount = next(self.tokens(part)).measure
+                    elif isinstance(part, Tree) and part.data == "bracket":
+                        self.remarks(part, remarks)
+                    else:
+                        each = True
+        assert amount is not None
+        start, end = self.bounds(tree)
+        if material is None and (remarks.strengths or remarks.finals or remarks.molar_mass):
+            # "KBr 12 g (100 mM)": kept on a nameless material until the name is found
+            material = Material(
+                start,
+                end,
+                "",
+                bracket=tuple(remarks.strengths),
+                finals=tuple(remarks.finals),
+                molar_mass=remarks.molar_mass,
+            )
+        return Dose(start, end, amount, material, same=tuple(remarks.amounts), each=each)

@@ -1,0 +1,109 @@
+"""Settle terminals whose meaning depends on their neighbours.
+
+A volume beside a vessel is the size of ware ("1000 mL volumetric flask"), a bare number after
+"adjust the pH to" is a pH, "concentration of" before a strength says nothing of its own.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import replace
+
+from soplint.notation.terminals import Terminal
+
+# Words that may stand between a size and its vessel: "50 mL class A conical flask".
+_ADJECTIVES = {
+    *("volumetric", "conical", "class", "a", "as", "b", "glass", "plastic", "polyethylene", "pp"),
+    *("pe", "hdpe", "ldpe", "ptfe", "sterile", "clean", "dry", "graduated", "measuring", "amber"),
+    *("brown", "one-mark", "screw-cap", "screw-capped", "centrifuge", "erlenmeyer", "polypropylene"),
+    *("tall", "tall-form", "borosilicate", "wide-neck", "wide-mouth", "falcon", "stoppered", "capped"),
+    *("polystyrene", "quartz", "silica", "teflon", "pyrex", "duran", "schott", "griffin", "round"),
+    *("bottom", "flat", "bottomed", "round-bottom", "round-bottomed", "digestion", "kjeldahl"),
+    *("serum", "media", "culture", "storage", "sample", "autoclavable", "low-density", "eppendorf"),
+}
+_PH_LOWEST, _PH_HIGHEST = -1.0, 15.0
+_LINKS = {"COMMA", "AND", "OR", "SLASH", "SEMICOLON"}
+
+
+def refine(chars: str, found: list[Terminal]) -> list[Terminal]:
+    """The terminals with ware sizes and pH values recognised."""
+    kinds = {terminal.kind for terminal in found}
+    if "WARE" in kinds:
+        found = _ware(chars, found)
+    elif "VOLUME" in kinds and "ADD" in kinds:
+        found = _listed_pipettes(found)
+    if "NUMBER" in kinds and ("PHWORD" in kinds or "ADJUST" in kinds):
+        found = _ph_numbers(found)
+    return found
+
+
+def _ware(chars: str, found: list[Terminal]) -> list[Terminal]:
+    """Mark the volumes that are sizes of vessels."""
+    result = list(found)
+    for index, terminal in enumerate(found):
+        if terminal.kind != "WARE":
+            continue
+        before = index - 1
+        while before >= 0 and _is_adjective(chars, found[before]):
+            before -= 1
+        if before >= 0 and found[before].kind == "VOLUME":
+            result[before] = replace(found[before], kind="WARE")
+            before -= 1
+            while before >= 1 and found[before].kind in _LINKS and found[before - 1].kind == "VOLUME":
+                result[before - 1] = replace(found[before - 1], kind="WARE")
+                before -= 2
+        _sizes_after(chars, found, index, result)
+    return result
+
+
+def _sizes_after(
+    chars: str, found: Sequence[Terminal], index: int, result: list[Terminal]
+) -> None:
+    """"Measuring cylinders 50 mL, 100 mL and 1000 mL": sizes listed after the vessel."""
+    at = index + 1
+    while at < len(found) and (
+        found[at].kind in _LINKS or found[at].kind == "OF" or _is_adjective(chars, found[at])
+    ):
+        at += 1
+    while at < len(found) and found[at].kind == "VOLUME" and not _takes_material(found, at):
+        result[at] = replace(found[at], kind="WARE")
+        at += 1
+        while at < len(found) and found[at].kind in _LINKS:
+            at += 1
+
+
+def _takes_material(found: Sequence[Terminal], at: int) -> bool:
+    following = found[at + 1].kind if at + 1 < len(found) else ""
+    return following in {"OF", "NAME", "WATER", "SOLUTION", "STRENGTH", "PERCENT", "FOLD", "PH"}
+
+
+def _is_adjective(chars: str, terminal: Terminal) -> bool:
+    if terminal.kind != "OTHER" or terminal.measure is not None:
+        return False
+    words = chars[terminal.start : terminal.end].lower().replace(",", " ").split()
+    return all(word in _ADJECTIVES for word in words)
+
+
+def _listed_pipettes(found: list[Terminal]) -> list[Terminal]:
+    """"Pipette, 10 mL" in an equipment list names the device; "pipette 10 mL" is a command."""
+    if len(found) >= 3 and found[0].kind == "ADD" and found[1].kind == "COMMA":
+        return [replace(t, kind="WARE") if t.kind == "VOLUME" else t for t in found]
+    return found
+
+
+def _ph_numbers(found: list[Terminal]) -> list[Terminal]:
+    """Read bare numbers after "pH ... to / of / is" as pH values."""
+    result = list(found)
+    armed = False
+    for index, terminal in enumerate(found):
+        if terminal.kind in ("PHWORD", "ADJUST"):
+            armed = True
+        elif terminal.kind == "NUMBER" and armed and terminal.measure is not None:
+            measure = terminal.measure
+            previous = found[index - 1].kind if index else ""
+            if previous in ("TO", "IS", "AT", "PHWORD", "OF", "EQUALS", "UPTO", "COLON", "GIVES") and (
+                _PH_LOWEST <= measure.low and measure.high <= _PH_HIGHEST
+            ):
+                value = replace(measure, dimension="pH", unit="pH")
+                result[index] = replace(terminal, kind="PH", measure=value)
+    return result
