@@ -1,0 +1,70 @@
+"""Acids, activity, charge balance, titration curves, buffer recipes, heats and solubility.
+
+The kernel modules (`balance`, `batch`, `water`, `acids`) take floats and give floats.
+`solve`, `titration_curve`, `buffer_recipe` and `adjust` are the door: they resolve names
+and formulas to acid systems and strong ions. Amounts are mol/L or mol/kg of water,
+temperatures °C, volumes mL where a name says so. pH is the activity scale of the standards.
+
+Importing this package loads nothing; each public name loads its module on first use, and
+the scalar path never loads numpy or scipy.
+
+>>> from soplint.equilibria import solve
+>>> round(solve({"CH3COOH": 0.1, "CH3COONa": 0.1}).pH, 2)
+4.65
+"""
+
+from __future__ import annotations
+
+from importlib import import_module
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from soplint.equilibria.constants import acid_systems_of, pka, system_pkas
+    from soplint.equilibria.door import solve, solve_systems
+    from soplint.equilibria.errors import (
+        BadAmountError,
+        EquilibriumError,
+        NotConvergedError,
+        UnknownSubstanceError,
+        UnreachableError,
+    )
+    from soplint.equilibria.solution import Solution, Species
+    from soplint.equilibria.validity import Validity
+
+_WHERE = {
+    "solve": "door",
+    "solve_systems": "door",
+    "pka": "constants",
+    "system_pkas": "constants",
+    "acid_systems_of": "constants",
+    "Solution": "solution",
+    "Species": "solution",
+    "Validity": "validity",
+    "EquilibriumError": "errors",
+    "UnknownSubstanceError": "errors",
+    "BadAmountError": "errors",
+    "UnreachableError": "errors",
+    "NotConvergedError": "errors",
+}
+
+__all__ = [
+    "BadAmountError",
+    "EquilibriumError",
+    "NotConvergedError",
+    "Solution",
+    "Species",
+    "UnknownSubstanceError",
+    "UnreachableError",
+    "Validity",
+    "acid_systems_of",
+    "pka",
+    "solve",
+    "solve_systems",
+    "system_pkas",
+]
+
+
+def __getattr__(name: str) -> object:
+    if name not in _WHERE:
+        raise AttributeError(f"module {__name__!r} has no attribute {name!r}")
+    return getattr(import_module(f"{__name__}.{_WHERE[name]}"), name)
