@@ -28,8 +28,13 @@ class Measure:
     manner: str = "plain"  # plain, about, tolerance, range, at-most, at-least
     basis: str | None = None  # "w/v", "v/v", "w/w", "mol" ...
     parts: tuple[float, ...] = ()  # of a ratio, in order
-    alternatives: tuple[float, ...] = ()  # other values that the digits could mean ("1,250" read as 1250)
+    alternatives: tuple[
+        float, ...
+    ] = ()  # other values that the digits could mean ("1,250" read as 1250)
     flags: tuple[str, ...] = ()  # notation slips: "m1", "leading-dot", "uM-length" ...
+    offset: float = 0.0  # added after the factor: only °F and K have one
+    numeral: tuple[int, int] = (0, 0)  # where the digits stand, so that they alone can be replaced
+    places: int = 0  # decimals as written; below 0 where the digits say less ("2e7")
 
     @property
     def nominal(self) -> float:
@@ -39,4 +44,4 @@ class Measure:
     @property
     def base(self) -> float:
         """The stated value in the base unit of the dimension."""
-        return self.nominal * self.factor
+        return self.nominal * self.factor + self.offset

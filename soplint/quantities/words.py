@@ -1,0 +1,53 @@
+"""Number words: "two litres", "half a litre", "one and a half", "tenfold"."""
+
+from __future__ import annotations
+
+import re
+
+from soplint.quantities.numerals import Numeral
+
+_UNITS = {
+    "one": 1, "two": 2, "three": 3, "four": 4, "five": 5, "six": 6, "seven": 7, "eight": 8,
+    "nine": 9, "ten": 10, "eleven": 11, "twelve": 12, "fifteen": 15, "twenty": 20, "thirty": 30,
+    "forty": 40, "fifty": 50, "sixty": 60, "hundred": 100, "thousand": 1000,
+}  # fmt: skip
+_PARTS = {"half": 2, "third": 3, "quarter": 4, "fifth": 5, "eighth": 8, "tenth": 10}
+_ALL = "|".join((*_UNITS, *_PARTS))
+STARTS = re.compile(rf"(?<![\w-])(?:{_ALL})(?=[ -]|fold)", re.IGNORECASE)
+_READ = re.compile(
+    rf"(?P<whole>{'|'.join(_UNITS)})(?:[ -](?P<small>one|two|three|four|five|six|seven|eight|nine))?"
+    rf"(?:(?P<and> and a half)|[ -](?P<part>hal(?:f|ves)|thirds?|quarters?|fifths?|eighths?|tenths?)"
+    r"(?: of)?(?: an?)?)?"
+    rf"|(?P<alone>{'|'.join(_PARTS)})(?: of)?(?: an?)?",
+    re.IGNORECASE,
+)
+
+
+def read_word(chars: str, start: int) -> Numeral | None:
+    """Read the number word that begins at ``start``; whether it counts depends on its unit.
+
+    Example:
+        >>> read_word("one and a half litres", 0).value
+        1.5
+    """
+    found = _READ.match(chars, start)
+    if found is None:
+        return None
+    end = found.end()
+    alone = found.group("alone")
+    if alone is not None:
+        value = 1 / _PARTS[alone.lower()]
+        return Numeral(start, end, value, value * 0.1, 1, "word")
+    value = float(_UNITS[found.group("whole").lower()])
+    small, part = found.group("small"), found.group("part")
+    if small is not None:
+        if value < 20 or value > 90:
+            return Numeral(start, start + len(found.group("whole")), value, 0.5, 1, "word")
+        return Numeral(start, end, value + _UNITS[small.lower()], 0.5, 2, "word")
+    if part is not None:
+        key = "half" if part.lower() == "halves" else part.lower().rstrip("s")
+        value /= _PARTS[key]
+        return Numeral(start, end, value, value * 0.005, 2, "word")
+    if found.group("and") is not None:
+        return Numeral(start, end, value + 0.5, 0.05, 2, "word")
+    return Numeral(start, end, value, 0.5 if value < 13 else value * 0.05, 1, "word")
