@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
-
+TYPE_CHECKING = False  # known to type checkers; importing typing would cost as much as Python
 if TYPE_CHECKING:
     from collections.abc import Iterator
     from datetime import date

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 import os
 import sys
-from typing import TYPE_CHECKING
 
+TYPE_CHECKING = False  # known to type checkers; importing typing would cost as much as Python
 if TYPE_CHECKING:
     from collections.abc import Iterable
 

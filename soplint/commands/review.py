@@ -2,11 +2,10 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
-
 from soplint.commands.arguments import Arguments, Option, UsageError, read, review_date, usage_text
 from soplint.commands.exits import FAULT, HELD, NOT_HELD, NOT_REVIEWED
 
+TYPE_CHECKING = False  # known to type checkers; importing typing would cost as much as Python
 if TYPE_CHECKING:
     from collections.abc import Callable, Iterator
 
