@@ -28,7 +28,23 @@ if TYPE_CHECKING:
         UnknownSubstanceError,
         UnreachableError,
     )
+    from soplint.equilibria.inverse import (
+        Adjustment,
+        BufferRecipe,
+        adjust,
+        after_addition,
+        after_dilution,
+        at_temperature,
+        buffer_recipe,
+    )
     from soplint.equilibria.solution import Solution, Species
+    from soplint.equilibria.titration import (
+        Equivalence,
+        Indicator,
+        TitrationCurve,
+        indicator,
+        titration_curve,
+    )
     from soplint.equilibria.validity import Validity
 
 _WHERE = {
@@ -37,6 +53,18 @@ _WHERE = {
     "pka": "constants",
     "system_pkas": "constants",
     "acid_systems_of": "constants",
+    "Adjustment": "inverse",
+    "BufferRecipe": "inverse",
+    "adjust": "inverse",
+    "after_addition": "inverse",
+    "after_dilution": "inverse",
+    "at_temperature": "inverse",
+    "buffer_recipe": "inverse",
+    "Equivalence": "titration",
+    "Indicator": "titration",
+    "TitrationCurve": "titration",
+    "indicator": "titration",
+    "titration_curve": "titration",
     "Solution": "solution",
     "Species": "solution",
     "Validity": "validity",
@@ -48,19 +76,31 @@ _WHERE = {
 }
 
 __all__ = [
+    "Adjustment",
     "BadAmountError",
+    "BufferRecipe",
     "EquilibriumError",
+    "Equivalence",
+    "Indicator",
     "NotConvergedError",
     "Solution",
     "Species",
+    "TitrationCurve",
     "UnknownSubstanceError",
     "UnreachableError",
     "Validity",
     "acid_systems_of",
+    "adjust",
+    "after_addition",
+    "after_dilution",
+    "at_temperature",
+    "buffer_recipe",
+    "indicator",
     "pka",
     "solve",
     "solve_systems",
     "system_pkas",
+    "titration_curve",
 ]
 
 

@@ -69,26 +69,34 @@ class Root:
 def free_monomer(total: float, weights: Sequence[tuple[int, float]]) -> float:
     """Molality b of the first form from total = sum of q w b^q, by Newton from above.
 
-    Parameters: total [mol/kg]; weights, pairs (monomers q, w) with w the
-    molality of the species at b = 1.
+    Parameters: total [mol/kg]; weights, pairs (monomers q, at most 3; w, the
+    molality of the species at b = 1).
     Returns: b [mol/kg].
 
     >>> free_monomer(2.0, [(1, 1.0), (2, 0.5)])
     1.0
     """
-    b: float = min((total / (q * w)) ** (1.0 / q) for q, w in weights if w > 0.0)
+    one = two = three = 0.0
+    for q, w in weights:
+        if q == 1:
+            one += w
+        elif q == 2:
+            two += 2.0 * w
+        else:
+            three += 3.0 * w
+    b = total / one
+    if two > 0.0:
+        b = min(b, sqrt(total / two))
+    if three > 0.0:
+        b = min(b, (total / three) ** (1.0 / 3.0))
     for _ in range(100):
-        value = -total
-        slope = 0.0
-        for q, w in weights:
-            term = q * w * b ** (q - 1)
-            value += term * b
-            slope += q * term
-        step = value / slope
+        step = (((three * b + two) * b + one) * b - total) / (
+            (3.0 * three * b + 2.0 * two) * b + one
+        )
         b -= step
         if abs(step) <= 1e-15 * b:
             break
-    return b
+    return float(b)
 
 
 class Sums:
@@ -272,7 +280,8 @@ def balance(problem: Problem, start: float = 7.0) -> Root:
     """
     strength = max(0.5 * (problem.strong_squares + abs(problem.strong_charge)), 1e-7)
     x, first = _bracketed(problem, strength, start)
-    root = _newton(problem, x, strength)
+    better = 0.5 * slopes(problem, x, strength).s
+    root = _newton(problem, x, better)
     if root is None:
         return _alternating(problem, x, strength)
     return Root(root.ph, root.ionic_strength, root.iterations + first, root.residual)
