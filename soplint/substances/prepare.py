@@ -1,0 +1,153 @@
+"""Writes ``data/index.json``, the prepared form of the reagent and synonym files.
+
+Run ``python -m soplint.substances.prepare`` after any change of a csv file of the room; a test
+compares the stored index with a fresh one.
+"""
+
+from __future__ import annotations
+
+import json
+from dataclasses import astuple
+from typing import Any
+
+from .elements import DATA
+from .formula import FormulaError, hill, parse_formula
+from .naming import key, stem
+from .rows import Row, read_table, rows, without_water
+
+GENERIC, BLOCKED, FORMULA = "g", "n", "f"
+_SHORTEST_SLIP = 3  # letters of a formula whose capitals may be wrong: "Kcl", not "ki"
+_NO_SLIP = {"cao", "mgo", "cuo", "coo", "hno", "cos", "pbo", "hgo", "zno"}
+
+Entry = dict[str, Any]
+
+
+def _targets(names: dict[str, int], stems: dict[str, list[int]], text: str) -> list[int]:
+    """Substances (0 and up) or families (-1 and down) that a synonym stands for."""
+    targets: list[int] = []
+    for name in (part.strip() for part in text.split(";")):
+        if not name:
+            continue
+        if key(name) in stems and stem(name) == name:
+            targets.extend(stems[key(name)])
+        elif name in names:
+            targets.append(names[name])
+        else:
+            raise ValueError(f"synonyms.csv names {name!r}, which no reagent file holds")
+    return targets
+
+
+def _family_index(all_rows: tuple[Row, ...]) -> dict[str, list[int]]:
+    families: dict[str, list[int]] = {}
+    for number, row in enumerate(all_rows):
+        families.setdefault(row.substance.family, []).append(number)
+    for members in families.values():
+        members.sort(key=lambda number: _order(all_rows[number]))
+    return families
+
+
+def _order(row: Row) -> tuple[int, float]:
+    """Commercial strengths in file order, then the undiluted; else anhydrous, then hydrates."""
+    substance = row.substance
+    if substance.state == "solution" or substance.name.endswith(", pure"):
+        return (1 if substance.state == "solution" else 2, 0.0)
+    return 0, substance.hydrate
+
+
+def _add(entries: dict[str, Entry], name: str, target: int) -> None:
+    entry = entries.setdefault(key(name), {"targets": []})
+    if target not in entry["targets"]:
+        entry["targets"].append(target)
+
+
+def _is_formula(name: str) -> bool:
+    try:
+        parse_formula(name)
+    except FormulaError:
+        return False
+    return True
+
+
+def _add_formulas(
+    entries: dict[str, Entry], all_rows: tuple[Row, ...], place: dict[str, int]
+) -> dict[str, list[int]]:
+    """Composition to families; and the written formulas as names, for slips of capitals."""
+    compositions: dict[str, list[int]] = {}
+    for row in all_rows:
+        substance = row.substance
+        if substance.formula is None:
+            continue
+        target = place[substance.family]
+        anhydrous = without_water(substance.formula)
+        families = compositions.setdefault(hill(parse_formula(anhydrous).elements), [])
+        if target not in families:
+            families.append(target)
+        written = anhydrous.lower()
+        letters = sum(char.isalpha() for char in written)
+        plain = "·" not in written and key(anhydrous) == written
+        if letters >= _SHORTEST_SLIP and written not in _NO_SLIP and plain:
+            entry = entries.setdefault(written, {"targets": [], "kind": FORMULA, "exact": []})
+            if entry.get("kind") == FORMULA and target not in entry["targets"]:
+                entry["targets"].append(target)
+                entry["exact"].append(anhydrous)
+    return compositions
+
+
+def _add_synonyms(
+    entries: dict[str, Entry], names: dict[str, int], stems: dict[str, list[int]]
+) -> None:
+    for record in read_table("synonyms.csv"):
+        name = record["synonym"]
+        entry: Entry = {"targets": _targets(names, stems, record["names"])}
+        if record["kind"] != "name":
+            entry["kind"] = {"generic": GENERIC, "none": BLOCKED}[record["kind"]]
+        if record["case"] == "exact":
+            entry["exact"] = entries.get(key(name), {}).get("exact", []) + [name]
+        entries[key(name)] = entry
+
+
+def build() -> dict[str, Any]:
+    """The index as it is stored."""
+    all_rows = rows()
+    families = _family_index(all_rows)
+    place = {family: -1 - number for number, family in enumerate(families)}
+    names = {row.substance.name: number for number, row in enumerate(all_rows)}
+    entries: dict[str, Entry] = {}
+    stems: dict[str, list[int]] = {}
+    for row in all_rows:
+        target = place[row.substance.family]
+        base = stem(row.substance.name)
+        for name in (base, *row.synonyms):
+            _add(entries, stem(name), target)
+        known = stems.setdefault(key(base), [])
+        if target not in known:
+            known.append(target)
+    compositions = _add_formulas(entries, all_rows, place)
+    _add_synonyms(entries, names, stems)
+    entries.pop("", None)
+    gate = {name[:length] for name in entries for length in (1, 2, 3, 4, 8)}
+    return {
+        "substances": [astuple(row.substance) for row in all_rows],
+        "stems": {family: stem(all_rows[members[0]].substance.name)
+                  for family, members in families.items()},
+        "families": list(families.values()),
+        "names": {name: _compact(entry) for name, entry in sorted(entries.items())},
+        "compositions": dict(sorted(compositions.items())),
+        "gate": sorted(gate),
+    }
+
+
+def _compact(entry: Entry) -> int | list[Any]:
+    """An entry as stored: one number for the ordinary case."""
+    if len(entry["targets"]) == 1 and len(entry) == 1:
+        return int(entry["targets"][0])
+    return [entry["targets"], entry.get("kind", ""), entry.get("exact", [])]
+
+
+def text() -> str:
+    """The index file as text."""
+    return json.dumps(build(), ensure_ascii=False, separators=(",", ":"), indent=None) + "\n"
+
+
+if __name__ == "__main__":
+    (DATA / "index.json").write_text(text(), encoding="utf-8")
