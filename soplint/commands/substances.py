@@ -11,7 +11,7 @@ if TYPE_CHECKING:
     from collections.abc import Iterable, Iterator
 
     from soplint.reports.layout import Page
-    from soplint.substances.model import Substance
+    from soplint.substances.model import Match, Substance
 
 HEAD = """
 soplint substances NAME
@@ -29,6 +29,8 @@ Examples:
 """
 
 ATOMIC_WEIGHTS = "standard atomic weights 2021 (Prohaska et al. 2022, Pure Appl. Chem. 94, 573)"
+FIGURES = "figures of makers' product data and safety data sheets; the supplier's own come first"
+STANDARD = 298.15  # K, at which pKa values are printed
 LABEL = 16
 SHOWN_FORMS = 12
 
@@ -49,20 +51,22 @@ def run(arguments: list[str]) -> int:
     name = " ".join(told.operands).strip()
     if not name:
         raise UsageError("which substance? Give its name or formula")
-    substances = _found(name)
-    page = page_for(sys.stdout)
-    if substances:
-        write(_laid_out(_substances(substances), page))
+    match = _match(name)
+    if match is None:
+        rows = _formula_only(name)
+    elif match.generic:
+        rows = _generic(match)
     else:
-        write(_laid_out(_formula_only(name), page))
+        rows = _substance(match.substances[0], match.substances[1:])
+    write(_laid_out(rows, page_for(sys.stdout)))
     return NOT_HELD
 
 
-def _found(name: str) -> tuple[Substance, ...]:
+def _match(name: str) -> Match | None:
     from soplint.substances import lookup
 
     match = lookup(name)
-    return () if match is None else match.substances
+    return match if match is not None and match.substances else None
 
 
 def _laid_out(rows: Iterable[tuple[str, str]], page: Page) -> Iterator[str]:
@@ -82,15 +86,19 @@ def _laid_out(rows: Iterable[tuple[str, str]], page: Page) -> Iterator[str]:
         last = label
 
 
-def _substances(substances: tuple[Substance, ...]) -> Iterator[tuple[str, str]]:
-    best, *more = substances
-    yield from _substance(best)
-    for other in more:
-        yield "can also mean", _brief(other)
+def _generic(match: Match) -> Iterator[tuple[str, str]]:
+    yield "", f"{match.written}: names an acid system, not one reagent"
+    system = match.substances[0].acid_system
+    if system:
+        yield from _acid(system)
+    yield from _brief_list("can mean", match.substances)
 
 
-def _substance(substance: Substance) -> Iterator[tuple[str, str]]:
+def _substance(substance: Substance, also: tuple[Substance, ...] = ()) -> Iterator[tuple[str, str]]:
+    """Everything about a substance; ``also`` are the forms that the name can mean as well."""
     yield "", substance.name
+    for other in also:
+        yield "can also mean", _brief(other)
     if substance.formula:
         yield "formula", substance.formula
         yield from _molar_mass(substance.formula)
@@ -104,10 +112,10 @@ def _substance(substance: Substance) -> Iterator[tuple[str, str]]:
         yield "solubility", f"{substance.solubility:g} g per 100 mL water, about 20 °C"
     if substance.hazards:
         yield "hazards", ", ".join(substance.hazards)
-    yield "status", substance.status or "none recorded"
+    yield "status", f"{substance.status or 'none recorded'} ({FIGURES})"
     if substance.acid_system:
         yield from _acid(substance.acid_system)
-    yield from _forms(substance)
+    yield from _forms(substance, also)
 
 
 def _molar_mass(formula: str) -> Iterator[tuple[str, str]]:
@@ -133,11 +141,11 @@ def _strength(substance: Substance) -> Iterator[tuple[str, str]]:
     yield "strength", f"{substance.strength:g} % w/w{usual}"
     if substance.density is not None and substance.molar_mass is not None:
         molar = 10.0 * substance.density * substance.strength / substance.molar_mass
-        yield (
-            "",
-            f"  {'working':{LABEL}}1000 mL/L × {substance.density:g} g/mL × "
-            f"{substance.strength:g} % / {substance.molar_mass:.2f} g/mol = {molar:.3g} mol/L",
+        working = (
+            f"1000 mL/L × {substance.density:g} g/mL × {substance.strength:g} % "
+            f"/ {substance.molar_mass:.2f} g/mol = {molar:#.3g} mol/L"
         )
+        yield "working", working
 
 
 def _acid(name: str) -> Iterator[tuple[str, str]]:
@@ -147,22 +155,32 @@ def _acid(name: str) -> Iterator[tuple[str, str]]:
         return
     acid = system(name)
     for charge, step in zip(acid.charges, acid.steps, strict=False):
-        value = step.pk + step.shift if step.equation is None else step.pk
+        value = step.at(STANDARD)
+        loss = f"{name}, charge {_charge(charge)} to {_charge(charge - 1)}"
         yield (
             "pKa",
-            f"{value:.2f} ± {step.uncertainty:.2g} ({name}, charge {charge:+d} to {charge - 1:+d}; "
-            f"25 °C, zero ionic strength; {step.status}; {step.source})",
+            f"{value:.2f} ± {step.uncertainty:.2g} ({loss}; 25 °C, zero ionic strength; "
+            f"{step.status}; {step.source})",
         )
 
 
-def _forms(substance: Substance) -> Iterator[tuple[str, str]]:
-    from soplint.substances.catalogue import forms
+def _charge(charge: int) -> str:
+    return f"{charge:+d}" if charge else "0"
 
-    others = forms(substance)
-    for other in others[:SHOWN_FORMS]:
-        yield "other forms", _brief(other)
-    if len(others) > SHOWN_FORMS:
-        yield "other forms", f"and {len(others) - SHOWN_FORMS} more"
+
+def _forms(substance: Substance, shown: tuple[Substance, ...]) -> Iterator[tuple[str, str]]:
+    from soplint.substances import forms
+
+    names = {other.name for other in shown}
+    others = tuple(other for other in forms(substance) if other.name not in names)
+    yield from _brief_list("other forms", others)
+
+
+def _brief_list(label: str, substances: tuple[Substance, ...]) -> Iterator[tuple[str, str]]:
+    for substance in substances[:SHOWN_FORMS]:
+        yield label, _brief(substance)
+    if len(substances) > SHOWN_FORMS:
+        yield label, f"and {len(substances) - SHOWN_FORMS} more"
 
 
 def _brief(substance: Substance) -> str:
