@@ -152,9 +152,8 @@ def _newton_step(
         m = w * (b if not tables.nuclear else b**tables.q)
         total = tables.sums @ m
         own = (tables.per_system @ m).reshape(6, tables.count, -1)
-        with np.errstate(divide="ignore", invalid="ignore"):
-            lost = np.nan_to_num(own[3] / own[5])
-            lift = np.nan_to_num(own[4] / own[5])
+        whole = np.maximum(own[5], 1e-300)
+        lost, lift = own[3] / whole, own[4] / whole
         by_x = total[3:6] - (own[:3] * lost).sum(axis=1)
         by_d = total[6:9] - (own[:3] * lift).sum(axis=1)
         p, n, s = p + total[0], n + total[1], s + total[2]

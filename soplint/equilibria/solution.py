@@ -41,7 +41,7 @@ class Solution:
     basis: str
     totals: Mapping[str, float]
     strong: Mapping[str, float]
-    charges: Mapping[str, int]
+    charges: Mapping[str, int] = field(repr=False)
     notes: tuple[str, ...]
     problem: kernel.Problem = field(repr=False)
     names: tuple[str, ...] = field(repr=False)
@@ -90,6 +90,8 @@ class Solution:
 
 
 def _label(name: str, monomers: int, charge: int) -> str:
+    if name == "calcium hydroxide ion pair":
+        return "Ca2+" if charge == 2 else "CaOH+"
     sign = "" if charge == 0 else f" {abs(charge) if abs(charge) > 1 else ''}{'+-'[charge < 0]}"
     prefix = "" if monomers == 1 else f"{monomers} "
     return f"{prefix}{name}{sign}"
