@@ -175,7 +175,8 @@ def _listed_by_git(folder: str) -> list[str] | None:
             check=True,
         )
     except (OSError, subprocess.SubprocessError):
-        say("git does not list this folder; it is searched without git's ignore rules", folder)
+        note = "git does not list this folder; it is searched without git's ignore rules"
+        say(note, shown(folder))
         return None
     names = {os.fsdecode(name) for name in done.stdout.split(b"\0") if name}
     return sorted(name.rstrip("/") for name in names)
