@@ -79,9 +79,7 @@ class _Scanner:
         self.slips: set[str] = set()
 
     def fail(self, reason: str, position: int, length: int = 1) -> FormulaError:
-        return FormulaError(
-            self.formula, position, self.text[position : position + length], reason
-        )
+        return FormulaError(self.formula, position, self.text[position : position + length], reason)
 
     def add(self, symbol: str, count: float) -> None:
         table = self.stack[-1]

@@ -14,6 +14,7 @@ from .hydration import Water, water_behind
 from .model import Match
 from .naming import FOLD, LOOK_ALIKE, WORD, spell
 from .reading import Found, hydrates_known, made_with_water, meaning, read_formula
+from .water import FIRST, water_phrase
 
 _BEFORE = {
     "anhydrous": "anhydrous",
@@ -23,7 +24,9 @@ _BEFORE = {
     "concentrated": "concentrated",
     "fuming": "concentrated",
 }
-_BEHIND = re.compile(r" ?,? ?\(?(?:conc\.?|concd\.?|concentrated)(?![^\W_])\.?\)?(?! ?[^\W_])", re.IGNORECASE)
+_BEHIND = re.compile(
+    r" ?,? ?\(?(?:conc\.?|concd\.?|concentrated)(?![^\W_])\.?\)?(?! ?[^\W_])", re.IGNORECASE
+)
 _JOINT = " -,()[]'"  # what may stand between the words of one name
 _JOINT_LENGTH = 4
 _SHORT = 6  # keys below this length must stand as one word: "K, I" is no potassium iodide
@@ -75,13 +78,18 @@ class NameIndex:
             joint = chars[words[at][1] : words[at + 1][0]]
             if len(joint) <= 2 and not joint.strip(" .-"):
                 found = self._plain(chars, words, at + 1)
-                if found is not None and found.kind in ("", "f"):
+                if found is not None and found.kind not in ("n", "g"):
                     return words[at][0], found.end, found, before
         found = self._plain(chars, words, at)
         return None if found is None else (found.start, found.end, found, "")
 
     def _plain(self, chars: str, words: list[tuple[int, int]], at: int) -> Found | None:
         """The longer of the name and the formula that begin at word ``at``."""
+        if self._word(chars, words[at]) in FIRST:
+            noun = water_phrase(chars, words, at, lambda place: self._word(chars, words[place]))
+            if noun is not None:
+                found = self._name(chars, words, noun)
+                return found and found._replace(start=words[at][0])
         name = self._name(chars, words, at)
         first = chars[words[at][0]]
         if not (first.isupper()):
@@ -184,8 +192,12 @@ class NameIndex:
             flags += water.flags
         elif not before and (behind := _BEHIND.match(folded, end)):
             before, end = "concentrated", _closed(folded, end, behind.end())
+        if found.kind == "c":
+            before = "concentrated"
         if before == "concentrated":
             flags += ("concentrated",)
+        if found.kind == "b":
+            flags += ("buffer-name",)
         named, count = water is not None, water.count if water else None
         if found.made:
             read = made_with_water(found, named, count, before)

@@ -72,7 +72,9 @@ def ions(formula: str) -> Ions | None:
     count = found["many"] if found["held"] else found["count"]
     cations = [(name, int(number or 1)) for name, number in _cation().findall(found["cations"])]
     first: Ions | None = None
-    for *positive, negative in product(*(_charges()[name] for name, _ in cations), _charges()[anion]):
+    for *positive, negative in product(
+        *(_charges()[name] for name, _ in cations), _charges()[anion]
+    ):
         tried = Ions(
             tuple((name, n, charge) for (name, n), charge in zip(cations, positive, strict=True)),
             anion,
@@ -92,6 +94,10 @@ def neutralised(found: Ions) -> str | None:
     cation, _, positive = found.cations[0]
     common = gcd(positive, found.anion_charge)
     cations, anions = -found.anion_charge // common, positive // common
-    held = f"({found.anion})" if anions > 1 and len(re.findall("[A-Z]", found.anion)) > 1 else found.anion
+    held = (
+        f"({found.anion})"
+        if anions > 1 and len(re.findall("[A-Z]", found.anion)) > 1
+        else found.anion
+    )
     first = f"({cation})" if cations > 1 and len(re.findall("[A-Z]", cation)) > 1 else cation
     return f"{first}{cations if cations > 1 else ''}{held}{anions if anions > 1 else ''}"

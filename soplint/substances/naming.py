@@ -26,8 +26,7 @@ _NUMERALS = (
     "nona:9 ennea:9 deca:10 undeca:11 dodeca:12 hexadeca:16 octadeca:18"
 )
 HYDRATE_PREFIXES: dict[str, float] = {
-    prefix: float(number)
-    for prefix, number in (item.split(":") for item in _NUMERALS.split())
+    prefix: float(number) for prefix, number in (item.split(":") for item in _NUMERALS.split())
 }
 HYDRATE_WORDS: dict[float, str] = {
     number: prefix + "hydrate" for prefix, number in HYDRATE_PREFIXES.items() if prefix != "ennea"
@@ -56,7 +55,9 @@ def spell(word: str) -> str:
     word = word.replace("sulph", "sulf").replace("aluminum", "aluminium")
     if "aesium" not in word:
         word = word.replace("cesium", "caesium")
-    return word.replace("β", "beta").replace("α", "alpha").replace("ß", "beta").replace("γ", "gamma")
+    return (
+        word.replace("β", "beta").replace("α", "alpha").replace("ß", "beta").replace("γ", "gamma")
+    )
 
 
 def key(name: str) -> str:

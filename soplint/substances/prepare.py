@@ -15,7 +15,8 @@ from .formula import FormulaError, hill, parse_formula
 from .naming import key, stem
 from .rows import Row, read_table, rows, without_water
 
-GENERIC, BLOCKED, FORMULA = "g", "n", "f"
+FORMULA = "f"
+_KINDS = {"generic": "g", "none": "n", "buffer-name": "b", "concentrated": "c"}
 _SHORTEST_SLIP = 3  # letters of a formula whose capitals may be wrong: "Kcl", not "ki"
 _NO_SLIP = {"cao", "mgo", "cuo", "coo", "hno", "cos", "pbo", "hgo", "zno"}
 
@@ -25,6 +26,7 @@ Entry = dict[str, Any]
 def _targets(names: dict[str, int], stems: dict[str, list[int]], text: str) -> list[int]:
     """Substances (0 and up) or families (-1 and down) that a synonym stands for."""
     targets: list[int] = []
+    missing: list[str] = []
     for name in (part.strip() for part in text.split(";")):
         if not name:
             continue
@@ -33,7 +35,9 @@ def _targets(names: dict[str, int], stems: dict[str, list[int]], text: str) -> l
         elif name in names:
             targets.append(names[name])
         else:
-            raise ValueError(f"synonyms.csv names {name!r}, which no reagent file holds")
+            missing.append(name)
+    if missing:
+        raise ValueError(f"synonyms.csv names {missing}, which no reagent file holds")
     return targets
 
 
@@ -47,11 +51,12 @@ def _family_index(all_rows: tuple[Row, ...]) -> dict[str, list[int]]:
 
 
 def _order(row: Row) -> tuple[int, float]:
-    """Commercial strengths in file order, then the undiluted; else anhydrous, then hydrates."""
+    """Solids first, fewest water first; then strengths in file order, then the undiluted."""
     substance = row.substance
-    if substance.state == "solution" or substance.name.endswith(", pure"):
-        return (1 if substance.state == "solution" else 2, 0.0)
-    return 0, substance.hydrate
+    if substance.state == "solid":
+        assay = 0.5 if substance.strength and substance.strength < 95 else 0.0
+        return 0, substance.hydrate + assay
+    return (2 if substance.name.endswith(", pure") else 1), 0.0
 
 
 def _add(entries: dict[str, Entry], name: str, target: int) -> None:
@@ -100,7 +105,7 @@ def _add_synonyms(
         name = record["synonym"]
         entry: Entry = {"targets": _targets(names, stems, record["names"])}
         if record["kind"] != "name":
-            entry["kind"] = {"generic": GENERIC, "none": BLOCKED}[record["kind"]]
+            entry["kind"] = _KINDS[record["kind"]]
         if record["case"] == "exact":
             entry["exact"] = entries.get(key(name), {}).get("exact", []) + [name]
         entries[key(name)] = entry
@@ -128,8 +133,10 @@ def build() -> dict[str, Any]:
     gate = {name[:length] for name in entries for length in (1, 2, 3, 4, 8)}
     return {
         "substances": [astuple(row.substance) for row in all_rows],
-        "stems": {family: stem(all_rows[members[0]].substance.name)
-                  for family, members in families.items()},
+        "stems": {
+            family: stem(all_rows[members[0]].substance.name)
+            for family, members in families.items()
+        },
         "families": list(families.values()),
         "names": {name: _compact(entry) for name, entry in sorted(entries.items())},
         "compositions": dict(sorted(compositions.items())),

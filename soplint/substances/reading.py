@@ -12,7 +12,12 @@ from .inorganic import ions, neutralised
 from .model import Substance
 from .naming import LOOK_ALIKE
 
-_NOT_MEANT = {"HI", "CO", "NO", "COCl2"}  # a greeting, "Co", "No.", and phosgene for cobalt chloride
+_NOT_MEANT = {
+    "HI",
+    "CO",
+    "NO",
+    "COCl2",
+}  # a greeting, "Co", "No.", and phosgene for cobalt chloride
 _NEARLY_STRONGEST = 0.7  # of the strongest strength by % w/w: what "concentrated" can mean
 
 
@@ -147,9 +152,7 @@ def _salt(run: str, formula: str, parsed: Formula, flags: tuple[str, ...]) -> Fo
 def hydrates_known(targets: tuple[int, ...]) -> frozenset[float]:
     """Mol water per mol of all catalogue forms that the targets can mean."""
     data = catalogue()
-    return frozenset(
-        member.hydrate for target in targets for member in _family(data, target)
-    )
+    return frozenset(member.hydrate for target in targets for member in _family(data, target))
 
 
 def _family(data: Catalogue, target: int) -> tuple[Substance, ...]:

@@ -16,6 +16,7 @@ from .formula import hill, molar_mass, parse_formula
 from .model import Substance
 from .naming import stem
 
+_GASES = ("HCl", "HBr", "HI", "NH3", "CH2O")  # at room temperature and undiluted
 FILES = ("reagents.csv", "more_reagents.csv")
 
 
@@ -98,26 +99,35 @@ def _families(rows: list[Row]) -> dict[str, str]:
     return keys
 
 
+def _is_dilute(substance: Substance) -> bool:
+    """A solution, or a solid of known assay well below 100 %."""
+    if substance.state == "solution":
+        return True
+    return substance.strength is not None and substance.strength < 95
+
+
 def _pure(rows: list[Row]) -> list[Row]:
-    """The undiluted substance of each family that is sold only as a solution."""
-    by_family: dict[str, list[Row]] = {}
+    """The undiluted substance of each family of which no row is undiluted."""
+    by_family: dict[str, list[Substance]] = {}
     for row in rows:
-        by_family.setdefault(row.substance.family, []).append(row)
+        by_family.setdefault(row.substance.family, []).append(row.substance)
     added = []
     for members in by_family.values():
-        first = members[0].substance
-        if all(row.substance.state == "solution" for row in members) and first.formula:
-            pure = replace(
-                first,
-                name=stem(first.name) + ", pure",
-                state="gas" if first.formula in ("HCl", "HBr", "HI", "NH3", "CH2O") else "liquid",
-                density=None,
-                strength=100.0,
-                strength_low=None,
-                strength_high=None,
-                status="confirmed",
-            )
-            added.append(Row(pure, ()))
+        first = members[0]
+        if not first.formula or not all(_is_dilute(member) for member in members):
+            continue
+        state = "solid" if first.state == "solid" else "liquid"
+        pure = replace(
+            first,
+            name=stem(first.name) + ", pure",
+            state="gas" if first.formula in _GASES else state,
+            density=None,
+            strength=100.0,
+            strength_low=None,
+            strength_high=None,
+            status="confirmed",
+        )
+        added.append(Row(pure, ()))
     return added
 
 
