@@ -233,3 +233,36 @@ def test_no_advertised_choice_is_missing(run, write):
     for form in FORMS:
         done = run("review", "--as", form, "a.md")
         assert done.returncode == 1 and done.stdout and not done.stderr
+
+
+@pytest.mark.skipif(os.name == "nt", reason="terminals of another kind")
+@pytest.mark.parametrize("no_color", ["", "1"])
+def test_on_a_terminal(write, tmp_path, no_color):
+    """Bold for the class word unless NO_COLOR is set; long lines are broken at the width."""
+    import fcntl
+    import pty
+    import struct
+    import termios
+
+    write("a.md", MAJOR)
+    ours, theirs = pty.openpty()
+    fcntl.ioctl(theirs, termios.TIOCSWINSZ, struct.pack("HHHH", 24, 60, 0, 0))
+    env = {**os.environ, "PYTHONPATH": os.pathsep.join(sys.path), "TERM": "xterm"}
+    env |= {"NO_COLOR": no_color, "PYTHONUTF8": "1"}
+    driver = str(__file__).replace("test_review_command", "driver")
+    command = [sys.executable, driver, "review", "a.md"]
+    subprocess.run(command, cwd=tmp_path, env=env, stdout=theirs, check=False, timeout=60)
+    os.close(theirs)
+    shown = b""
+    while True:
+        try:
+            part = os.read(ours, 65536)
+        except OSError:  # the other end is closed and everything was read
+            break
+        if not part:
+            break
+        shown += part
+    os.close(ours)
+    first, *rest = shown.decode().splitlines()
+    assert ("\x1b[1mmajor\x1b[0m, amounts" in first) == (not no_color)
+    assert rest and max(map(len, rest)) <= 60
