@@ -166,6 +166,15 @@ def _with_fact(target: Part, part: Part) -> Part | None:
         changed = replace(material, molar_mass=material.molar_mass or part.measure, end=part.end)
     elif isinstance(part, Loose) and part.measure.dimension == "density":
         changed = replace(material, density=material.density or part.measure, end=part.end)
+    elif isinstance(part, Material) and not part.words and (part.density or part.molar_mass):
+        changed = replace(
+            material,
+            strengths=material.strengths + part.strengths,
+            bracket=material.bracket + part.bracket,
+            density=material.density or part.density,
+            molar_mass=material.molar_mass or part.molar_mass,
+            end=part.end,
+        )
     elif isinstance(part, Material) and not part.words and (part.strengths or part.ph):
         if isinstance(target, Dose) and part.strengths:
             changed = replace(material, finals=material.finals + part.strengths, end=part.end)

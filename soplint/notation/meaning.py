@@ -253,7 +253,8 @@ class Meaning:
         last = self.phrases[-1] if self.phrases else None
         if part.measure.dimension == "ratio":
             materials = self._trailing_materials()
-            if len(materials) == len(part.measure.parts) or len(materials) >= 2:
+            if len(materials) >= len(part.measure.parts) >= 2:
+                materials = materials[-len(part.measure.parts) :]
                 start = materials[0].start
                 del self.phrases[len(self.phrases) - len(materials) :]
                 self.phrases.append(Mixture(start, part.end, part.measure, tuple(materials)))

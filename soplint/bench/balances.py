@@ -1,0 +1,337 @@
+"""Balances: amounts of a preparation against the strengths that it is said to have.
+
+Every strength of a title, bracket, column or claim is compared with what the doses give in the
+final volume.  All reasonable readings are tried before a disagreement is recorded.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass, replace
+from itertools import islice, product
+
+from soplint.bench.facts import Facts
+from soplint.bench.numbers import EXACT, nominal_relative, relative, shown
+from soplint.bench.preparation import FinalVolume, Preparation, Stated, Taken, Target
+from soplint.bench.relation import Relation
+from soplint.bench.things import Bearers, Share, bearers, shares
+from soplint.bench.volumes import final_volume
+from soplint.findings.model import Interval
+from soplint.notation.phrases import Dose
+from soplint.quantities.model import Measure
+
+_STRENGTHS = {
+    *("molarity", "molality", "normality", "mass-concentration", "fraction", "ppm"),
+    "activity-concentration",
+}
+_MOST_READINGS = 64  # combinations of readings that are tried for one sum
+
+
+@dataclass(frozen=True, slots=True)
+class Balance:
+    """One way to make sense of a strength: the doses that bear it, each under one reading."""
+
+    target: Target
+    how: str
+    chosen: tuple[Share, ...]
+    volume: FinalVolume
+    scale: float  # the amounts are for this multiple of the strength (fold)
+
+    @property
+    def wanted(self) -> float:
+        """The strength aimed at times the volume, base units."""
+        return self.target.stated.measure.base * self.scale * self.volume.litres
+
+    @property
+    def given(self) -> float:
+        """What the doses bring."""
+        return sum(share.quantity for share in self.chosen)
+
+    @property
+    def ratio(self) -> float:
+        """Brought / aimed at."""
+        return self.given / self.wanted if self.wanted else 0.0
+
+    @property
+    def spread(self) -> float:
+        """Relative half-width of the comparison: strength, volume and doses together."""
+        given = self.given or 1.0
+        doses = sum(s.quantity * s.relative for s in self.chosen) / given
+        return nominal_relative(self.target.stated.measure) + self.volume.relative + doses
+
+    @property
+    def closes(self) -> bool:
+        """Whether stated and computed intervals meet."""
+        return _meets(self.ratio, self.target.stated.measure, self.spread)
+
+
+def _meets(ratio: float, measure: Measure, spread: float) -> bool:
+    if measure.manner == "range":
+        low, high = measure.low / measure.nominal, measure.high / measure.nominal
+        return low * (1 - spread) <= ratio <= high * (1 + spread)
+    return abs(ratio - 1) <= spread + 1e-9
+
+
+def targets_of(preparation: Preparation) -> Iterator[Target]:
+    """Strengths that the preparation is said to have: title, brackets, columns, claims."""
+    title = preparation.title
+    if title is not None and _title_counts(preparation):
+        yield from title.targets
+    for taken in preparation.taken:
+        yield from _finals(taken)
+        for other in taken.dose.alternatives:
+            yield from _finals(replace(taken, dose=other))
+    for claimed in preparation.claimed:
+        claim = claimed.claim
+        if claim.kind == "strength" and claim.measure.dimension in _STRENGTHS:
+            yield Target(Stated(claimed.text, claim.measure), claim.material, "claim")
+
+
+def _title_counts(preparation: Preparation) -> bool:
+    """A document's title speaks of a preparation only where there is just one."""
+    assert preparation.title is not None
+    return preparation.title.source != "document" or preparation.sole
+
+
+def _finals(taken: Taken) -> Iterator[Target]:
+    for measure in final_strengths(taken.dose):
+        yield Target(Stated(taken.text, measure), taken.dose.material, "bracket")
+
+
+def final_strengths(dose: Dose) -> tuple[Measure, ...]:
+    """Strengths beside a dose that mean the finished preparation, not the thing taken."""
+    material = dose.material
+    if material is None:
+        return ()
+    finals = [m for m in material.finals if m.dimension in _STRENGTHS]
+    beside = [m for m in material.strengths if m.dimension in _STRENGTHS]
+    bracket = [m for m in material.bracket if m.dimension in _STRENGTHS]
+    if dose.amount.dimension in ("mass", "amount"):
+        molar = [m for m in beside if m.dimension in ("molarity", "normality")]
+        return tuple([*finals, *molar, *bracket])
+    if len(beside) > 1 and len({m.dimension for m in beside}) == 1:
+        stock = max(beside, key=lambda m: m.base)
+        finals.extend(m for m in beside if m is not stock)
+    if beside:
+        same = [m for m in bracket if m.dimension == beside[0].dimension]
+        finals.extend(m for m in same if m.base < beside[0].base)
+    return tuple(finals)
+
+
+# --- testing --------------------------------------------------------------------------------------
+
+
+def balance_relations(
+    preparation: Preparation, facts: Facts, order: int
+) -> Iterator[Relation]:
+    """Every strength of the preparation, tested."""
+    volume = preparation.volume or final_volume(preparation)
+    targets = list(targets_of(preparation))
+    for scale in _best_scale(preparation, targets, volume, facts, order):
+        for target in targets:
+            relation = _test(preparation, target, volume, facts, order, scale)
+            if relation is not None:
+                yield relation
+
+
+def _best_scale(
+    preparation: Preparation,
+    targets: Sequence[Target],
+    volume: FinalVolume | None,
+    facts: Facts,
+    order: int,
+) -> Iterator[float]:
+    """The fold reading for the preparation as a whole: the one under which most numbers agree."""
+    fold = preparation.title.fold if preparation.title else None
+    scales = [1.0]
+    if fold is not None and fold.measure.base > 0 and fold.measure.base != 1.0:
+        scales += [fold.measure.base, 1 / fold.measure.base]
+    if len(scales) == 1:
+        yield 1.0
+        return
+    counts = []
+    for scale in scales:
+        agreeing = 0
+        for target in targets:
+            relation = _test(preparation, target, volume, facts, order, scale)
+            agreeing += relation is not None and relation.agrees
+        counts.append(agreeing)
+    yield scales[counts.index(max(counts))]
+
+
+def _test(
+    preparation: Preparation,
+    target: Target,
+    volume: FinalVolume | None,
+    facts: Facts,
+    order: int,
+    scale: float,
+) -> Relation | None:
+    """One strength against the doses that bear it, or None where nothing bears it."""
+    measure = target.stated.measure
+    if not measure.base:
+        return None
+    first: Balance | None = None
+    ways = 0
+    for group in _groups(preparation, target, facts, order):
+        for candidate in _balances(preparation, target, group, volume, scale):
+            if candidate.closes:
+                return _relation(preparation, candidate, ways)
+            first = first or candidate
+        ways += 1
+    return _relation(preparation, first, ways) if first is not None else None
+
+
+def _groups(
+    preparation: Preparation, target: Target, facts: Facts, order: int
+) -> Iterator[Bearers]:
+    if target.source == "bracket":
+        for taken in preparation.taken:
+            for dose in (taken.dose, *taken.dose.alternatives):
+                if dose.material is target.material:
+                    found = shares(replace(taken, dose=dose), target.stated.measure, facts)
+                    if found:
+                        yield Bearers("substance", (tuple(found),))
+                    return
+        return
+    yield from bearers(preparation, target.material, target.stated.measure, facts, order)
+
+
+def _balances(
+    preparation: Preparation,
+    target: Target,
+    group: Bearers,
+    volume: FinalVolume | None,
+    scale: float,
+) -> Iterator[Balance]:
+    """The readings of a group of doses, the nearest to the text first."""
+    for chosen in islice(product(*group.shares), _MOST_READINGS):
+        for final in _volumes(preparation, chosen, volume, target):
+            yield Balance(target, group.how, chosen, final, scale)
+
+
+def _volumes(
+    preparation: Preparation,
+    chosen: tuple[Share, ...],
+    volume: FinalVolume | None,
+    target: Target,
+) -> Iterator[FinalVolume]:
+    """The final volume; where only a solvent volume is known, that of the dose's own line."""
+    strong = volume is not None and volume.provenance not in ("weak", "sum", "heading")
+    if volume is not None:
+        yield volume
+        late = sum(
+            t.dose.amount.base
+            for t in preparation.taken
+            if t.late and t.dose.amount.dimension == "volume"
+        )
+        if late:
+            yield replace(volume, litres=volume.litres + late)
+    if strong:
+        return
+    steps = {share.taken.step for share in chosen}
+    if len(steps) != 1:
+        return
+    for taken in preparation.taken:
+        amount = taken.dose.amount
+        if taken.step in steps and taken.solvent and amount.base > 0:
+            local = FinalVolume(amount.base, relative(amount, EXACT), "weak", taken.stated)
+            if volume is None or abs(local.litres / volume.litres - 1) > 1e-9:
+                yield local
+            added = sum(
+                share.taken.dose.amount.base
+                for share in chosen
+                if share.taken.dose.amount.dimension == "volume"
+            )
+            if added:
+                yield replace(local, litres=local.litres + added)
+
+
+def _relation(preparation: Preparation, balance: Balance, ways: int) -> Relation:
+    target = balance.target
+    single = len(balance.chosen) == 1
+    share = balance.chosen[0]
+    volume = balance.volume
+    inputs = tuple(s for s in (target.stated, volume.stated) if s is not None)
+    about_claim = target.source == "claim" and target.stated.measure.manner != "about"
+    if single and not about_claim:
+        tested = share.taken.stated
+        measure = tested.measure
+        value = measure.nominal / balance.ratio if balance.ratio else 0.0
+        working = _amount_working(balance, value, measure)
+        deviation = balance.ratio - 1
+    else:
+        tested = target.stated
+        measure = tested.measure
+        value = measure.nominal * balance.ratio
+        working = _sum_working(balance, value, measure)
+        deviation = 1 / balance.ratio - 1 if balance.ratio else 0.0
+        inputs = (
+            *(s.taken.stated for s in balance.chosen),
+            *((volume.stated,) if volume.stated else ()),
+        )
+    half = abs(value) * balance.spread
+    reading = ", ".join(dict.fromkeys(s.reading for s in balance.chosen if s.reading))
+    return Relation(
+        kind=share.kind if single else "sum",
+        tested=tested,
+        of=_name(share, target),
+        computed=Interval(value, measure.unit, value - half, value + half),
+        agrees=balance.closes,
+        deviation=deviation,
+        working=working,
+        inputs=inputs,
+        reading=reading,
+        preparation=preparation,
+        volume=volume,
+        target=target.stated,
+        taken=share.taken if single else None,
+        substance=share.substance,
+        one_figure=target.stated.measure.digits <= 1,
+        note=_scale_note(balance),
+        several=ways > 0,
+    )
+
+
+def _name(share: Share, target: Target) -> str | None:
+    if share.substance is not None:
+        return share.substance.name
+    material = share.taken.dose.material or target.material
+    return material.words if material else None
+
+
+def _scale_note(balance: Balance) -> str:
+    return f"amounts read as {balance.scale:g} times the strength" if balance.scale != 1 else ""
+
+
+def _amount_working(balance: Balance, value: float, measure: Measure) -> str:
+    share, target = balance.chosen[0], balance.target.stated.measure
+    scale = f" × {balance.scale:g}" if balance.scale != 1 else ""
+    volume = _volume_shown(balance.volume)
+    if share.kind == "stock" and share.label is not None:
+        return (
+            f"{shown(target)}{scale} × {volume} / {shown(share.label)} = {value:.4g} {measure.unit}"
+        )
+    substance = share.substance
+    if substance is not None and substance.molar_mass and share.kind == "mass":
+        return (
+            f"{shown(target)}{scale} × {volume} × {substance.molar_mass:.2f} g/mol"
+            f" = {value:.4g} {measure.unit}"
+        )
+    return (
+        f"{shown(target)}{scale} × {volume}; {share.working} brings"
+        f" {balance.ratio:.4g} of it; {shown(measure)} / {balance.ratio:.4g}"
+        f" = {value:.4g} {measure.unit}"
+    )
+
+
+def _sum_working(balance: Balance, value: float, measure: Measure) -> str:
+    parts = " + ".join(f"({share.working})" for share in balance.chosen)
+    scale = f" / {balance.scale:g}" if balance.scale != 1 else ""
+    return f"{parts} in {_volume_shown(balance.volume)}{scale} = {value:.4g} {measure.unit}"
+
+
+def _volume_shown(volume: FinalVolume) -> str:
+    if volume.stated is not None and abs(volume.stated.measure.base / volume.litres - 1) < 1e-9:
+        return shown(volume.stated.measure)
+    return f"{volume.litres * 1000:.4g} mL"

@@ -1,0 +1,198 @@
+"""Collect the phrases of consecutive sentences into preparations."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+from soplint.bench.preparation import (
+    Adjusted,
+    Claimed,
+    Made,
+    Mixed,
+    Preparation,
+    Stated,
+    Taken,
+    Title,
+)
+from soplint.bench.title import title_of
+from soplint.intake.model import Text
+from soplint.notation.phrases import (
+    Claim,
+    Command,
+    Dose,
+    Equivalent,
+    Material,
+    Mixture,
+    Phrase,
+    Sentence,
+    SetPH,
+    ToVolume,
+    Ware,
+)
+from soplint.notation.rows import RecipeTable
+
+# A clause with one of these commands says nothing about the composition of the preparation.
+_NOISE = {"WASH", "STORE", "CALIBRATE", "FILTER", "REPEAT", "TITRATE"}
+_STARTS = {"WEIGH", "DISSOLVE", "DILUTE", "PREPARE"}
+_TWO_STAGE = 1.45  # a later make-up of up to this many times the earlier finishes the same recipe
+
+
+class Collector:
+    """Grows one preparation after the other within one scope."""
+
+    def __init__(
+        self,
+        reagents: list[tuple[Sentence, Material]],
+        equivalents: list[tuple[Sentence, Equivalent]],
+    ) -> None:
+        self.reagents = reagents
+        self.equivalents = equivalents
+        self.done: list[Preparation] = []
+        self.current = Preparation(None)
+        self.title: Title | None = None
+        self.parents: tuple[Title, ...] = ()
+        self.section = 0
+        self.kind = "steps"
+        self.closed = False
+        self.step = 0
+        self.pending: list[Taken] = []  # added after the make-up
+
+    def open(
+        self, title: Title | None, parents: tuple[Title, ...], section: int, kind: str = "steps"
+    ) -> None:
+        """Begin a scope; its first preparation carries the title."""
+        self.title, self.parents, self.section, self.kind = title, parents, section, kind
+        self.current = Preparation(title, parents, section=section, kind=kind)
+        self.closed = False
+        self.pending = []
+
+    def close(self) -> list[Preparation]:
+        """End the scope; its preparations in order."""
+        self._settle_pending()
+        done, self.done = [*self.done, self.current], []
+        self.current = Preparation(None)
+        self.closed = False
+        return done
+
+    def _next(self, title: Title | None = None) -> None:
+        """End the current preparation and begin another one in the same scope."""
+        self.done.append(self.current)
+        self.current = Preparation(title, self.parents, section=self.section, kind=self.kind)
+        self.closed = False
+
+    def _settle_pending(self) -> None:
+        for taken in self.pending:
+            self.current.taken.append(replace(taken, late=True))
+        self.pending = []
+
+    # --- sentences -------------------------------------------------------------------------------
+
+    def sentence(self, sentence: Sentence) -> None:
+        """Take up all phrases of a sentence."""
+        self.step += 1
+        command: str | None = None
+        for index, phrase in enumerate(sentence.phrases):
+            if isinstance(phrase, Command):
+                command = phrase.kind
+                continue
+            if command in _NOISE and not isinstance(phrase, (Equivalent, Claim)):
+                continue
+            self._phrase(sentence, phrase, index, command)
+
+    def _phrase(self, sentence: Sentence, phrase: Phrase, index: int, command: str | None) -> None:
+        text = sentence.text
+        if isinstance(phrase, Dose):
+            self._dose(sentence, phrase, command)
+        elif isinstance(phrase, ToVolume):
+            self._to_volume(text, phrase)
+        elif isinstance(phrase, SetPH):
+            self.current.adjusted.append(Adjusted(text, phrase, self.step, self.closed))
+        elif isinstance(phrase, Claim):
+            self.current.claimed.append(Claimed(text, phrase, self.step))
+        elif isinstance(phrase, Mixture):
+            self.current.mixed.append(Mixed(text, phrase, self.step))
+        elif isinstance(phrase, Ware):
+            words = text.chars[phrase.start : phrase.end + 30].lower()
+            self.current.flasks.append((Stated(text, phrase.measure), words))
+        elif isinstance(phrase, Equivalent):
+            self.equivalents.append((sentence, phrase))
+        elif isinstance(phrase, Material):
+            if command == "PREPARE" and (phrase.strengths or phrase.ph or phrase.solution):
+                self._inline_title(sentence, phrase)
+            else:
+                self.reagents.append((sentence, phrase))
+
+    def _inline_title(self, sentence: Sentence, phrase: Phrase) -> None:
+        """"To prepare 0.05 mol/L buffer from the stock, dilute ...": a title within a sentence."""
+        title = title_of(replace(sentence, phrases=(phrase,)), "inline")
+        if self.closed or self.current.taken:
+            self._settle_pending()
+            self._next(title)
+        elif title.bare or self.current.title is None or self.current.title.bare:
+            self.current.title = title if not title.bare else self.current.title or title
+        elif title.targets or title.ph or title.volume:
+            own = self.current.title
+            self.current.title = replace(
+                title, volume=title.volume or own.volume, ph=title.ph or own.ph
+            )
+
+    # --- doses and volumes ---------------------------------------------------------------------------
+
+    def _dose(self, sentence: Sentence, dose: Dose, command: str | None) -> None:
+        material = dose.material
+        aims = command in ("PREPARE", "MAKE_UP") and dose.amount.dimension == "volume"
+        if aims and dose.role is None and material is not None and not material.is_water:
+            if material.strengths or material.solution or material.ph:
+                self._inline_title(sentence, dose)
+                return
+        solvent = dose.role == "in" and dose.amount.dimension == "volume"
+        taken = Taken(sentence.text, dose, self.step, solvent)
+        if not self.closed:
+            self.current.taken.append(taken)
+        elif command in _STARTS or solvent or self.pending:
+            self._begin_after_make_up(taken, command)
+        else:
+            self.pending.append(taken)
+
+    def _begin_after_make_up(self, taken: Taken, command: str | None) -> None:
+        if command in _STARTS and not self.pending:
+            self._next()
+            self.current.taken.append(taken)
+        else:
+            self.pending.append(taken)
+
+    def _to_volume(self, text: Text, to: ToVolume) -> None:
+        if self.closed and self.pending:
+            last = self.current.made[-1].to.volume
+            grown = to.volume.base / last.base if to.volume and last and last.base else 0.0
+            if 0.999 <= grown <= _TWO_STAGE:
+                self.current.taken.extend(self.pending)
+            else:
+                pending = self.pending
+                self._next()
+                self.current.taken.extend(pending)
+            self.pending = []
+        self.current.made.append(Made(text, to, self.step, len(self.current.taken)))
+        self.closed = bool(self.current.taken) or self.kind == "line"
+
+    # --- tables ------------------------------------------------------------------------------------
+
+    def rows(self, table: RecipeTable, number: int) -> None:
+        """Take up one amount column of a recipe table."""
+        for row in table.rows:
+            self.step += 1
+            dose = row.doses[number] if number < len(row.doses) else None
+            to = row.to_volumes[number] if number < len(row.to_volumes) else None
+            if dose is not None:
+                self.current.taken.append(Taken(row.text, dose, self.step))
+            if to is not None:
+                if row.kind == "total" and to.volume is not None:
+                    self.current.total = Stated(row.text, to.volume)
+                else:
+                    self.current.made.append(
+                        Made(row.text, to, self.step, len(self.current.taken))
+                    )
+            if dose is None and to is None:
+                for phrase in row.sentence.phrases:
+                    if isinstance(phrase, SetPH):
+                        self.current.adjusted.append(Adjusted(row.text, phrase, self.step, False))

@@ -1,0 +1,281 @@
+"""Which words belong to which preparation.
+
+Headings, bold lines and lead-ins open a scope; a make-up closes a preparation; a line that names a
+solution and says how it is made is a preparation of its own.  Make-up volumes never pass to a
+sibling, volumes of headings pass to children.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Sequence
+from dataclasses import dataclass, field, replace
+
+from soplint.bench.collect import Collector
+from soplint.bench.preparation import Preparation, Stated, Title
+from soplint.bench.title import title_of
+from soplint.notation.document import ReadBlock
+from soplint.notation.phrases import Command, Dose, Equivalent, Material, Sentence, ToVolume
+from soplint.notation.rows import RecipeTable, Variant
+from soplint.quantities.model import Measure
+
+# Sections whose quantities describe equipment, dates or limits, not a recipe.
+_ASIDE = re.compile(
+    r"\b(apparatus|equipment|purpose|scope|records?|references?|revision|history|responsibilit"
+    r"|instrument(?:s|ation)?|personnel|training|definitions?|document control|distribution)\b",
+    re.IGNORECASE,
+)
+
+
+@dataclass(slots=True)
+class Scope:
+    """The preparations of a document and what stands outside them."""
+
+    preparations: list[Preparation] = field(default_factory=list)
+    reagents: list[tuple[Sentence, Material]] = field(default_factory=list)  # listed, with facts
+    equivalents: list[tuple[Sentence, Equivalent]] = field(default_factory=list)
+    tables: list[tuple[RecipeTable, list[Preparation]]] = field(default_factory=list)
+    aside: set[int] = field(default_factory=set)  # blocks set aside whole
+
+
+def scope_of(blocks: Sequence[ReadBlock]) -> Scope:
+    """Divide the document into preparations."""
+    return _Walker(blocks).walk()
+
+
+class _Walker:
+    def __init__(self, blocks: Sequence[ReadBlock]) -> None:
+        self.blocks = blocks
+        self.scope = Scope()
+        self.headings: list[tuple[int, Title]] = []
+        self.lead: Title | None = None
+        self.lead_level = 0  # nesting level of the item that leads, 0 for a paragraph
+        self.aside = False
+        self.section = 0
+        self.collector = Collector(self.scope.reagents, self.scope.equivalents)
+
+    def walk(self) -> Scope:
+        for index, read in enumerate(self.blocks):
+            if read.block.kind == "heading":
+                self._heading(read)
+            elif self.aside:
+                self.scope.aside.add(index)
+            elif read.table is not None:
+                self._table(read.table)
+            elif self._leads(index):
+                self._flush()
+                self.lead = title_of(read.sentences[0], "lead")
+                self.lead_level = read.block.level if read.block.kind == "item" else 0
+                self._open()
+            else:
+                self._leave_lead(read)
+                self._text(read)
+        self._flush()
+        self.scope.preparations = [p for p in self.scope.preparations if _holds(p)]
+        return self.scope
+
+    # --- scopes --------------------------------------------------------------------------------
+
+    def _heading(self, read: ReadBlock) -> None:
+        self._flush()
+        level = read.block.level or 1
+        while self.headings and self.headings[-1][0] >= level:
+            self.headings.pop()
+        self.lead = None
+        self.section += 1
+        if not read.sentences:
+            return
+        title = title_of(read.sentences[0], "document" if level == 1 else "title")
+        self.headings.append((level, title))
+        self.aside = bool(_ASIDE.search(title.words)) and not title.targets and title.volume is None
+        self._open()
+
+    def _open(self) -> None:
+        title, parents = self._title()
+        self.collector.open(title, parents, self.section)
+
+    def _title(self) -> tuple[Title | None, tuple[Title, ...]]:
+        """The nearest title, filled up from above where it names no solution itself."""
+        chain = [title for _, title in reversed(self.headings)]
+        if self.lead is not None:
+            chain.insert(0, self.lead)
+        return (inherit(chain), tuple(chain[1:])) if chain else (None, ())
+
+    def _flush(self) -> None:
+        self.scope.preparations.extend(self.collector.close())
+
+    def _leave_lead(self, read: ReadBlock) -> None:
+        """A lead-in ends where its list ends."""
+        if self.lead is None:
+            return
+        block = read.block
+        if self.lead_level and (block.kind != "item" or block.level <= self.lead_level):
+            self._flush()
+            self.lead = None
+            self._open()
+
+    def _leads(self, index: int) -> bool:
+        """Whether the block at ``index`` opens a scope: a bold line, "Buffer A:", a nesting item."""
+        read = self.blocks[index]
+        block = read.block
+        if len(read.sentences) != 1 or not block.text.chars.strip():
+            return False
+        phrases = read.sentences[0].phrases
+        if any(_is_recipe(phrase) for phrase in phrases):
+            return False
+        following = self.blocks[index + 1].block if index + 1 < len(self.blocks) else None
+        if following is None or following.kind == "heading":
+            return False
+        if block.bold:
+            return True
+        colon = block.text.chars.rstrip().endswith(":")
+        if block.kind == "item":
+            return following.kind == "item" and following.level > block.level
+        if following.kind == "item" or following.table is not None:
+            names = any(isinstance(phrase, (Material, Dose)) for phrase in phrases)
+            return colon or (names and len(block.text.chars) < 120 and not _commands(phrases))
+        return colon and len(block.text.chars) < 100
+
+    # --- contents --------------------------------------------------------------------------------
+
+    def _text(self, read: ReadBlock) -> None:
+        alone = _one_line(read)
+        if alone is not None:
+            self._alone(read, alone)
+            return
+        for sentence in read.sentences:
+            self.collector.sentence(sentence)
+
+    def _alone(self, read: ReadBlock, title: Title) -> None:
+        """A line that names a solution and makes it: its own preparation."""
+        collector = Collector(self.scope.reagents, self.scope.equivalents)
+        _, parents = self._title()
+        collector.open(title, parents, self.section, kind="line")
+        for sentence in read.sentences:
+            collector.sentence(sentence)
+        self.scope.preparations.extend(collector.close())
+
+    def _table(self, table: RecipeTable) -> None:
+        if table.kind == "list":
+            for row in table.rows:
+                self.collector.sentence(row.sentence)
+            return
+        if table.kind != "recipe":
+            return
+        title, parents = self._title()
+        if len(table.variants) == 1 and not self._has_head(table.variants[0]):
+            self.collector.rows(table, 0)
+            return
+        self._flush()
+        made: list[Preparation] = []
+        for number, variant in enumerate(table.variants):
+            head = _variant_title(variant, title)
+            self.collector.open(head, parents, self.section, kind="table")
+            self.collector.rows(table, number)
+            made.extend(self.collector.close())
+        self.scope.tables.append((table, made))
+        self.scope.preparations.extend(made)
+        self._open()
+
+    @staticmethod
+    def _has_head(variant: Variant) -> bool:
+        return bool(variant.volume or variant.fold or variant.name)
+
+
+def inherit(chain: Sequence[Title]) -> Title:
+    """The first title of the chain; what it leaves open is taken from those above.
+
+    A title that names a solution of its own takes nothing but a volume from above; a bare one
+    ("Recipe:", "For 50 mL:") takes everything.
+    """
+    title = chain[0]
+    for above in chain[1:]:
+        if title.bare and not above.bare:
+            title = replace(
+                above,
+                volume=title.volume or above.volume,
+                text=title.text if title.volume else above.text,
+            )
+            break
+        if title.volume is None and above.volume is not None:
+            title = replace(title, volume=above.volume)
+    return title
+
+
+def _variant_title(variant: Variant, title: Title | None) -> Title:
+    """The title of an amount column: its own volume, fold and pH, the rest from above."""
+
+    def stated(measure: Measure | None) -> Stated | None:
+        return Stated(variant.head, measure) if measure is not None else None
+
+    volume, fold, ph = stated(variant.volume), stated(variant.fold), stated(variant.ph)
+    if title is None or variant.name:
+        base = Title(variant.head, variant.name or variant.head.chars, (), ())
+    else:
+        base = title
+    return replace(
+        base,
+        volume=volume or base.volume,
+        fold=fold or base.fold,
+        ph=ph or base.ph,
+        source="column" if volume else base.source,
+    )
+
+
+def _one_line(read: ReadBlock) -> Title | None:
+    """The title of a line such as "0.2 mol/L TCEP: 57 mg in 1 mL of ...", else None."""
+    if not read.sentences or not read.sentences[0].phrases:
+        return None
+    phrases = [phrase for sentence in read.sentences for phrase in sentence.phrases]
+    first = read.sentences[0].phrases[0]
+    head = first.material if isinstance(first, Dose) else first
+    if not isinstance(head, Material) or not head.words:
+        return None
+    makes = any(isinstance(phrase, ToVolume) for phrase in phrases) or any(
+        isinstance(phrase, Dose) and phrase.role == "in" for phrase in phrases
+    )
+    taken = any(isinstance(p, Dose) and p.amount.dimension in ("mass", "volume") for p in phrases)
+    named = bool(head.strengths or head.bracket or head.finals or head.solution)
+    if isinstance(first, Dose):
+        molar = any(m.dimension == "molarity" for m in (*head.strengths, *head.finals))
+        if not (first.amount.dimension == "mass" and molar and makes and head.start == first.start):
+            return None
+    elif not (named and taken and (makes or read.block.kind == "item") and not _facts_only(phrases)):
+        return None
+    sentence = replace(read.sentences[0], phrases=(head,))
+    return title_of(sentence, "line")
+
+
+def _facts_only(phrases: Sequence[object]) -> bool:
+    return not any(isinstance(phrase, (Command, ToVolume)) for phrase in phrases) and not any(
+        isinstance(phrase, Dose) and phrase.amount.dimension == "mass" for phrase in phrases
+    )
+
+
+def _is_recipe(phrase: object) -> bool:
+    """Whether a phrase makes its line part of a recipe, so that the line is no lead-in."""
+    if isinstance(phrase, ToVolume):
+        return not phrase.said_final
+    if not isinstance(phrase, Dose):
+        return False
+    if phrase.amount.dimension != "volume":
+        return phrase.amount.dimension in ("mass", "amount")
+    material = phrase.material
+    if material is None:
+        return False
+    return phrase.command not in (None, "PREPARE", "MAKE_UP")
+
+
+def _commands(phrases: Sequence[object]) -> bool:
+    return any(isinstance(p, Command) and p.kind not in ("PREPARE", "MAKE_UP") for p in phrases)
+
+
+def _holds(preparation: Preparation) -> bool:
+    return bool(
+        preparation.taken
+        or preparation.made
+        or preparation.adjusted
+        or preparation.claimed
+        or preparation.mixed
+        or (preparation.title and (preparation.title.targets or preparation.title.ph))
+    )

@@ -1,0 +1,339 @@
+"""Which doses bring the thing that a strength speaks of, and how much of it."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass
+
+from soplint.bench.facts import Component, Facts, Solution, same_substance, tokens
+from soplint.bench.numbers import ALIQUOT, relative, shown
+from soplint.bench.portions import Portion, candidates, equivalents, portions
+from soplint.bench.preparation import Preparation, Taken
+from soplint.notation.phrases import Material
+from soplint.quantities.model import Measure
+from soplint.substances.model import Substance
+
+# Acid systems whose solutions are no buffers by themselves or are named otherwise.
+SEQUESTRANTS = {"edta"}
+
+
+@dataclass(frozen=True, slots=True)
+class Share:
+    """What one dose brings of a thing, in the base unit of a strength times litres."""
+
+    taken: Taken
+    quantity: float
+    relative: float
+    working: str
+    kind: str  # mass, stock, concentrate, neat, amount
+    reading: str = ""
+    named: bool = True
+    substance: Substance | None = None
+    label: Measure | None = None  # the printed strength of the stock
+
+
+@dataclass(frozen=True, slots=True)
+class Bearers:
+    """Doses that together bring the thing; ``how`` says why they were put together."""
+
+    how: str  # substance, system, stock, solute, words
+    shares: tuple[tuple[Share, ...], ...]  # per dose its readings, nearest to the text first
+
+
+def bearers(
+    preparation: Preparation,
+    material: Material | None,
+    strength: Measure,
+    facts: Facts,
+    order: int,
+) -> Iterator[Bearers]:
+    """The groups of doses that can bear a strength, the most literal first."""
+    doses = [t for t in preparation.taken if not _is_water(t)]
+    if material is not None and (material.match is not None or tokens(material.words)):
+        yield from _named(doses, material, strength, facts, order, preparation)
+        if not material.solution and not (material.match and material.match.generic):
+            return
+    yield from _unnamed(doses, material, strength, facts, order, preparation)
+
+
+def _is_water(taken: Taken) -> bool:
+    material = taken.dose.material
+    return material is not None and material.is_water
+
+
+def _named(
+    doses: list[Taken],
+    material: Material,
+    strength: Measure,
+    facts: Facts,
+    order: int,
+    preparation: Preparation,
+) -> Iterator[Bearers]:
+    """Doses of the substance named, of its acid system, or of a stock that holds it."""
+    members = [(t, _of_substance(t, material, strength, facts, order, preparation)) for t in doses]
+    direct = [(t, s) for t, s in members if s]
+    generic = material.match is not None and material.match.generic
+    if direct and not generic:
+        yield Bearers("substance", tuple(tuple(s) for _, s in direct))
+    systems = _systems(material)
+    if systems:
+        sums = [_of_system(t, systems, strength, facts, order, preparation) for t in doses]
+        kept = tuple(tuple(s) for s in sums if s)
+        if kept and (generic or len(kept) != len(direct)):
+            yield Bearers("system", kept)
+
+
+def _systems(material: Material) -> frozenset[str]:
+    if material.match is None:
+        return frozenset()
+    return frozenset(s.acid_system for s in material.match.substances if s.acid_system)
+
+
+def _of_substance(
+    taken: Taken,
+    material: Material,
+    strength: Measure,
+    facts: Facts,
+    order: int,
+    preparation: Preparation,
+) -> list[Share]:
+    own = taken.dose.material
+    if own is None:
+        return []
+    if same_substance(material, own) or _related(material, own):
+        return shares(taken, strength, facts)
+    solution = _shelf(taken, facts, order, preparation)
+    if solution is None or material.match is None:
+        return []
+    families = {s.family for s in material.match.substances}
+    return list(
+        _from_shelf(taken, solution, strength, lambda s: s.family in families, material)
+    )
+
+
+def _related(material: Material, own: Material) -> bool:
+    """Salt and free form of one substance: "Tris" and "Tris hydrochloride", forms of EDTA."""
+    if material.match is None or own.match is None:
+        return False
+    names = {s.name for s in own.match.substances}
+    return any(names & set(s.other_forms) for s in material.match.substances) and bool(
+        {s.acid_system for s in material.match.substances}
+        & {s.acid_system for s in own.match.substances}
+    )
+
+
+def _of_system(
+    taken: Taken,
+    systems: frozenset[str],
+    strength: Measure,
+    facts: Facts,
+    order: int,
+    preparation: Preparation,
+) -> list[Share]:
+    own = taken.dose.material
+    if own is None:
+        return []
+    if any(s.acid_system in systems for s in candidates(own)):
+        return shares(taken, strength, facts)
+    solution = _shelf(taken, facts, order, preparation)
+    if solution is None:
+        return []
+    return list(_from_shelf(taken, solution, strength, lambda s: s.acid_system in systems, None))
+
+
+def _unnamed(
+    doses: list[Taken],
+    material: Material | None,
+    strength: Measure,
+    facts: Facts,
+    order: int,
+    preparation: Preparation,
+) -> Iterator[Bearers]:
+    """A strength without a name: of the only stock, the only buffer system, the only solute."""
+    stocks = [(t, _by_label(t, material, strength, facts, order, preparation)) for t in doses]
+    kept = [s for _, s in stocks if s]
+    if len(kept) == 1 and len(doses) == 1:
+        yield Bearers("stock", (tuple(kept[0]),))
+        return
+    systems = {
+        s.acid_system
+        for t in doses
+        if t.dose.material is not None
+        for s in candidates(t.dose.material)
+        if s.acid_system and s.acid_system not in SEQUESTRANTS
+    }
+    if len(systems) == 1:
+        one = frozenset(str(s) for s in systems)
+        sums = [_of_system(t, one, strength, facts, order, preparation) for t in doses]
+        group = tuple(tuple(s) for s in sums if s)
+        if group:
+            yield Bearers("system", group)
+            return
+    if len(doses) == 1:
+        found = shares(doses[0], strength, facts)
+        if found:
+            yield Bearers("solute", (tuple(found),))
+
+
+def _by_label(
+    taken: Taken,
+    material: Material | None,
+    strength: Measure,
+    facts: Facts,
+    order: int,
+    preparation: Preparation,
+) -> list[Share]:
+    """c1·V1 with the printed strength of the stock, in the unit of the strength asked for."""
+    dose = taken.dose
+    if dose.material is None or dose.amount.dimension != "volume":
+        return []
+    labels = [m for m in dose.material.strengths if m.dimension == strength.dimension]
+    if not labels:
+        solution = _shelf(taken, facts, order, preparation)
+        labels = [
+            m
+            for m, of in (solution.strengths if solution else ())
+            if m.dimension == strength.dimension and (of is None or _alike(of, material))
+        ]
+    if len(labels) != 1:
+        return []
+    return [_diluted(taken, labels[0])]
+
+
+def _alike(of: Material, material: Material | None) -> bool:
+    if material is None or not tokens(material.words):
+        return True
+    return same_substance(of, material) or bool(_systems(of) & _systems(material))
+
+
+def _diluted(taken: Taken, label: Measure, substance: Substance | None = None) -> Share:
+    amount = taken.dose.amount
+    return Share(
+        taken,
+        amount.base * label.base,
+        relative(amount, ALIQUOT) + relative(label, ALIQUOT),
+        f"{shown(amount)} × {shown(label)}",
+        "stock",
+        substance=substance,
+        label=label,
+    )
+
+
+def _shelf(taken: Taken, facts: Facts, order: int, preparation: Preparation) -> Solution | None:
+    material = taken.dose.material
+    if material is None or material.is_water or taken.dose.amount.dimension != "volume":
+        return None
+    if material.match is not None and material.strengths and not material.solution:
+        return None
+    return facts.solution(material, order, preparation.section)
+
+
+def _from_shelf(
+    taken: Taken,
+    solution: Solution,
+    strength: Measure,
+    fits: Callable[[Substance], bool],
+    material: Material | None,
+) -> Iterator[Share]:
+
+    amount = taken.dose.amount
+    for label, of in solution.strengths:
+        if label.dimension != strength.dimension or of is None or of.match is None:
+            continue
+        if any(fits(s) for s in of.match.substances):
+            yield _diluted(taken, label)
+            return
+    held = [c for c in solution.components if c.substance is not None and fits(c.substance)]
+    total = sum(_in_unit(c, strength) or 0.0 for c in held)
+    if not held or not total:
+        return
+    yield Share(
+        taken,
+        amount.base * total,
+        relative(amount, ALIQUOT) + max(c.relative for c in held),
+        f"{shown(amount)} × {total:.4g} {_base_unit(strength)} ({solution.words})",
+        "stock",
+    )
+
+
+def _in_unit(component: Component, strength: Measure) -> float | None:
+    if strength.dimension in ("molarity", "molality"):
+        return component.mol_per_litre
+    if strength.dimension == "normality" and component.substance is not None:
+        mol = component.mol_per_litre
+        return None if mol is None else mol * equivalents(component.substance)
+    if strength.dimension in ("mass-concentration", "ppm"):
+        return component.gram_per_litre
+    if strength.dimension == "fraction" and component.gram_per_litre is not None:
+        return component.gram_per_litre / 1000
+    return None
+
+
+def _base_unit(strength: Measure) -> str:
+    return {"molarity": "mol/L", "normality": "N", "fraction": "g/mL"}.get(
+        strength.dimension, "g/L"
+    )
+
+
+# --- shares of a dose that names the substance itself ------------------------------------------------
+
+
+def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
+    """What a dose brings in the unit of ``strength``, under each reasonable reading."""
+    material = taken.dose.material
+    if material is None:
+        return []
+    found: list[Share] = []
+    if taken.dose.amount.dimension == "volume":
+        labels = [m for m in material.strengths if m.dimension == strength.dimension]
+        if not labels and not material.finals:
+            labels = [m for m in material.bracket if m.dimension == strength.dimension]
+        label = max(labels, key=lambda m: m.base) if labels else None
+        if label is not None and label is not strength:
+            found.append(_diluted(taken, label))
+    if not found:
+        for portion in portions(taken, facts):
+            found.extend(_as_shares(taken, portion, strength))
+    if not found and strength.dimension in ("mass-concentration", "ppm", "fraction"):
+        found.extend(_by_mass(taken, strength))
+    return found
+
+
+def _by_mass(taken: Taken, strength: Measure) -> Iterator[Share]:
+    """A mass (or neat volume) of something without a formula."""
+    amount = taken.dose.amount
+    if amount.dimension == "mass":
+        scale = 1000.0 if strength.dimension == "fraction" else 1.0
+        yield Share(taken, amount.base / scale, relative(amount, 0.05), shown(amount), "mass")
+    elif amount.dimension == "volume" and strength.dimension == "fraction":
+        yield Share(taken, amount.base, relative(amount, ALIQUOT), shown(amount), "neat")
+
+
+def _as_shares(taken: Taken, portion: Portion, strength: Measure) -> Iterator[Share]:
+    kind = "mass" if taken.dose.amount.dimension == "mass" else "stock"
+    if portion.concentrate:
+        kind = "concentrate"
+    grams = portion.grams
+
+    def share(quantity: float, working: str, reading: str = portion.reading) -> Share:
+        return Share(
+            taken, quantity, portion.relative, working, kind, reading, portion.named,
+            portion.substance,
+        )  # fmt: skip
+
+    if strength.dimension in ("molarity", "molality") and portion.moles is not None:
+        yield share(portion.moles, portion.working)
+    elif strength.dimension == "normality" and portion.moles is not None:
+        z = equivalents(portion.substance) if portion.substance else 1
+        yield share(portion.moles * z, f"{portion.working} × {z}" if z > 1 else portion.working)
+    elif strength.dimension in ("mass-concentration", "ppm") and grams is not None:
+        yield share(grams, f"{grams:.4g} g")
+    elif strength.dimension == "fraction":
+        volume = taken.dose.amount
+        if volume.dimension == "volume" and strength.basis in (None, "v/v"):
+            yield Share(
+                taken, volume.base, relative(volume, ALIQUOT), shown(volume), "neat",
+                "v/v", True, portion.substance,
+            )  # fmt: skip
+        if grams is not None and strength.basis in (None, "w/v", "w/w"):
+            yield share(grams / 1000, f"{grams:.4g} g", portion.reading or "w/v")

@@ -1,0 +1,96 @@
+"""What a heading or lead-in says: names, strengths, pH, volume."""
+
+from __future__ import annotations
+
+import re
+
+from soplint.bench.preparation import Stated, Target, Title
+from soplint.notation.phrases import Claim, Dose, Loose, Material, Mixture, Sentence, SetPH, ToVolume
+from soplint.notation.phrases import Phrase
+from soplint.quantities.model import Measure
+
+_STRENGTHS = {
+    *("molarity", "molality", "normality", "mass-concentration", "fraction", "ppm"),
+    *("activity-concentration", "osmolality"),
+}
+_NUMBER = re.compile(r"^\s*(?:\d+(?:\.\d+)*|[a-zA-Z])[.)]\s+")
+
+
+def title_of(sentence: Sentence, source: str = "title") -> Title:
+    """The title that a heading or lead-in sentence makes."""
+    reader = _Title(sentence, source)
+    for phrase in sentence.phrases:
+        reader.take(phrase)
+    return reader.title()
+
+
+class _Title:
+    def __init__(self, sentence: Sentence, source: str) -> None:
+        self.sentence = sentence
+        self.source = source
+        self.materials: list[Material] = []
+        self.targets: list[Target] = []
+        self.fold: Stated | None = None
+        self.ph: Stated | None = None
+        self.temperature: Measure | None = None
+        self.volume: Stated | None = None
+
+    def take(self, phrase: Phrase) -> None:
+        if isinstance(phrase, Material):
+            self._material(phrase)
+        elif isinstance(phrase, Dose):
+            if phrase.amount.dimension == "volume" and self.volume is None:
+                self.volume = self._stated(phrase.amount)
+            if phrase.material is not None:
+                self._material(phrase.material)
+        elif isinstance(phrase, ToVolume) and phrase.volume is not None:
+            self.volume = self.volume or self._stated(phrase.volume)
+        elif isinstance(phrase, SetPH) and phrase.ph is not None:
+            self.ph = self.ph or self._stated(phrase.ph)
+            self.temperature = self.temperature or phrase.temperature
+        elif isinstance(phrase, Claim):
+            if phrase.kind == "pH":
+                self.ph = self.ph or self._stated(phrase.measure)
+            elif phrase.material is None:
+                self._strength(phrase.measure, None)
+            else:
+                self._material(phrase.material)
+        elif isinstance(phrase, Mixture):
+            self.materials.extend(phrase.materials)
+        elif isinstance(phrase, Loose) and phrase.measure.dimension == "temperature":
+            self.temperature = self.temperature or phrase.measure
+
+    def _material(self, material: Material) -> None:
+        if material.words and (material.match is not None or material.solution or material.strengths):
+            self.materials.append(material)
+        if material.ph is not None and self.ph is None:
+            self.ph = self._stated(material.ph)
+        self.temperature = self.temperature or material.temperature
+        for strength in (*material.strengths, *material.finals, *material.bracket):
+            if strength.dimension == "volume" and self.volume is None:
+                self.volume = self._stated(strength)
+            else:
+                self._strength(strength, material if material.words else None)
+
+    def _strength(self, strength: Measure, material: Material | None) -> None:
+        if strength.dimension == "fold":
+            self.fold = self.fold or self._stated(strength)
+        elif strength.dimension in _STRENGTHS:
+            self.targets.append(Target(self._stated(strength), material, self.source))
+
+    def _stated(self, measure: Measure) -> Stated:
+        return Stated(self.sentence.text, measure)
+
+    def title(self) -> Title:
+        chars = self.sentence.text.chars.strip().rstrip(":").strip()
+        return Title(
+            self.sentence.text,
+            _NUMBER.sub("", chars),
+            tuple(self.materials),
+            tuple(self.targets),
+            self.fold,
+            self.ph,
+            self.temperature,
+            self.volume,
+            self.source,
+        )
