@@ -4,11 +4,13 @@ from __future__ import annotations
 
 from typing import NamedTuple
 
-from soplint.quantities.leads import NOTHING, Lead, read_lead
+from soplint.quantities.late import LatePattern
+from soplint.quantities.leads import Lead, read_lead
 from soplint.quantities.noise import identifier_end, not_a_quantity, token_end
-from soplint.quantities.numerals import VULGAR, Numeral, read_numeral, with_space_groups
+from soplint.quantities.numerals import Numeral, read_numeral, with_space_groups
 from soplint.quantities.style import NumberStyle
 from soplint.quantities.unit_reader import ReadUnit, read_unit
+from soplint.quantities.units import unit_table
 from soplint.quantities.words import read_word
 
 
@@ -19,19 +21,16 @@ class Item(NamedTuple):
     unit: ReadUnit | None
     lead: Lead
     start: int  # of the numeral or its sign
-    negative: bool = False
+    end: int  # of the unit, or of the numeral without one
     normality: bool = False  # "N/50"
 
-    @property
-    def end(self) -> int:
-        """End of the unit, or of the numeral without one."""
-        return self.unit.end if self.unit is not None else self.numeral.end
 
-
+_OF_VOLUME = LatePattern(r" (?:the )?(?:final |total )*(?:volume|water)")
 _SPACES = " \u00a0\u2009\u202f"
 _MINUS = "-−–"
 _HYDRATE_DOTS = "·•∙⋅"
-_GLUED_BEFORE = {"ph", "рн", "рh", "pн", "mw", "fw", "mr", "ca", "approx", "about", "x", "pka"}
+_GLUED_BEFORE = {"ph", "рн", "рh", "pн", "mw", "fw", "mr", "x", "pka"}
+_GLUED_ABOUT = {"ca", "approx", "about"}  # not "Ca", as in "Ca2+"
 _ATTACHED_UNITS = {"mass", "volume", "molarity", "mass-concentration", "fraction", "normality"}
 
 
@@ -60,7 +59,9 @@ def read_item(chars: str, at: int, style: NumberStyle) -> Item | int:
             numeral, unit = grouped
     if unit is None and attached and chars[at - 1] == "/":
         return _over_number(chars, at, numeral, lead)
-    if attached and (unit is None or unit.unit.dimension not in _ATTACHED_UNITS):
+    if attached and (
+        unit is None or (chars[at - 1] != "/" and unit.unit.dimension not in _ATTACHED_UNITS)
+    ):
         return identifier_end(chars, at)
     if unit is None:
         end = not_a_quantity(chars, start, numeral.end, numeral.value)
@@ -70,7 +71,11 @@ def read_item(chars: str, at: int, style: NumberStyle) -> Item | int:
             return identifier_end(chars, at)
     elif not _fits(numeral, unit):
         unit = None
-    return _signed(chars, Item(numeral, unit, lead, start), attached)
+    return _signed(
+        chars,
+        Item(numeral, unit, lead, start, unit.end if unit is not None else numeral.end),
+        attached,
+    )
 
 
 def read_word_item(chars: str, at: int) -> Item | int:
@@ -79,15 +84,17 @@ def read_word_item(chars: str, at: int) -> Item | int:
     if numeral is None:
         return at + 1
     unit = read_unit(chars, numeral.end)
-    if unit is None and numeral.kind == "word" and chars.startswith("fold", numeral.end):
-        unit = read_unit(f" {chars[numeral.end : numeral.end + 5]}", 0)
-        unit = unit and unit._replace(end=numeral.end + 4)
+    if unit is None and chars.startswith("fold", numeral.end):
+        unit = ReadUnit(unit_table()["X"], numeral.end + 4)
+    if unit is None and numeral.value < 1 and _OF_VOLUME.match(chars, numeral.end):
+        end = at + len(chars[at : numeral.end].removesuffix(" of"))
+        return Item(numeral._replace(end=end), None, read_lead(chars, at), at, end)
     written = chars[numeral.end : unit.end].strip() if unit is not None else ""
-    if unit is None or (len(written) < 2 and written not in ("L", "l", "g")) or written == "in":
+    if unit is None or (len(written) < 2 and written not in ("L", "l", "g")):
         return numeral.end
     if unit.unit.dimension in ("money", "count") and unit.unit.symbol != "drop":
         return unit.end
-    return Item(numeral, unit, read_lead(chars, at), at)
+    return Item(numeral, unit, read_lead(chars, at), at, unit.end)
 
 
 def _key_before(chars: str, at: int) -> bool:
@@ -96,7 +103,8 @@ def _key_before(chars: str, at: int) -> bool:
         begin -= 1
     if begin and (chars[begin - 1].isalnum() or chars[begin - 1] == "_"):
         return False
-    return chars[begin:at].lower() in _GLUED_BEFORE
+    word = chars[begin:at]
+    return word in _GLUED_ABOUT or word.lower() in _GLUED_BEFORE
 
 
 def _point_start(chars: str, at: int) -> int:
@@ -147,9 +155,9 @@ def _over_number(chars: str, at: int, numeral: Numeral, lead: Lead) -> Item | in
     if letter in "NM" and (at == 2 or not chars[at - 3].isalnum()) and numeral.value >= 1:
         value = 1 / numeral.value
         inverse = numeral._replace(value=value, half=value * 0.005, digits=2, kind="fraction")
-        return Item(inverse, None, lead, at - 2, normality=True)
+        return Item(inverse, None, lead, at - 2, numeral.end, normality=True)
     if chars[at - 2].isdigit():
-        return Item(numeral, None, lead, at)
+        return Item(numeral, None, lead, at, numeral.end)
     return identifier_end(chars, at)
 
 
@@ -167,8 +175,5 @@ def _signed(chars: str, item: Item, attached: bool) -> Item:
     dimension = item.unit.unit.dimension if item.unit is not None else ""
     if dimension in ("", "temperature", "voltage", "energy", "other"):
         numeral = item.numeral._replace(value=-item.numeral.value)
-        return item._replace(numeral=numeral, start=at - 1, negative=True)
+        return item._replace(numeral=numeral, start=at - 1)
     return item
-
-
-__all__ = ["NOTHING", "VULGAR", "Item", "read_item", "read_word_item"]

@@ -6,6 +6,7 @@ import re
 from typing import NamedTuple
 
 from soplint.quantities.items import Item
+from soplint.quantities.late import LatePattern
 from soplint.quantities.numerals import Numeral, read_numeral
 from soplint.quantities.style import NumberStyle
 from soplint.quantities.unit_reader import _BASIS, ReadUnit, basis_name, read_unit
@@ -36,13 +37,14 @@ _JOINT = re.compile(
     r"|(?P<colon> ?[:∶](?! )| : ))[ \u00a0]?(?=[-−]?\.?[0-9])"
     r"| (?P<word>to|and|in) (?=[-−]?\.?[0-9])"
 )
-_FIRST = frozenset(" \u00a0±+-–—−~.…:∶")
-_CHANGES = re.compile(
+_NEXT_PART = LatePattern(r" ?[:∶] ?(?=\.?[0-9])")
+_FIRST = frozenset("\u00a0±+-–—−~.…:∶tai")
+_CHANGES = LatePattern(
     r"\b(?:dilut|add|bring|brought|ma[dk]e|fill|transfer|top|adjust|rais|reduc|concentrat|chang"
     r"|increas|decreas|pipett|dispens|pour|put|from|up)", re.IGNORECASE
 )  # fmt: skip
-_PARTS_NEAR = re.compile(r"dilut|part|ratio|v/v|\bmix", re.IGNORECASE)
-_SLASH_RATIO = re.compile(r"([0-9.]+)[/⁄]([0-9.]+)$")
+_PARTS_NEAR = LatePattern(r"dilut|part|ratio|v/v|\bmix", re.IGNORECASE)
+_SLASH_RATIO = LatePattern(r"([0-9.]+)[/⁄]([0-9.]+)$")
 
 
 def join(chars: str, item: Item, style: NumberStyle) -> Joined | None:
@@ -50,6 +52,8 @@ def join(chars: str, item: Item, style: NumberStyle) -> Joined | None:
     if item.numeral.kind == "fraction" and item.unit is None:
         return _slash_ratio(chars, item)
     after = chars[item.end : item.end + 1]
+    if after == " ":
+        after = chars[item.end + 1 : item.end + 2]
     if not after or after not in _FIRST:
         return None
     found = _JOINT.match(chars, item.end)
@@ -222,8 +226,8 @@ def _plus_ratio(chars: str, item: Item, second: Numeral, unit: ReadUnit | None) 
 def _ratio(chars: str, item: Item, style: NumberStyle) -> Joined | None:
     parts, last, end = [item.numeral.value], item.numeral, item.numeral.end
     while len(parts) < MAX_PARTS:
-        found = _JOINT.match(chars, end)
-        if found is None or found.lastgroup != "colon":
+        found = _JOINT.match(chars, end) if len(parts) == 1 else _NEXT_PART.match(chars, end)
+        if found is None or (len(parts) == 1 and found.lastgroup != "colon"):
             break
         numeral = read_numeral(chars, found.end(), style)
         if numeral is None or chars[numeral.end : numeral.end + 1].isalpha():

@@ -76,7 +76,11 @@ def read_lead(chars: str, start: int) -> Lead:
     """
     if start == 0:
         return NOTHING
-    floor = max(0, start - 40)
+    floor = start - 40 if start > 40 else 0
+    if chars[start - 1] == " ":
+        word = chars[chars.rfind(" ", floor, start - 1) + 1 : start - 1]
+        if word.isalpha() and word.lower() not in _WORDS:
+            return NOTHING
     at, sign, manner, gap = _signs(chars, start, floor)
     last = chars[at - 1 : at]
     if not last or (last not in _LAST and last.lower() not in _LAST):
@@ -120,6 +124,9 @@ def _signs(chars: str, start: int, floor: int) -> tuple[int, str, str, str]:
 
 
 def _word_start(chars: str, at: int, floor: int) -> int:
+    begin = max(chars.rfind(" ", floor, at) + 1, floor)
+    if chars[begin:at].isalpha():
+        return begin
     begin = at
     while begin > floor:
         char = chars[begin - 1]

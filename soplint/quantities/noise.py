@@ -4,11 +4,13 @@ from __future__ import annotations
 
 import re
 
+from soplint.quantities.late import LatePattern
+
 _MONTHS = (
     r"(?:Jan(?:uary)?|Feb(?:ruary)?|Mar(?:ch)?|Apr(?:il)?|May|June?|July?|Aug(?:ust)?"
     r"|Sept?(?:ember)?|Oct(?:ober)?|Nov(?:ember)?|Dec(?:ember)?)"
 )
-_DATE = re.compile(
+_DATE = LatePattern(
     r"[12][0-9]{3}-[01][0-9](?:-[0-3][0-9])?(?![0-9])"
     r"|[0-3]?[0-9][./][0-3]?[0-9][./](?:[12][0-9]{3}|[0-9]{2})(?![0-9])"
     r"|[01]?[0-9]/[12][0-9]{3}(?![0-9])"
@@ -16,16 +18,16 @@ _DATE = re.compile(
     r"|[0-9]+(?:\.[0-9]+){2,}"
     r"|[0-9]{2,7}-[0-9]{2}-[0-9](?![0-9])"
 )
-_CLOCK = re.compile(
+_CLOCK = LatePattern(
     r"(?P<hour>[01]?[0-9]|2[0-4]):(?P<minute>[0-5][0-9])(?P<second>:[0-5][0-9])?(?![0-9:.])"
     r"(?P<after> ?(?:am|pm|a\.m|p\.m|AM|PM|h(?:rs?)?|min|o'clock|Uhr)(?!\w))?"
 )
-_CLOCK_BEFORE = re.compile(r"(?:\bat|until|till|before|after|since|from|to|time:?) $")
-_RATIO_NEAR = re.compile(r"dilut|ratio|v/v|w/w|mix|part|mobile|eluent|split", re.IGNORECASE)
+_CLOCK_BEFORE = LatePattern(r"(?:\bat|until|till|before|after|since|from|to|time:?) $")
+_RATIO_NEAR = LatePattern(r"dilut|ratio|v/v|w/w|mix|part|mobile|eluent|split", re.IGNORECASE)
 _HYDRATE = re.compile(r" ?[xX*·•∙⋅.]? ?(?:H2O|H20|H₂O|h2o|D2O|HOH|Н2О|Н2O|H2О)(?![0-9])")
 _TOKEN = re.compile(r"\w+(?:\.[0-9]+)*")
-_DASHED = re.compile(r"[\w.]*\w(?:[-–/][\w.]*\w)*")
-_IN_NAME = re.compile(r"[-‑][A-Za-z(\[]|['′’](?![0-9])")
+_DASHED = LatePattern(r"[\w.]*\w(?:[-–/][\w.]*\w)*")
+_IN_NAME = LatePattern(r"[-‑][A-Za-z(\[]|['′’](?![0-9])")
 
 
 def token_end(chars: str, start: int) -> int:

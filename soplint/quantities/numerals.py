@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from typing import NamedTuple
 
+from soplint.quantities.late import LatePattern
 from soplint.quantities.style import NumberStyle
 
 MAX_DIGITS = 30  # a longer run of digits is no quantity
@@ -21,6 +22,7 @@ class Numeral(NamedTuple):
     kind: str  # digits, power, fraction, word
     flags: tuple[str, ...] = ()
     alternatives: tuple[float, ...] = ()
+    places: int = 0  # decimals as written
     before_comma: Numeral | None = None  # the number it is if the comma only separates: "6,50 mM"
 
 
@@ -28,17 +30,21 @@ VULGAR = {
     "½": 0.5, "⅓": 1 / 3, "⅔": 2 / 3, "¼": 0.25, "¾": 0.75, "⅕": 0.2, "⅖": 0.4, "⅗": 0.6,
     "⅘": 0.8, "⅙": 1 / 6, "⅚": 5 / 6, "⅛": 0.125, "⅜": 0.375, "⅝": 0.625, "⅞": 0.875, "⅒": 0.1,
 }  # fmt: skip
+_HALF = tuple(float(f"5e-{places + 1}") for places in range(12))
+_TAIL_FIRST = frozenset("x×X*·⋅∙eE^/⁄⁻⁺⁰¹²³⁴⁵⁶⁷⁸⁹0123456789") | frozenset(VULGAR)
 _SUPERSCRIPTS = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺−–", "0123456789-+--")
 _BODY = re.compile(r"([0-9]*)((?:,[0-9]+)*)(\.[0-9]+)?")
-_SPACED = re.compile(r"(?:[ \u00a0\u2009\u202f'’][0-9]{3})+(?![0-9])")
-_POWER = re.compile(
+_SPACED = LatePattern(r"(?:[ \u00a0\u2009\u202f'’][0-9]{3})+(?![0-9])")
+_POWER = LatePattern(
     r" ?[x×X*·⋅∙] ?10 ?(?:(?:\^|\*\*) ?[{(]?([-−–+]?[0-9]{1,3})[})]?|([⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]{1,3}))"
 )
-_E_POWER = re.compile(r"[eE]([-−–+]?[0-9]{1,3})(?!\w)")
-_TEN_POWER = re.compile(r"(?:\^|\*\*) ?[{(]?([-−–+]?[0-9]{1,3})[})]?|([⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]{1,3})")
-_LOST_POWER = re.compile(r" ?[x×X] ?10([0-9])(?= ?(?:cells?|CFU|cfu|spores)\b)")
-_FRACTION = re.compile(r"[/⁄]([1-9][0-9]{0,3})(?![0-9]|[/.,][0-9])")
-_MIXED = re.compile(r" ([0-9]{1,2})[/⁄]([1-9][0-9]?)(?![\w/.])")
+_E_POWER = LatePattern(r"[eE]([-−–+]?[0-9]{1,3})(?!\w)")
+_TEN_POWER = LatePattern(r"(?:\^|\*\*) ?[{(]?([-−–+]?[0-9]{1,3})[})]?|([⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]{1,3})")
+_LOST_POWER = LatePattern(
+    r" ?[x×X] ?10(?:([0-9])(?= ?(?:cells?|CFU|cfu|spores)\b)|([-−–][1-9])(?![0-9.,]))"
+)
+_FRACTION = LatePattern(r"[/⁄]([1-9][0-9]{0,3})(?![0-9]|[/.,][0-9])")
+_MIXED = LatePattern(r" ([0-9]{1,2})[/⁄]([1-9][0-9]?)(?![\w/.])")
 
 
 def read_numeral(chars: str, start: int, style: NumberStyle) -> Numeral | None:
@@ -60,11 +66,25 @@ def read_numeral(chars: str, start: int, style: NumberStyle) -> Numeral | None:
         return None
     if commas:
         return _with_commas(chars, start, end, style)
-    numeral = decimal(start, end, head, point[1:] if point else "")
+    if head and (point is None or len(point) <= len(_HALF)):
+        places = len(point) - 1 if point else 0
+        written = body.group()
+        digits = len(written) - (places > 0) if head[0] != "0" else _significant(written)
+        numeral = Numeral(
+            start, end, float(written), _HALF[places], digits, "digits", (), (), places
+        )
+    else:
+        numeral = decimal(start, end, head, point[1:] if point else "")
     following = chars[end : end + 1]
-    if following and following in " x×X*·⋅∙eE^/⁄⁻⁺⁰¹²³⁴⁵⁶⁷⁸⁹½⅓⅔¼¾⅕⅛":
+    if following == " ":
+        following = chars[end + 1 : end + 2]
+    if following and following in _TAIL_FIRST:
         return _with_tail(chars, numeral, head if not point else "")
     return numeral
+
+
+def _significant(written: str) -> int:
+    return len(written.replace(".", "").lstrip("0")) or 1
 
 
 def decimal(start: int, end: int, head: str, places: str, exponent: int = 0) -> Numeral:
@@ -74,7 +94,7 @@ def decimal(start: int, end: int, head: str, places: str, exponent: int = 0) -> 
     digits = len(significant) or 1
     half = float(f"5e{exponent - len(places) - 1}")
     flags = () if head else ("leading-dot",)
-    return Numeral(start, end, value, half, digits, "digits", flags)
+    return Numeral(start, end, value, half, digits, "digits", flags, (), len(places))
 
 
 def _exact(start: int, end: int, value: float) -> Numeral:

@@ -6,20 +6,22 @@ import re
 
 from soplint.quantities.items import Item, read_item, read_word_item
 from soplint.quantities.joints import Joined, join
+from soplint.quantities.late import LatePattern
 from soplint.quantities.model import Measure
+from soplint.quantities.noise import identifier_end
 from soplint.quantities.style import DEFAULT, NumberStyle
 from soplint.quantities.unit_reader import ReadUnit
 from soplint.quantities.units import Unit, unit_table
-from soplint.quantities.words import STARTS
+from soplint.quantities.words import STARTS, has_number_word
 
 _DIGIT = re.compile(r"[0-9½⅓⅔¼¾⅕⅖⅗⅘⅙⅚⅛⅜⅝⅞⅒]")
-_SPIN = re.compile(r"spin|spun|centrifug|pellet|rcf|rpm|x ?g\b|×", re.IGNORECASE)
-_WASH = re.compile(r"\b(?:wash|rins|repeat|vortex|invert|spin|extract|flush)", re.IGNORECASE)
-_REPEATS = re.compile(r"(?:with|for|in|and|at|then|after|each)\b|[.,;)]|$", re.IGNORECASE)
-_FORCE_AFTER = re.compile(
+_SPIN = LatePattern(r"spin|spun|centrifug|pellet|rcf|rpm|x ?g\b|×", re.IGNORECASE)
+_WASH = LatePattern(r"\b(?:wash|rins|repeat|vortex|invert|spin|extract|flush)", re.IGNORECASE)
+_REPEATS = LatePattern(r"(?:with|for|in|and|at|then|after|each)\b|[.,;)]|$", re.IGNORECASE)
+_FORCE_AFTER = LatePattern(
     r" ?(?:for\b|at\b|,|;|\)|\.|/|[0-9]|$|x\b|\(|to\b|max|rt\b)", re.IGNORECASE
 )
-_WEIGHED = re.compile(r"weigh|add|take|dissolv|total", re.IGNORECASE)
+_WEIGHED = LatePattern(r"weigh|add|take|dissolv|total", re.IGNORECASE)
 _EXACT = frozenset(("fold", "count", "volumes"))
 _PLAIN = Unit("", "number", 1.0, "", "1")
 _PH = Unit("pH", "pH", 1.0, "pH", "1")
@@ -44,7 +46,9 @@ def find_measures(chars: str, style: NumberStyle = DEFAULT) -> list[Measure]:
         [(34.0, 'mL', 'volume'), (0.5, 'M', 'molarity')]
     """
     found = _DIGIT.search(chars)
-    word = STARTS.search(chars)
+    word = STARTS.search(chars) if has_number_word(chars) else None
+    if found is None and word is None:
+        return []
     measures: list[Measure] = []
     while found is not None or word is not None:
         if word is not None and (found is None or word.start() < found.start()):
@@ -67,6 +71,8 @@ def _measure(chars: str, item: Item, style: NumberStyle, measures: list[Measure]
     """Turn an item into a measure, put it on the list, and say where to go on."""
     joined = join(chars, item, style)
     if joined is None:
+        if item.unit is None and item.lead.kind != "pH" and _in_identifier(chars, item.end):
+            return identifier_end(chars, item.end)
         measure = _single(chars, item, measures)
     elif joined.manner == "ratio":
         measure = _ratio(item, joined)
@@ -74,6 +80,11 @@ def _measure(chars: str, item: Item, style: NumberStyle, measures: list[Measure]
         measure = _joined(chars, item, joined, measures)
     measures.append(measure)
     return measure.end
+
+
+def _in_identifier(chars: str, end: int) -> bool:
+    """Whether a hyphen glues more digits to a bare number that makes no range with them."""
+    return chars[end : end + 1] == "-" and chars[end + 1 : end + 2].isdigit()
 
 
 def _unit(chars: str, item: Item, read: ReadUnit | None, measures: list[Measure]) -> Unit:
@@ -161,14 +172,18 @@ def _single(chars: str, item: Item, measures: list[Measure]) -> Measure:
         flags = (*flags, "unit-slip")
     if manner == "about":
         half = max(half, 0.2) if unit is _PH else max(half, abs(value) * 0.1)
+    if half >= 1e-9:  # free of the last binary digits' noise
+        low, high = round(value - half, 12), round(value + half, 12)
+    else:
+        low, high = value - half, value + half
     start = lead.start if lead.kind == "pH" and unit is _PH and lead.adjacent else item.start
     return Measure(
         start,
         item.end,
         unit.dimension,
         value,
-        _shift(value, -half),
-        _shift(value, half),
+        low,
+        high,
         unit.symbol,
         unit.factor,
         numeral.digits,
@@ -179,7 +194,7 @@ def _single(chars: str, item: Item, measures: list[Measure]) -> Measure:
         flags,
         unit.offset,
         (item.start, numeral.end),
-        _decimals(chars, numeral.start, numeral.end),
+        numeral.places,
     )
 
 
@@ -189,20 +204,6 @@ def _plus_minus(unit: Unit, flags: tuple[str, ...]) -> tuple[str, tuple[str, ...
     return "tolerance", (*flags, "plus-minus")
 
 
-def _shift(value: float, by: float) -> float:
-    """A bound of an interval, free of the last binary digits' noise."""
-    return float(f"{value + by:.12g}")
-
-
-def _decimals(chars: str, start: int, end: int) -> int:
-    text = chars[start:end]
-    for sign in ".,":
-        at = text.rfind(sign)
-        if at >= 0 and text[at + 1 :].isdigit():
-            return len(text) - at - 1
-    return 0
-
-
 def _joined(chars: str, item: Item, joined: Joined, measures: list[Measure]) -> Measure:
     unit = _unit(chars, item._replace(unit=joined.unit), joined.unit, measures)
     tolerance = joined.manner == "tolerance"
@@ -210,7 +211,6 @@ def _joined(chars: str, item: Item, joined: Joined, measures: list[Measure]) -> 
     start = joined.start if joined.start >= 0 else item.start
     if unit is _PH and item.lead.adjacent and item.lead.kind == "pH":
         start = item.lead.start
-    like = joined.places_like
     return Measure(
         start,
         joined.end,
@@ -228,7 +228,7 @@ def _joined(chars: str, item: Item, joined: Joined, measures: list[Measure]) -> 
         flags,
         unit.offset,
         (item.start, joined.numeral_end),
-        _decimals(chars, like.start, like.end),
+        joined.places_like.places,
     )
 
 

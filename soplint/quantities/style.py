@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Iterable
 from dataclasses import dataclass
+
+from soplint.quantities.late import LatePattern
 
 
 @dataclass(frozen=True, slots=True)
@@ -35,14 +36,14 @@ class NumberStyle:
 
 DEFAULT = NumberStyle()
 
-_DECIMAL_COMMA = re.compile(
+_DECIMAL_COMMA = LatePattern(
     r"(?<![\w.,])(?:0,\d+|\d+,(?:\d{1,2}|\d{4,}))"
     r"(?=\s?(?:[%‰°]|(?:[mkunpµμ]?(?:g|l|L|M|mol|Mol)|gram|[мкн]{0,2}[гМл]|мкл|mm|cm)(?!\w)))"
 )
-_ZERO_COMMA = re.compile(r"(?<![\w.,])0,\d*[1-9](?!\d*[,\w])")
-_PH_COMMA = re.compile(r"\bp[Hh]\s?[=:~]?\s?1?\d,\d{1,2}(?![\d,]|\s?[munµμ]?[MLlg]\b)")
-_THOUSANDS = re.compile(r"(?<![\w.,])[1-9]\d{0,2}(?:(?:,\d{3}){2,}|,\d{3}\.\d)(?![\d,])")
-_POINT = re.compile(r"(?<![\w.,])\d+\.\d+(?=\s?(?:[%‰°]|[mkunpµμ]?(?:g|l|L|M|mol)(?!\w)))")
+_ZERO_COMMA = LatePattern(r"(?<![\w.,])0,\d*[1-9](?!\d*[,\w])")
+_PH_COMMA = LatePattern(r"\bp[Hh]\s?[=:~]?\s?1?\d,\d{1,2}(?![\d,]|\s?[munµμ]?[MLlg]\b)")
+_THOUSANDS = LatePattern(r"(?<![\w.,])[1-9]\d{0,2}(?:(?:,\d{3}){2,}|,\d{3}\.\d)(?![\d,])")
+_POINT = LatePattern(r"(?<![\w.,])\d+\.\d+(?=\s?(?:[%‰°]|[mkunpµμ]?(?:g|l|L|M|mol)(?!\w)))")
 
 
 def number_style(texts: Iterable[str]) -> NumberStyle:
@@ -57,9 +58,9 @@ def number_style(texts: Iterable[str]) -> NumberStyle:
     decimal = thousands = points = 0
     for text in texts:
         if "," in text:
-            decimal += len(_DECIMAL_COMMA.findall(text)) or len(_ZERO_COMMA.findall(text))
-            decimal += len(_PH_COMMA.findall(text))
-            thousands += len(_THOUSANDS.findall(text))
+            decimal += _DECIMAL_COMMA.count(text) or _ZERO_COMMA.count(text)
+            decimal += _PH_COMMA.count(text)
+            thousands += _THOUSANDS.count(text)
         if "." in text:
-            points += len(_POINT.findall(text))
+            points += _POINT.count(text)
     return NumberStyle(decimal, thousands, points)

@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from typing import NamedTuple
 
+from soplint.quantities.late import LatePattern
 from soplint.quantities.units import Unit, lookup_unit, unit_table
 
 
@@ -28,22 +29,22 @@ _OVER = re.compile(
     r"|[ ·⋅*.]?(?P<inverse>[A-Za-zµμ]+)(?P<power>(?:\^\{?)?[-−–]1\}?|⁻¹)(?!\w)"
     r"|[ ·⋅*.]?(?P<cubed>d?c?m)(?:(?:\^\{?)?[-−–]3\}?|⁻³)(?!\w)"
 )
-_OVER_FIRST = frozenset("/·⋅*.")
-_BASIS = re.compile(
+_OVER_FIRST = frozenset("/·⋅*.pLlmdckKgsµμh")
+_BASIS = LatePattern(
     r" ?[(\[]? ?(?P<basis>(?:w|v|m|wt|vol|W|V|M|Vol|Wt)\.? ?[/:] ?(?:w|v|m|wt|vol|W|V|M|Vol|Wt)\.?"
     r"|by (?:volume|weight|mass|vol\.?|wt\.?)|wt\.?(?!\w)|vol\.?(?!\w)|weight(?!\w)|mol(?!\w)"
     r"|об\.?|мас\.?)(?!\w)(?: ?[)\]])?"
 )
 _BASIS_FIRST = frozenset("([wvmbWVMоm")
-_NO_STRENGTH = re.compile(
+_NO_STRENGTH = LatePattern(
     r" ?\(?(?:RH|rel|relative humidity|humidity|confluen|transmi|recover|yield|efficien|of the time)"
 )
-_PERCENT_WORDS = re.compile(
+_PERCENT_WORDS = LatePattern(
     r"[ -]?(?P<basis>w/v|v/v|w/w|m/v|m/m|wt|vol|mol|mass|weight|at)?\.?[ -]{0,2}"
     r"(?:%|per ?cent(?!\w))(?P<more>.)?", re.IGNORECASE
 )  # fmt: skip
-_DEGREES = re.compile(r" ?(C|F|[Cc]elsius|[Ff]ahrenheit|[Cc]entigrade)(?!\w)")
-_WARE = re.compile(
+_DEGREES = LatePattern(r" ?(C|F|[Cc]elsius|[Ff]ahrenheit|[Cc]entigrade)(?!\w)")
+_WARE = LatePattern(
     r".{0,24}?\b(?:filter|membrane|pore|nylon|PES|PVDF|PTFE|syringe|cellulose|mesh)", re.IGNORECASE
 )
 _NO_UNIT = frozenset(("A", "S", "pm", "MU", "time"))
@@ -70,7 +71,7 @@ def read_unit(chars: str, end: int) -> ReadUnit | None:
         return _percent(chars, stop, None)
     first = word[0]
     if first in "°º˚":
-        return _degree(word, stop)
+        return _degree(chars, word, stop)
     if first in "×✕":
         return ReadUnit(unit_table()["×g" if "g" in word else "X"], stop)
     if first in "xX":
@@ -86,7 +87,9 @@ def read_unit(chars: str, end: int) -> ReadUnit | None:
         return _two_words(chars, "vol" if unit.symbol == "vol" else "mol", found.start(2), stop)
     flags = (word,) if unit.slip else ()
     after = chars[stop : stop + 1]
-    if after and (after in _OVER_FIRST or after == " " or after in "LlmdckKgµμ"):
+    if after == " ":
+        after = chars[stop + 1 : stop + 2]
+    if after and after in _OVER_FIRST:
         compound = _compound(chars, unit, stop, flags)
         if compound is not None:
             return compound
@@ -142,7 +145,11 @@ def _two_words(chars: str, word: str, start: int, stop: int) -> ReadUnit | None:
     return None
 
 
-def _degree(word: str, stop: int) -> ReadUnit:
+def _degree(chars: str, word: str, stop: int) -> ReadUnit:
+    if chars[stop : stop + 1] == "/":
+        rate = _compound(chars, unit_table()["°C"], stop, ())
+        if rate is not None:
+            return rate
     if word[-1] == "F":
         return ReadUnit(unit_table()["°F"], stop)
     flags = ("no-scale",) if len(word.strip()) == 1 else ()

@@ -6,12 +6,12 @@ loaded only for a unit that the table does not hold.
 
 from __future__ import annotations
 
+import os
 import re
 from dataclasses import dataclass
 from functools import lru_cache
-from pathlib import Path
 
-_TABLE = Path(__file__).with_name("data") / "units.csv"
+_TABLE = os.path.join(os.path.dirname(__file__), "data", "units.csv")
 _DIMENSIONLESS = frozenset({"fraction", "ppm"})
 
 
@@ -44,7 +44,7 @@ def unit_table() -> dict[str, Unit]:
         'µg'
     """
     table: dict[str, Unit] = {}
-    with _TABLE.open(encoding="utf-8") as lines:
+    with open(_TABLE, encoding="utf-8") as lines:
         for line in lines:
             if line.startswith("#") or line.startswith("spelling,"):
                 continue

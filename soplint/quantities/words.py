@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 
+from soplint.quantities.late import LatePattern
 from soplint.quantities.numerals import Numeral
 
 _UNITS = {
@@ -13,14 +14,24 @@ _UNITS = {
 }  # fmt: skip
 _PARTS = {"half": 2, "third": 3, "quarter": 4, "fifth": 5, "eighth": 8, "tenth": 10}
 _ALL = "|".join((*_UNITS, *_PARTS))
-STARTS = re.compile(rf"(?<![\w-])(?:{_ALL})(?=[ -]|fold)", re.IGNORECASE)
-_READ = re.compile(
+STARTS = LatePattern(rf"(?<![\w-])(?:{_ALL})(?=[ -]|fold)", re.IGNORECASE)
+_READ = LatePattern(
     rf"(?P<whole>{'|'.join(_UNITS)})(?:[ -](?P<small>one|two|three|four|five|six|seven|eight|nine))?"
     rf"(?:(?P<and> and a half)|[ -](?P<part>hal(?:f|ves)|thirds?|quarters?|fifths?|eighths?|tenths?)"
     r"(?: of)?(?: an?)?)?"
     rf"|(?P<alone>{'|'.join(_PARTS)})(?: of)?(?: an?)?",
     re.IGNORECASE,
 )
+
+
+_PLAIN_WORDS = frozenset((*_UNITS, *_PARTS))
+
+
+def has_number_word(chars: str) -> bool:
+    """Whether a line may hold a number word; a quick look that most lines fail."""
+    if "fold" in chars:
+        return True
+    return not _PLAIN_WORDS.isdisjoint(chars.lower().replace("(", " ").replace("-", " ").split())
 
 
 def read_word(chars: str, start: int) -> Numeral | None:
