@@ -38,7 +38,7 @@ _JOINT = re.compile(
     r"| (?P<word>to|and|in) (?=[-−]?\.?[0-9])"
 )
 _NEXT_PART = LatePattern(r" ?[:∶] ?(?=\.?[0-9])")
-_FIRST = frozenset("\u00a0±+-–—−~.…:∶tai")
+JOINT_FIRST = frozenset("\u00a0±+-–—−~.…:∶tai")
 _CHANGES = LatePattern(
     r"\b(?:dilut|add|bring|brought|ma[dk]e|fill|transfer|top|adjust|rais|reduc|concentrat|chang"
     r"|increas|decreas|pipett|dispens|pour|put|from|up)", re.IGNORECASE
@@ -54,7 +54,7 @@ def join(chars: str, item: Item, style: NumberStyle) -> Joined | None:
     after = chars[item.end : item.end + 1]
     if after == " ":
         after = chars[item.end + 1 : item.end + 2]
-    if not after or after not in _FIRST:
+    if not after or after not in JOINT_FIRST:
         return None
     found = _JOINT.match(chars, item.end)
     if found is None:

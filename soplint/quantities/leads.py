@@ -67,6 +67,11 @@ _KEYS = {"pH", "pKa", "molar-mass", "density"}
 _LAST = frozenset("".join(word[-1] for word in _WORDS) + "HKWMRDV")
 
 
+def is_lead_word(word: str) -> bool:
+    """Whether a word before a number can say something about it."""
+    return word.lower() in _WORDS
+
+
 def read_lead(chars: str, start: int) -> Lead:
     """Read backwards from the number at ``start``; at most five words and forty characters.
 

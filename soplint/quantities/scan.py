@@ -9,10 +9,11 @@ from soplint.quantities.joints import Joined, join
 from soplint.quantities.late import LatePattern
 from soplint.quantities.model import Measure
 from soplint.quantities.noise import identifier_end
+from soplint.quantities.quick import quick_measure
 from soplint.quantities.style import DEFAULT, NumberStyle
 from soplint.quantities.unit_reader import ReadUnit
 from soplint.quantities.units import Unit, unit_table
-from soplint.quantities.words import STARTS, has_number_word
+from soplint.quantities.words import lower_if_number_words, next_word
 
 _DIGIT = re.compile(r"[0-9½⅓⅔¼¾⅕⅖⅗⅘⅙⅚⅛⅜⅝⅞⅒]")
 _SPIN = LatePattern(r"spin|spun|centrifug|pellet|rcf|rpm|x ?g\b|×", re.IGNORECASE)
@@ -46,24 +47,24 @@ def find_measures(chars: str, style: NumberStyle = DEFAULT) -> list[Measure]:
         [(34.0, 'mL', 'volume'), (0.5, 'M', 'molarity')]
     """
     found = _DIGIT.search(chars)
-    word = STARTS.search(chars) if has_number_word(chars) else None
-    if found is None and word is None:
-        return []
+    lower = lower_if_number_words(chars)
+    word = next_word(lower, 0) if lower else -1
     measures: list[Measure] = []
-    while found is not None or word is not None:
-        if word is not None and (found is None or word.start() < found.start()):
-            item = read_word_item(chars, word.start())
+    while found is not None or word >= 0:
+        if found is None or 0 <= word < found.start():
+            item = read_word_item(chars, word)
         else:
-            assert found is not None
+            quick = quick_measure(chars, found.start())
+            if quick is not None:
+                measures.append(quick)
+                found = _DIGIT.search(chars, quick.end)
+                continue
             item = read_item(chars, found.start(), style)
-        if isinstance(item, int):
-            end = item
-        else:
-            end = _measure(chars, item, style, measures)
+        end = item if isinstance(item, int) else _measure(chars, item, style, measures)
         if found is not None and found.start() < end:
             found = _DIGIT.search(chars, end)
-        if word is not None and word.start() < end:
-            word = STARTS.search(chars, end)
+        if 0 <= word < end:
+            word = next_word(lower, end)
     return measures
 
 

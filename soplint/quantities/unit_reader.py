@@ -29,7 +29,7 @@ _OVER = re.compile(
     r"|[ ·⋅*.]?(?P<inverse>[A-Za-zµμ]+)(?P<power>(?:\^\{?)?[-−–]1\}?|⁻¹)(?!\w)"
     r"|[ ·⋅*.]?(?P<cubed>d?c?m)(?:(?:\^\{?)?[-−–]3\}?|⁻³)(?!\w)"
 )
-_OVER_FIRST = frozenset("/·⋅*.pLlmdckKgsµμh")
+OVER_FIRST = frozenset("/·⋅*.pLlmdckKgsµμh")
 _BASIS = LatePattern(
     r" ?[(\[]? ?(?P<basis>(?:w|v|m|wt|vol|W|V|M|Vol|Wt)\.? ?[/:] ?(?:w|v|m|wt|vol|W|V|M|Vol|Wt)\.?"
     r"|by (?:volume|weight|mass|vol\.?|wt\.?)|wt\.?(?!\w)|vol\.?(?!\w)|weight(?!\w)|mol(?!\w)"
@@ -89,7 +89,7 @@ def read_unit(chars: str, end: int) -> ReadUnit | None:
     after = chars[stop : stop + 1]
     if after == " ":
         after = chars[stop + 1 : stop + 2]
-    if after and after in _OVER_FIRST:
+    if after and after in OVER_FIRST:
         compound = _compound(chars, unit, stop, flags)
         if compound is not None:
             return compound

@@ -14,7 +14,7 @@ _UNITS = {
 }  # fmt: skip
 _PARTS = {"half": 2, "third": 3, "quarter": 4, "fifth": 5, "eighth": 8, "tenth": 10}
 _ALL = "|".join((*_UNITS, *_PARTS))
-STARTS = LatePattern(rf"(?<![\w-])(?:{_ALL})(?=[ -]|fold)", re.IGNORECASE)
+_STARTS = LatePattern(rf"(?:{_ALL})(?=[ -]|fold)")
 _READ = LatePattern(
     rf"(?P<whole>{'|'.join(_UNITS)})(?:[ -](?P<small>one|two|three|four|five|six|seven|eight|nine))?"
     rf"(?:(?P<and> and a half)|[ -](?P<part>hal(?:f|ves)|thirds?|quarters?|fifths?|eighths?|tenths?)"
@@ -27,11 +27,25 @@ _READ = LatePattern(
 _PLAIN_WORDS = frozenset((*_UNITS, *_PARTS))
 
 
-def has_number_word(chars: str) -> bool:
-    """Whether a line may hold a number word; a quick look that most lines fail."""
-    if "fold" in chars:
-        return True
-    return not _PLAIN_WORDS.isdisjoint(chars.lower().replace("(", " ").replace("-", " ").split())
+def lower_if_number_words(chars: str) -> str:
+    """The line in lower case if it may hold a number word, else "": most lines hold none."""
+    lower = chars.lower()
+    if "fold" not in lower:
+        words = lower.replace("(", " ").replace("-", " ").split()
+        if _PLAIN_WORDS.isdisjoint(words):
+            return ""
+    return lower if len(lower) == len(chars) else chars
+
+
+def next_word(lower: str, at: int) -> int:
+    """Where the next number word begins in a line in lower case; -1 where there is none."""
+    found = _STARTS.search(lower, at)
+    while found is not None:
+        start = found.start()
+        if start == 0 or not (lower[start - 1].isalnum() or lower[start - 1] in "-_"):
+            return start
+        found = _STARTS.search(lower, found.end())
+    return -1
 
 
 def read_word(chars: str, start: int) -> Numeral | None:
