@@ -290,7 +290,37 @@ def _relation(preparation: Preparation, balance: Balance, ways: int) -> Relation
         one_figure=target.stated.measure.digits <= 1,
         note=_scale_note(balance),
         several=ways > 0,
+        members=() if single or balance.closes else tuple(_members(preparation, balance)),
     )
+
+
+def _members(preparation: Preparation, balance: Balance) -> Iterator[Relation]:
+    """Each dose of a sum, with the amount that the others leave to it."""
+    for share in balance.chosen:
+        left = balance.wanted - (balance.given - share.quantity)
+        measure = share.taken.dose.amount
+        if left <= 0 or share.quantity <= 0:
+            continue
+        value = measure.nominal * left / share.quantity
+        half = value * balance.spread
+        others = " − ".join(f"({s.working})" for s in balance.chosen if s is not share)
+        yield Relation(
+            share.kind,
+            share.taken.stated,
+            _name(share, balance.target),
+            Interval(value, measure.unit, value - half, value + half),
+            False,
+            measure.nominal / value - 1,
+            f"{shown(balance.target.stated.measure)} × {_volume_shown(balance.volume)} − {others}"
+            f" leaves {value:.4g} {measure.unit}",
+            (balance.target.stated, *(s.taken.stated for s in balance.chosen if s is not share)),
+            share.reading,
+            preparation,
+            balance.volume,
+            balance.target.stated,
+            share.taken,
+            share.substance,
+        )
 
 
 def _name(share: Share, target: Target) -> str | None:

@@ -9,7 +9,7 @@ from soplint.findings.model import Interval
 from soplint.substances.model import Substance
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True, slots=True, eq=False)
 class Relation:
     """One tested relation.
 
@@ -36,3 +36,4 @@ class Relation:
     one_figure: bool = False  # the nominal strength has one figure
     note: str = ""
     several: bool = False  # another reading of the target was possible as well
+    members: tuple[Relation, ...] = ()  # of a sum: each member, as if the others were right

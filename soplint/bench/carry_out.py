@@ -1,0 +1,101 @@
+"""Carry a document out: preparations, shelf, relations, ledger."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass, field
+
+from soplint.bench.acidity import ph_relations
+from soplint.bench.balances import balance_relations
+from soplint.bench.entries import Reading, enter_all
+from soplint.bench.facts import Facts
+from soplint.bench.labels import equivalent_relation, label_relation, molar_mass_relation
+from soplint.bench.ledger import Ledger
+from soplint.bench.parts import fold_relations, ratio_relations, sum_relations
+from soplint.bench.preparation import Preparation
+from soplint.bench.relation import Relation
+from soplint.bench.scope import Scope, scope_of
+from soplint.bench.shelf import stock_shelf
+from soplint.bench.volumes import final_volume
+from soplint.notation.document import ReadBlock
+from soplint.notation.phrases import Dose, Material, Sentence
+
+
+@dataclass(slots=True)
+class Bench:
+    """Everything that the checks look at."""
+
+    blocks: Sequence[ReadBlock]
+    scope: Scope
+    facts: Facts
+    ledger: Ledger
+    reading: Reading
+    relations: list[Relation] = field(default_factory=list)
+
+    @property
+    def preparations(self) -> list[Preparation]:
+        """The preparations in order of the document."""
+        return self.scope.preparations
+
+
+def carry_out(blocks: Sequence[ReadBlock]) -> Bench:
+    """Carry out every preparation and test every relation.
+
+    The ledger holds all stated quantities afterwards; those that relations closed agree, those
+    that a relation disproves wait for the checks, which decide what is shown.
+    """
+    scope = scope_of(blocks)
+    facts = Facts([material for _, material in scope.reagents])
+    making = [p for p in scope.preparations if p.taken]
+    for preparation in scope.preparations:
+        preparation.volume = final_volume(preparation)
+        preparation.sole = len(making) == 1 and preparation.taken != []
+    stock_shelf(scope.preparations, facts)
+    ledger = Ledger()
+    bench = Bench(blocks, scope, facts, ledger, enter_all(ledger, blocks, scope))
+    for relation in _relations(bench):
+        bench.relations.append(relation)
+    _close(bench)
+    return bench
+
+
+def _relations(bench: Bench) -> Iterator[Relation]:
+    for order, preparation in enumerate(bench.preparations):
+        yield from balance_relations(preparation, bench.facts, order)
+        yield from fold_relations(preparation, bench.facts, order)
+        yield from sum_relations(preparation)
+        yield from ratio_relations(preparation)
+        yield from ph_relations(preparation, bench.facts, order)
+    for sentence, material in _materials(bench.blocks):
+        for relation in (
+            molar_mass_relation(sentence.text, material),
+            label_relation(sentence.text, material),
+        ):
+            if relation is not None:
+                yield relation
+    for sentence, equivalent in bench.scope.equivalents:
+        relation = equivalent_relation(sentence.text, equivalent)
+        if relation is not None:
+            yield relation
+
+
+def _materials(blocks: Sequence[ReadBlock]) -> Iterator[tuple[Sentence, Material]]:
+    """Every material of the document, those of doses included."""
+    for block in blocks:
+        for sentence in block.sentences:
+            for phrase in sentence.phrases:
+                if isinstance(phrase, Material):
+                    yield sentence, phrase
+                elif isinstance(phrase, Dose) and phrase.material is not None:
+                    yield sentence, phrase.material
+
+
+def _close(bench: Bench) -> None:
+    """Enter what agrees; what disagrees is left to the checks."""
+    broken = {r.tested.key for r in bench.relations if not r.agrees}
+    for relation in bench.relations:
+        if relation.agrees:
+            bench.ledger.agree(relation.tested, relation.computed, relation.working)
+            for stated in relation.inputs:
+                if stated.key not in broken:
+                    bench.ledger.agree(stated, None, relation.working)

@@ -1,0 +1,165 @@
+"""Which quantities of a document are listed in the ledger, and what is set aside."""
+
+from __future__ import annotations
+
+from collections import Counter
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass, field
+
+from soplint.bench.ledger import ROLES, Ledger
+from soplint.bench.preparation import Stated
+from soplint.bench.scope import Scope
+from soplint.notation.document import ReadBlock
+from soplint.notation.phrases import (
+    Claim,
+    Command,
+    Dose,
+    Equivalent,
+    Loose,
+    Material,
+    Mixture,
+    Phrase,
+    Sentence,
+    SetPH,
+    ToVolume,
+    Ware,
+)
+from soplint.quantities.model import Measure
+
+_NOISE_COMMANDS = {"WASH", "STORE", "FILTER", "REPEAT"}
+_UNIT_FREE = {"number", "time", "money", "count", "other"}
+
+
+@dataclass(slots=True)
+class Reading:
+    """What was read of the sentences that hold a quantity."""
+
+    with_quantities: int = 0
+    read: int = 0
+    unread: list[tuple[int, str, Sentence]] = field(default_factory=list)
+    set_aside: Counter[str] = field(default_factory=Counter)
+
+
+def enter_all(ledger: Ledger, blocks: Sequence[ReadBlock], scope: Scope) -> Reading:
+    """List every quantity of a solution, recipe or titration; count what is set aside."""
+    reading = Reading()
+    for index, block in enumerate(blocks):
+        aside = index in scope.aside
+        for sentence in block.sentences:
+            _sentence(ledger, sentence, aside, reading)
+        if block.table is not None and block.table.kind != "other":
+            for variant in block.table.variants:
+                for measure in (variant.volume, variant.fold, variant.ph):
+                    if measure is not None:
+                        ledger.enter(Stated(variant.head, measure))
+    return reading
+
+
+def _sentence(ledger: Ledger, sentence: Sentence, aside: bool, reading: Reading) -> None:
+    bound = {} if aside else dict(_bound(sentence))
+    counts = False
+    for measure in sentence.measures:
+        key = (measure.start, measure.end)
+        if key in bound:
+            of, reason = bound[key]
+            ledger.enter(Stated(sentence.text, measure), of, reason)
+            counts = True
+        elif measure.dimension not in _UNIT_FREE:
+            reading.set_aside["ware" if aside else measure.dimension] += 1
+    if counts:
+        reading.with_quantities += 1
+        if any(reason != "unread" for _, reason in bound.values()):
+            reading.read += 1
+    loose = [] if aside else list(_unbound(sentence))
+    if loose and not counts:
+        reading.with_quantities += 1
+        line = sentence.text.place(loose[0].start)[0]
+        reading.unread.append((line, sentence.text.chars.strip(), sentence))
+    for measure in loose:
+        ledger.enter(Stated(sentence.text, measure), None, "not-recomputable")
+
+
+def _bound(sentence: Sentence) -> Iterator[tuple[tuple[int, int], tuple[str | None, str]]]:
+    """Quantities that a phrase took up, with what they are quantities of and a first reason."""
+    command: str | None = None
+    for phrase in sentence.phrases:
+        if isinstance(phrase, Command):
+            command = phrase.kind
+        elif command not in _NOISE_COMMANDS:
+            for measure, material in _quantities(phrase):
+                if measure.dimension in ROLES:
+                    yield (measure.start, measure.end), (_name(material), _reason(material))
+
+
+def _quantities(phrase: Phrase) -> Iterator[tuple[Measure, Material | None]]:
+    if isinstance(phrase, Dose):
+        if phrase.material is not None or phrase.role is not None:
+            yield phrase.amount, phrase.material
+            yield from ((m, phrase.material) for m in phrase.same)
+        if phrase.material is not None:
+            yield from _of_material(phrase.material)
+        for other in phrase.alternatives:
+            yield from _quantities(other)
+    elif isinstance(phrase, Material):
+        yield from _of_material(phrase)
+    elif isinstance(phrase, ToVolume):
+        if phrase.volume is not None:
+            yield phrase.volume, phrase.diluent
+    elif isinstance(phrase, SetPH):
+        if phrase.ph is not None:
+            yield phrase.ph, None
+        if phrase.temperature is not None:
+            yield phrase.temperature, None
+        for reagent in phrase.reagents:
+            yield from _of_material(reagent)
+        for dose in phrase.doses:
+            yield from _quantities(dose)
+    elif isinstance(phrase, Claim):
+        yield phrase.measure, phrase.material
+        if phrase.material is not None:
+            yield from _of_material(phrase.material)
+    elif isinstance(phrase, Equivalent):
+        yield from _of_material(phrase.titrant)
+        yield from _quantities(phrase.mass)
+        if phrase.volume is not None:
+            yield phrase.volume, phrase.titrant
+    elif isinstance(phrase, Mixture):
+        yield phrase.ratio, None
+        for material in phrase.materials:
+            yield from _of_material(material)
+
+
+def _of_material(material: Material) -> Iterator[tuple[Measure, Material | None]]:
+    single = (material.ph, material.temperature, material.molar_mass, material.density)
+    for measure in (*material.strengths, *material.bracket, *material.finals, *single):
+        if measure is not None:
+            yield measure, material
+
+
+def _name(material: Material | None) -> str | None:
+    if material is None:
+        return None
+    if material.match is not None and material.match.substances:
+        if material.match.form_named or len(material.match.substances) == 1:
+            return material.match.substances[0].name
+        return material.match.written
+    return material.words or None
+
+
+def _reason(material: Material | None) -> str:
+    if material is not None and material.words and material.match is None and not material.solution:
+        return "substance-unknown"
+    return "given"
+
+
+def _unbound(sentence: Sentence) -> Iterator[Measure]:
+    """Masses, volumes and strengths that no phrase took up: the sentence was not understood."""
+    command: str | None = None
+    for phrase in sentence.phrases:
+        if isinstance(phrase, Command):
+            command = phrase.kind
+        elif isinstance(phrase, (Loose, Ware)) or command in _NOISE_COMMANDS:
+            continue
+        elif isinstance(phrase, Dose) and phrase.material is None and phrase.role is None:
+            if phrase.amount.dimension in ("mass", "volume", "amount"):
+                yield phrase.amount

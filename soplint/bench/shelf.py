@@ -1,0 +1,79 @@
+"""Put the finished solutions of a document on the shelf, with name, label and composition."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+
+from soplint.bench.facts import Component, Facts, Solution, tokens
+from soplint.bench.portions import portions
+from soplint.bench.preparation import Preparation
+from soplint.quantities.model import Measure
+
+
+def stock_shelf(preparations: Sequence[Preparation], facts: Facts) -> None:
+    """Fill ``facts.solutions``; solutions made of other solutions need a second round."""
+    for _ in range(2):
+        facts.solutions = [
+            solution
+            for order, preparation in enumerate(preparations)
+            if (solution := _solution(preparation, order, facts)) is not None
+        ]
+
+
+def _solution(preparation: Preparation, order: int, facts: Facts) -> Solution | None:
+    title = preparation.title
+    if title is None or not (preparation.taken or title.targets or title.fold):
+        return None
+    adjusted = [a.set_ph.ph for a in preparation.adjusted if a.set_ph.ph is not None]
+    ph: Measure | None = adjusted[-1] if adjusted else (title.ph.measure if title.ph else None)
+    return Solution(
+        title.words,
+        tokens(title.words),
+        tuple((t.stated.measure, t.material) for t in title.targets),
+        title.fold.measure if title.fold else None,
+        ph,
+        tuple(_components(preparation, order, facts)),
+        order,
+        preparation.section,
+    )
+
+
+def _components(preparation: Preparation, order: int, facts: Facts) -> Iterator[Component]:
+    volume = preparation.volume
+    if volume is None or volume.litres <= 0:
+        return
+    for taken in preparation.taken:
+        material = taken.dose.material
+        if material is None or material.is_water:
+            continue
+        found = portions(taken, facts)
+        if found:
+            best = found[0]
+            yield Component(
+                best.substance,
+                material.words,
+                best.moles / volume.litres if best.moles is not None else None,
+                best.grams / volume.litres if best.grams is not None else None,
+                best.relative + volume.relative,
+            )
+            continue
+        if taken.dose.amount.dimension != "volume":
+            yield Component(None, material.words, None, None, 0.05)
+            continue
+        source = facts.solution(material, order, preparation.section)
+        if source is None or source.order == order:
+            yield Component(None, material.words, None, None, 0.05)
+            continue
+        share = taken.dose.amount.base / volume.litres
+        for component in source.components:
+            yield Component(
+                component.substance,
+                component.words,
+                _times(component.mol_per_litre, share),
+                _times(component.gram_per_litre, share),
+                component.relative + volume.relative,
+            )
+
+
+def _times(value: float | None, factor: float) -> float | None:
+    return None if value is None else value * factor
