@@ -10,9 +10,16 @@ from itertools import combinations
 from soplint.equilibria.dissociation import Dissociation, table_rows
 from soplint.equilibria.formulas import Atoms, parse_formula
 
-_METALS = frozenset("Na K Li Rb Cs Ag Mg Ca Sr Ba Zn Cu Fe Mn Co Ni Pb Sn Hg Al".split())
-_HYDRATED = frozenset(("borate", "sulfite", "silicate", "chromate"))
+_METALS = frozenset("Na K Li Rb Cs Ag Mg Ca Sr Ba Zn Cu Cd Fe Mn Co Ni Pb Sn Hg Al La Ce".split())
+_HYDRATED = frozenset(("borate", "sulfite", "silicate", "chromate", "arsenite"))
 """Systems whose neutral reagents may differ from the acid form by water (oxides)."""
+
+
+_INORGANIC = frozenset(("carbonate", "cyanide", "SCN-", "Fe(CN)6 3-", "Fe(CN)6 4-", "cyanate"))
+
+
+_COMPANIONS = frozenset(("ammonia", "sulfate", "Cl-", "Br-", "I-", "NO3-", "ClO4-", "SCN-"))
+_COMMON = frozenset(("Cl-", "Br-", "I-", "NO3-", "ClO4-", "SCN-"))
 
 
 @dataclass(frozen=True, slots=True)
@@ -119,8 +126,12 @@ def _metal_sets(metals: list[Component]) -> list[tuple[Component, ...]]:
     return sets
 
 
+def _organic(part: Component) -> bool:
+    return "C" in dict(part.atoms) and part.name not in _INORGANIC
+
+
 def _sensible(split: Split) -> bool:
-    """Water may be taken up only by oxides, anhydrides and hydroxides."""
+    """Water may be taken up only by oxides and hydroxides."""
     acids = [part.name for part, _ in split.parts if part.acid]
     if split.water == 0:
         return True
@@ -130,50 +141,73 @@ def _sensible(split: Split) -> bool:
         return split.water == 1 and len(split.parts) == 1
     if acids == ["carbonate"]:
         return len(split.parts) == 1
-    return len(acids) == 1 and acids[0] in _HYDRATED
+    core = [name for name in acids if name != "ammonia"]
+    return len(core) == 1 and core[0] in _HYDRATED
 
 
-def _rank(split: Split) -> tuple[int, bool]:
-    """Organic strong ions and second acid systems are unlikely; so is water exchanged."""
-    acids = sum(part.acid for part, _ in split.parts)
-    organic = sum(not part.acid and "C" in dict(part.atoms) for part, _ in split.parts)
-    return organic + max(acids - 1, 0), split.water != 0
+def _holds(split: Split, hint: str | None) -> bool:
+    return hint is None or any(part.name == hint for part, _ in split.parts)
 
 
-def find_split(atoms: Atoms) -> Split | None:
+def _rank(split: Split) -> tuple[int, bool, int]:
+    """Rare strong ions and second acid systems are unlikely; so is water exchanged."""
+    acids = sum(part.acid and part.name != "ammonia" for part, _ in split.parts)
+    rare = sum(not part.acid and not _common(part) for part, _ in split.parts)
+    whole = sum(part.acid for part, _ in split.parts)
+    return rare + max(acids - 1, 0), split.water != 0, whole
+
+
+def _common(part: Component) -> bool:
+    return part.name in _COMMON or part.atoms[0][0] in _METALS
+
+
+def _choices(others: list[Component], size: int) -> Iterator[tuple[Component, ...]]:
+    """Sets of `size` parts: one of any kind, the rest common companions of salts."""
+    companions = [part for part in others if part.name in _COMPANIONS]
+    if not size:
+        yield ()
+        return
+    for main in others:
+        for rest in combinations([part for part in companions if part is not main], size - 1):
+            yield (main, *rest)
+
+
+def find_split(atoms: Atoms, hint: str | None = None) -> Split | None:
     """The simplest way to take a neutral formula apart, or None.
 
-    Fewest parts first; among acids of one formula the order of `acid_forms.csv` decides.
+    Fewest parts first; `hint` names an acid system that must be among them. Among acids
+    of one formula the order of `acid_forms.csv` decides.
 
     >>> found = find_split(parse_formula("Na2B4O7")[0])
     >>> found.water if found else None
     -5
     """
-    if len(atoms) > 8 or sum(atoms.values()) > 400:
+    if len(atoms) > 8 or sum(atoms.values()) > 120:
         return None
     metals, others = _candidates(atoms)
-    for size in range(4 if len(others) <= 12 else 3):
+    for size in range(4):
         found = [
             split
             for chosen in _metal_sets(metals)
-            for parts in combinations(others, size)
+            for parts in _choices(others, size)
             for split in splits(atoms, (*chosen, *parts))
-            if split.parts and _sensible(split)
+            if split.parts and _sensible(split) and _holds(split, hint)
         ]
         if found:
             return min(found, key=_rank)
     return None
 
 
-def decompose(atoms: Atoms, name: str) -> Dissociation | None:
+def decompose(atoms: Atoms, name: str, hint: str | None = None) -> Dissociation | None:
     """The dissociation of a neutral formula that stands in no table, or None.
 
-    Parameters: atoms, without water of crystallisation; name, for the result.
+    Parameters: atoms, without water of crystallisation; name, for the result; hint,
+    an acid system that must be among the parts.
 
     >>> decompose(parse_formula("C3H5KO3")[0], "potassium lactate").ions
     (('K+', 1.0),)
     """
-    split = find_split(atoms)
+    split = find_split(atoms, hint)
     return None if split is None else from_split(split, name)
 
 

@@ -58,6 +58,6 @@ def acid_systems_of(name_or_formula: str) -> dict[str, float]:
     Errors: UnknownSubstanceError.
 
     >>> acid_systems_of("ammonium dihydrogen phosphate")
-    {'ammonia': 1.0, 'phosphate': 1.0}
+    {'phosphate': 1.0, 'ammonia': 1.0}
     """
     return dict(dissociation(name_or_formula).systems)

@@ -8,15 +8,19 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from functools import lru_cache
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from soplint.equilibria.errors import EquilibriumError, UnknownSubstanceError
-from soplint.equilibria.formulas import key, parse_formula
+from soplint.equilibria.formulas import adducts, key, parse_formula
+
+if TYPE_CHECKING:
+    from soplint.substances import Substance
 
 _DATA = Path(__file__).parent / "data"
 _SPACES = re.compile(r"[\s_]+")
 _STRENGTH = re.compile(r"\s*,?\s*\(?(?:about )?\d[\d.,-]*\s*%.*$")
 _WATER = re.compile(
-    r",?\s*\(?(?:anhydrous|(?:mono|di|tri|tetra|penta|hexa|hepta|octa|nona|deca|dodeca)?hydrate)\)?$"
+    r",?\s*\(?(?:anhydrous|pure|(?:mono|di|tri|tetra|penta|hexa|hepta|octa|nona|deca|dodeca)?hydrate)\)?$"
 )
 
 
@@ -121,17 +125,76 @@ def _by_name(text: str) -> Dissociation | None:
     return None
 
 
-def _by_formula(text: str) -> Dissociation | None:
+def _by_formula(text: str, hint: str | None = None) -> Dissociation | None:
     from soplint.equilibria.composition import decompose
 
     try:
+        parts, _ = adducts(text)
         atoms, _ = parse_formula(text)
     except EquilibriumError:
         return None
     found = _index()[1].get(key(atoms))
+    if found is not None and (hint is None or hint in dict(found.systems)):
+        return found
+    if len(parts) > 1:
+        pieces = [(times, _index()[1].get(key(part))) for times, part in parts]
+        whole = _joined(text, pieces)
+        if whole is not None:
+            return whole
+    return decompose(atoms, text, hint)
+
+
+def _joined(name: str, pieces: list[tuple[int, Dissociation | None]]) -> Dissociation | None:
+    """An adduct such as C4H11NO3·HCl from what its parts bring, when all are known."""
+    systems: dict[str, float] = {}
+    ions: dict[str, float] = {}
+    for times, piece in pieces:
+        if piece is None:
+            return None
+        for label, count in piece.systems:
+            systems[label] = systems.get(label, 0.0) + times * count
+        for label, count in piece.ions:
+            ions[label] = ions.get(label, 0.0) + times * count
+    return Dissociation(name, tuple(systems.items()), tuple(ions.items()), "dissociates", ())
+
+
+def _by_catalogue(text: str) -> Dissociation | None:
+    """Through the catalogue of reagents, which knows more names and formulas."""
+    from soplint.substances import lookup
+
+    match = lookup(text)
+    if match is None or match.generic or not match.substances:
+        return None
+    return _of_substance(match.substances[0])
+
+
+_SOLVENT = re.compile(r"solvent|^oil$")
+_NEUTRAL = re.compile(r"^(?:sugar|polyol|neutral organic|adsorbent|gelling agent|wax|monomer)\b")
+_COMPLEX = re.compile(r"^(?:protein|serum|medium|polymer|surfactant|nucleic acid|dye|indicator)")
+
+
+def _of_substance(substance: Substance) -> Dissociation | None:
+    """By what the catalogue says of a substance: its names, its kind, last its formula.
+
+    A neutral organic formula alone does not tell which acid it is, so it is not trusted.
+    """
+    found = _by_name(substance.name)
     if found is not None:
         return found
-    return decompose(atoms, text)
+    if _SOLVENT.search(substance.kind):
+        return Dissociation(substance.name, (), (), "solvent", ())
+    if substance.acid_system is None and _NEUTRAL.search(substance.kind):
+        return Dissociation(substance.name, (), (), "neutral", ())
+    split = _by_formula(substance.formula, substance.acid_system) if substance.formula else None
+    if split is not None and (substance.acid_system or split.ions or not _has_carbon(substance)):
+        return split
+    level = "edge" if _COMPLEX.search(substance.kind) else "outside"
+    note = f"{level}: acid-base behaviour of {substance.name} is not in the model"
+    return Dissociation(substance.name, (), (), "neutral", (note,))
+
+
+def _has_carbon(substance: Substance) -> bool:
+    return "C" in parse_formula(substance.formula or "")[0]
 
 
 @lru_cache(maxsize=4096)
@@ -145,7 +208,7 @@ def dissociation(substance: str) -> Dissociation:
     >>> dissociation("Na2HPO4·7H2O").systems, dissociation("Na2HPO4").ions
     ((('phosphate', 1.0),), (('Na+', 2.0),))
     """
-    found = _by_name(substance) or _by_formula(substance)
+    found = _by_name(substance) or _by_formula(substance) or _by_catalogue(substance)
     if found is None:
         shown = substance if len(substance) <= 80 else substance[:77] + "..."
         raise UnknownSubstanceError(f"no dissociation known for {shown!r}", shown)

@@ -7,9 +7,10 @@ import re
 from soplint.equilibria.errors import EquilibriumError
 
 _SUBSCRIPTS = str.maketrans("₀₁₂₃₄₅₆₇₈₉", "0123456789")
-_DOTS = re.compile(r"\s*[.·•⋅∙*×]\s*|\s+x\s+")
+_DOTS = re.compile(r"\s*[·•⋅∙*×]\s*|\s+x\s+")
+_STOPS = re.compile(r"\s*\.\s*")
 _TOKEN = re.compile(r"([A-Z][a-z]?)(\d*)|([(\[])|([)\]])(\d*)")
-_PART = re.compile(r"(\d*)(.+)")
+_PART = re.compile(r"(\d*(?:[.,]\d+)?|½)\s*(.+)")
 _ELEMENTS = frozenset(
     "H Li Be B C N O F Na Mg Al Si P S Cl K Ca Ti V Cr Mn Fe Co Ni Cu Zn As Se Br Rb Sr Mo Ag Cd "
     "Sn Sb Te I Cs Ba La Ce W Pt Au Hg Pb Bi".split()
@@ -49,29 +50,57 @@ def _part(text: str, whole: str) -> Atoms:
     return stack[0]
 
 
-def parse_formula(text: str) -> tuple[Atoms, int]:
+def _pieces(text: str) -> list[tuple[float, str]]:
+    """Parts of an adduct with their multipliers; a full stop separates only when no other dot does."""
+    plain = text.strip().translate(_SUBSCRIPTS)
+    dots = _DOTS if _DOTS.search(plain) else _STOPS
+    pieces = []
+    for piece in dots.split(plain):
+        match = _PART.fullmatch(piece)
+        if match is None or len(match[1]) > 5:
+            raise EquilibriumError(f"{text!r} is not a formula", text)
+        pieces.append((float((match[1] or "1").replace(",", ".").replace("½", "0.5")), match[2]))
+    return pieces
+
+
+def adducts(text: str) -> tuple[list[tuple[int, Atoms]], float]:
+    """Atom counts of each part of a formula joined by dots, and the water of crystallisation.
+
+    Parameters: text; parts may be joined by . · * and numbers written as subscripts.
+    Returns: (multiplier, element -> count) of each part, molecules of water.
+    Errors: EquilibriumError when the text is no formula.
+
+    >>> adducts("C4H11NO3·HCl")[0][1]
+    (1, {'H': 1, 'Cl': 1})
+    """
+    if len(text) > 120:
+        raise EquilibriumError("formula too long", text[:40])
+    parts: list[tuple[int, Atoms]] = []
+    water = 0.0
+    for index, (times, piece) in enumerate(_pieces(text)):
+        if index and piece == "H2O":
+            water += times
+        elif times.is_integer():
+            parts.append((int(times), _part(piece, text)))
+        else:
+            raise EquilibriumError(f"part of a molecule in {text!r}", text)
+    return parts, water
+
+
+def parse_formula(text: str) -> tuple[Atoms, float]:
     """Atom counts of a formula without its water of crystallisation, and that water.
 
-    Parameters: text; hydrate dots may be written . · * and numbers as subscripts.
+    Parameters: text, as for `adducts`.
     Returns: (element -> count, molecules of water).
     Errors: EquilibriumError when the text is no formula.
 
     >>> parse_formula("Na2HPO4·7H2O")
-    ({'Na': 2, 'H': 1, 'P': 1, 'O': 4}, 7)
+    ({'Na': 2, 'H': 1, 'P': 1, 'O': 4}, 7.0)
     """
-    if len(text) > 120:
-        raise EquilibriumError("formula too long", text[:40])
+    parts, water = adducts(text)
     atoms: Atoms = {}
-    water = 0
-    for index, piece in enumerate(_DOTS.split(text.strip().translate(_SUBSCRIPTS))):
-        match = _PART.fullmatch(piece)
-        if match is None or len(match[1]) > 3:
-            raise EquilibriumError(f"{text!r} is not a formula", text)
-        times = int(match[1] or 1)
-        if index and match[2] == "H2O":
-            water += times
-        else:
-            _add(atoms, _part(match[2], text), times)
+    for times, part in parts:
+        _add(atoms, part, times)
     return atoms, water
 
 
