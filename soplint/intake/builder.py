@@ -6,9 +6,9 @@ import re
 from collections.abc import Sequence
 from dataclasses import replace
 
-from soplint.intake.inline import BREAK
 from soplint.intake.model import Block, Table, Text
 from soplint.intake.numbering import Mark, bullet, printed_number, task
+from soplint.intake.scan import BREAK
 
 _CAPTION = re.compile(r"(?:Table|TABLE|Tab\.|Tabelle|Tableau|Tabla|Таблица)\s*\w{0,4}\s*[.:–—-]?\s")
 

@@ -6,8 +6,9 @@ import re
 from collections.abc import Sequence
 
 from soplint.intake.builder import joined
-from soplint.intake.inline import Line, clean_line
+from soplint.intake.inline import clean_line
 from soplint.intake.model import Table, Text
+from soplint.intake.scan import Line
 from soplint.intake.tables import table_of
 
 _GRID_RULE = re.compile(r"\s*\+(?:[-=]{2,}\+)+\s*$")

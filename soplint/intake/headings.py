@@ -6,14 +6,13 @@ import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from soplint.intake.inline import Line
 from soplint.intake.numbering import bullet, printed_number, starts_with_quantity
+from soplint.intake.scan import Line
 
 LONGEST_TITLE = 100
 
 _RULE = re.compile(r"\s*([=~^\"'*+#`.:_-])\1{2,}\s*$")
-_HASH = re.compile(r"\s{0,3}(#{1,6})[ \t]+(?=\S)(.*?)(?:[ \t]+#+)?[ \t]*$")
-_GLUED_HASH = re.compile(r"(#{2,6})(?=[A-Za-z0-9])(.*)$")
+_HASH = re.compile(r"\s{0,3}(#{1,6})(?:[ \t]+(?=\S)|(?<=##)(?=[A-Za-z0-9]))")
 _LEVELS = {"=": 1, "#": 1, "-": 2, "*": 2, "~": 3, "^": 4, '"': 4}
 _END_OF_SENTENCE = frozenset(".:;!?,")
 _CAPITALS = re.compile(r"[A-ZÀ-ÞА-Я]")
@@ -56,11 +55,12 @@ class Titles:
     def at(self, index: int) -> Title | None:
         """The heading that begins with the line at ``index``."""
         line = self.lines[index]
-        hashed = _HASH.match(line.raw) or _GLUED_HASH.match(line.raw)
+        hashed = _HASH.match(line.raw)
         if hashed is not None:
-            start, end = hashed.span(2)
-            title = Line(line.number, line.column + start, line.raw[start:end])
-            return Title(title, len(hashed.group(1)), index + 1)
+            start = hashed.end()
+            title = without_closing_hashes(line.raw[start:])
+            shown = Line(line.number, line.column + start, title)
+            return Title(shown, len(hashed.group(1)), index + 1)
         ruled = self.ruled(index)
         if ruled is not None:
             return ruled
@@ -124,6 +124,8 @@ class Titles:
         following = self.following[index]
         if following is not None and following[1].startswith(mark.number + "."):
             return True
+        if index and printed_number(self.lines[index - 1].raw.strip()):
+            return False
         word = title.split(maxsplit=1)[0].lower().strip(",") if title else ""
         if word in _VERBS or starts_with_quantity(title) or ". " in title:
             return False
@@ -138,6 +140,12 @@ class Titles:
 
     def text_between(self, start: int, end: int) -> bool:
         return any(self.lines[k].raw.strip() for k in range(start, min(end, start + 5)))
+
+
+def without_closing_hashes(title: str) -> str:
+    """A ``#`` heading without the hashes that may close it."""
+    bare = title.rstrip().rstrip("#")
+    return bare if not bare or bare[-1].isspace() else title
 
 
 def _following_numbers(lines: Sequence[Line]) -> list[tuple[int, str] | None]:

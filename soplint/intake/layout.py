@@ -7,9 +7,10 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from soplint.intake.grids import grid_table, simple_table
-from soplint.intake.inline import Line, clean_line
+from soplint.intake.inline import clean_line
 from soplint.intake.model import Table, Text
 from soplint.intake.numbering import bullet, printed_number
+from soplint.intake.scan import Line
 from soplint.intake.tables import pipe_segments, pipe_table, table_of
 
 # Longer lines are never rows of a table laid out by spaces.
@@ -18,7 +19,7 @@ LONGEST_ROW = 300
 LEAST_ROWS = 3
 
 _GAP = re.compile(r"\S(?:\s{2,}|\t)(?=\S)")
-_DASHES = re.compile(r"[\s=-]*[=-]{3,}[\s=-]*$")
+_DASHES = frozenset(" \t=-")
 
 
 @dataclass(frozen=True, slots=True)
@@ -104,20 +105,18 @@ def _aligned(lines: Sequence[Line], index: int) -> tuple[Table, int] | None:
             break
         common &= blank
         end += 1
-    rows = [line for line in lines[index:end] if not _DASHES.match(line.raw)]
+    rows = [line for line in lines[index:end] if not _is_rule(line.raw)]
     if len(rows) < LEAST_ROWS:
         return None
     gaps = _columns(common)
-    head_rows = next(
-        (k for k in range(1, end - index) if _DASHES.match(lines[index + k].raw)), None
-    )
+    head_rows = next((k for k in range(1, end - index) if _is_rule(lines[index + k].raw)), None)
     return table_of([_cut(line, _within(gaps, len(line.raw))) for line in rows], head_rows), end
 
 
 def _is_row(raw: str) -> bool:
     if len(raw) > LONGEST_ROW or "\t" in raw:
         return False
-    if _DASHES.match(raw):
+    if _is_rule(raw):
         return True
     stripped = raw.lstrip()
     return (
@@ -125,9 +124,13 @@ def _is_row(raw: str) -> bool:
     )
 
 
+def _is_rule(raw: str) -> bool:
+    return _DASHES.issuperset(raw) and ("---" in raw or "===" in raw)
+
+
 def _blanks(raw: str) -> int:
     """Bits of the offsets where the line is blank; everything after its end is blank too."""
-    if _DASHES.match(raw):
+    if _is_rule(raw):
         return -1
     bits = 0
     trimmed = raw.rstrip()

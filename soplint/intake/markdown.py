@@ -13,11 +13,13 @@ from functools import lru_cache
 from typing import TYPE_CHECKING
 
 from soplint.intake.builder import Builder, joined
+from soplint.intake.headings import without_closing_hashes
 from soplint.intake.html import add_html
-from soplint.intake.inline import Line, clean, clean_line
+from soplint.intake.inline import clean, clean_line
 from soplint.intake.numbering import Mark
 from soplint.intake.paragraphs import Place, add_lines
 from soplint.intake.plain import read_plain
+from soplint.intake.scan import Line
 
 if TYPE_CHECKING:
     from markdown_it import MarkdownIt
@@ -30,8 +32,8 @@ MOST_LINES = 60_000
 MOST_DEEP_QUOTES = 500
 
 _STRICT_FENCE = re.compile(r"[{.\s]*(?:procedure)\b", re.IGNORECASE)
-_CLOSING_FENCE = re.compile(r"\s*[>\s]*(`{3,}|~{3,})\s*")
-_ATX = re.compile(r"[#]{1,6}[ \t]*(.*?)(?:[ \t]+#+)?[ \t]*$")
+_CLOSING_FENCE = re.compile(r"[>\s]*(`{3,}|~{3,})\s*")
+_ATX = re.compile(r"#{1,6}[ \t]*")
 _GLUED_ATX = re.compile(r"(#{2,6})(?=[^\s#])|(#)(?=[A-Z][a-z])")
 _DEFINITION = re.compile(r"\[[^\[\]]{1,200}\]:\s*(?:<|https?:|mailto:|#|\.{0,2}/)\S*")
 _QUOTE = re.compile(r"(?:\s{0,3}>)+ ?")
@@ -144,8 +146,9 @@ class _Walk:
         if markup[:1] == "#":
             number, column, raw = lines[0]
             match = _ATX.match(raw)
-            start, end = match.span(1) if match else (0, len(raw))
-            self.builder.heading(clean_line(number, column + start, raw[start:end]), level)
+            start = match.end() if match else 0
+            title = without_closing_hashes(raw[start:])
+            self.builder.heading(clean_line(number, column + start, title), level)
             return
         lines = [line for line in lines if line.raw.strip() and not set(line.raw) <= set("=- \t")]
         if markup == "-" and len(lines) > 1:

@@ -63,12 +63,12 @@ class Mark:
 
 def starts_with_quantity(chars: str) -> bool:
     """Whether a number and a unit open the line: "5.1 mL of", "~2 g", "10x", "0.2 M"."""
-    return _QUANTITY_START.match(chars) is not None
+    return _QUANTITY_START.match(chars, 0, 60) is not None
 
 
 def ends_with_quantity(chars: str) -> bool:
     """Whether a number and a unit close the line: "NaCl 5 g", "Tris - 12.1 g (0.1 M)"."""
-    return _QUANTITY_END.search(chars[-120:]) is not None
+    return _QUANTITY_END.search(chars[-80:]) is not None
 
 
 def bullet(chars: str) -> Mark | None:

@@ -12,9 +12,10 @@ from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass
 
 from soplint.intake.builder import Builder, cut, joined, marked
-from soplint.intake.inline import Line, clean
+from soplint.intake.inline import clean, clean_line
 from soplint.intake.model import Text
 from soplint.intake.numbering import Mark, ends_with_quantity, starts_with_quantity
+from soplint.intake.scan import BREAK, Line
 from soplint.intake.tables import pipe_segments, pipe_table
 
 # Narrower lines than this are never taken for wrapped prose.
@@ -33,10 +34,9 @@ _CONTINUES = re.compile(r"[)\],;:.=%×/]|(?:and|or|of|to|in|with|und|et)\s")
 _FIRST_WORD = re.compile(r"\S+")
 _LOWER_WORD = re.compile(r"[^\W\d_]+")
 _BOLD = re.compile(
-    r"(?:\*\*|__|<(?:b|strong)>)(?!\s)(?P<inner>.+?)(?:\*\*|__|</(?:b|strong)>)\s*[:.]?\s*",
+    r"(?:\*\*|__|<(?:b|strong)>)(?!\s)(?P<inner>.+?)(?:\*\*|__|</(?:b|strong)>)(?:\s{0,3}[:.])?",
     re.IGNORECASE,
 )
-_HARD_END = re.compile(r"(?:  +|\\)$")
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,6 +66,9 @@ def is_bold(raw: str) -> bool:
 
 def add_lines(builder: Builder, lines: list[Line], place: Place) -> None:
     """Adds ``lines`` that no blank line parts: tables, items, paragraphs."""
+    if len(lines) == 1:
+        _add_line(builder, lines[0], place)
+        return
     if not any("|" in line.raw for line in lines):
         _add_text(builder, lines, place)
         return
@@ -78,8 +81,19 @@ def add_lines(builder: Builder, lines: list[Line], place: Place) -> None:
             place = Place(place.depth)
 
 
+def _add_line(builder: Builder, line: Line, place: Place) -> None:
+    text = clean_line(*line)
+    bold = is_bold(line.raw)
+    if BREAK not in text.chars:
+        _add_group(builder, [_Unit(text, bold, True)], place)
+        return
+    for part in cut(text):
+        _add_group(builder, [_Unit(part, bold, True)], place)
+        place = Place(place.depth)
+
+
 def _add_text(builder: Builder, lines: list[Line], place: Place) -> None:
-    for group in _groups(_units(lines)):
+    for group in _groups(_units(lines), place.mark is not None):
         _add_group(builder, group, place)
         place = Place(place.depth)
 
@@ -107,24 +121,24 @@ def _units(lines: list[Line]) -> Iterator[_Unit]:
             if part.chars:
                 yield _Unit(part, bold, anew or bold)
                 anew = True
-        anew = bold or _HARD_END.search(line.raw) is not None
+        anew = bold or line.raw.endswith(("  ", "\\"))
 
 
-def _groups(units: Iterable[_Unit]) -> Iterator[list[_Unit]]:
+def _groups(units: Iterable[_Unit], listed: bool) -> Iterator[list[_Unit]]:
     units = list(units)
     width = max((len(unit.text.chars) for unit in units), default=0)
     group: list[_Unit] = []
     length = 0
-    in_item = False
+    in_item = listed
     for unit in units:
         if group:
             mark = _mark_after(group[-1].text.chars, unit.text, in_item, width)
             begins = unit.anew or length > BLOCK_LENGTH or mark is not None
-            if begins or starts_anew(group[-1].text.chars, unit.text.chars, width):
+            if begins or starts_anew(group[-1].text.chars, unit.text.chars, width, listed):
                 yield group
                 group, length = [], 0
         if not group:
-            in_item = marked(unit.text)[0] is not None
+            in_item = listed or marked(unit.text)[0] is not None
         group.append(unit)
         length += len(unit.text.chars)
     if group:
@@ -143,10 +157,11 @@ def _mark_after(before: str, text: Text, in_item: bool, width: int) -> Mark | No
     return None
 
 
-def starts_anew(before: str, chars: str, width: int) -> bool:
+def starts_anew(before: str, chars: str, width: int, listed: bool = False) -> bool:
     """Whether the line ``chars`` begins a block of its own after the line ``before``.
 
-    ``width`` is that of the widest line around.
+    ``width`` is that of the widest line around; ``listed`` lines stand in a list item, where a
+    small letter goes on with the line before.
 
     >>> starts_anew("5 g NaCl", "10 g KCl", 10), starts_anew("Weigh the salt and", "stir.", 60)
     (True, False)
@@ -154,6 +169,8 @@ def starts_anew(before: str, chars: str, width: int) -> bool:
     if before[-1:] == ":":
         return True
     if _OPEN_END.search(before[-12:]) or _CONTINUES.match(chars) or _unclosed(before):
+        return False
+    if listed and _begins_low(chars):
         return False
     recipe = is_recipe_line(before)
     if recipe and is_recipe_line(chars):

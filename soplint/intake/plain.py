@@ -7,14 +7,14 @@ from collections.abc import Sequence
 
 from soplint.intake.builder import Builder
 from soplint.intake.headings import Titles
-from soplint.intake.inline import Line, clean_line
+from soplint.intake.inline import clean_line
 from soplint.intake.layout import layout_table
 from soplint.intake.numbering import Mark, bullet, printed_number
 from soplint.intake.paragraphs import Place, add_lines
+from soplint.intake.scan import Line
 
 _FENCE = re.compile(r"\s*(?:`{3,}|~{3,})[\w\s{}.-]*$")
 _RULE = re.compile(r"\s*([-=_*~#+.])(?:\s*\1){2,}\s*$")
-_LIST_BEFORE_NUMBER = re.compile(r"\s*")
 
 
 def read_plain(
@@ -51,6 +51,8 @@ class _Reader:
         self.buffer: list[Line] = []
         self.place = Place()
         self.indents: list[int] = []
+        closing = [k for k, line in enumerate(lines) if "-->" in line.raw]
+        self.last_comment = closing[-1] + 1 if closing else 0
 
     def run(self) -> None:
         index = 0
@@ -64,8 +66,9 @@ class _Reader:
         if not raw.strip() or _FENCE.match(raw):
             self.flush()
             return index + 1
-        if raw.lstrip().startswith("<!--"):
-            return self.comment(index)
+        if raw.lstrip().startswith("<!--") and (end := self.comment(index)) > index:
+            self.flush()
+            return end
         table = layout_table(self.lines, index)
         if table is not None:
             self.flush()
@@ -84,10 +87,11 @@ class _Reader:
         return index + 1
 
     def comment(self, index: int) -> int:
-        self.flush()
-        while index < len(self.lines) and "-->" not in self.lines[index].raw:
-            index += 1
-        return index + 1
+        """The index after a comment; ``index`` itself when it is never closed."""
+        end = index
+        while end < self.last_comment and "-->" not in self.lines[end].raw:
+            end += 1
+        return index if end >= self.last_comment else end + 1
 
     def heading(self, line: Line, level: int) -> None:
         text = clean_line(*line)

@@ -7,8 +7,8 @@ from dataclasses import dataclass, field
 
 from soplint.intake.builder import Builder
 from soplint.intake.front_matter import front_matter
-from soplint.intake.inline import Line
 from soplint.intake.model import Block
+from soplint.intake.scan import Line
 
 MARKDOWN = (".md", ".markdown")
 

@@ -6,7 +6,9 @@ import re
 
 from soplint.intake.model import Text
 
-_END = re.compile(r"([.!?]+[\"')\]”’]*)\s+(?=[\"'(\[“‘]*[A-ZÀ-ÞА-Я0-9~≈±<>≤≥µα-ω•])|[。！？]|\n")
+_END = re.compile(
+    r"((?<![.!?])[.!?]{1,6}[\"')\]”’]{0,3})\s+(?=[\"'(\[“‘]{0,3}[A-ZÀ-ÞА-Я0-9~≈±<>≤≥µα-ω•])|[。！？]|\n"
+)
 _TOKEN = re.compile(r"\S+$")
 # Never the end of a sentence, whatever follows.
 _NEVER = frozenset(

@@ -6,14 +6,15 @@ import re
 from collections.abc import Iterator, Sequence
 
 from soplint.intake.builder import joined
-from soplint.intake.inline import Line, clean_line
+from soplint.intake.inline import clean_line
 from soplint.intake.model import Table, Text
 from soplint.intake.numbering import starts_with_quantity
+from soplint.intake.scan import Line
 
 # Rows are filled up with empty cells to the width of the widest one, up to this many columns.
 FILLED_WIDTH = 64
 
-_DELIMITER = re.compile(r"\|?[ \t]*:?-+:?[ \t]*(?:[|+][ \t]*:?-*:?[ \t]*)*\|?")
+_DELIMITER = frozenset("|-:+ \t")
 _PIPE = re.compile(r"(?<!\\)\|")
 _NUMBER = re.compile(r"[~≈<>≤≥(]?\s?[-+]?[.,]?\d")
 _UNIT_CELL = re.compile(
@@ -71,7 +72,7 @@ def _unmarked_end(lines: Sequence[Line], start: int) -> int:
 
 def is_delimiter(raw: str) -> bool:
     """Whether the line is the rule between heading row and body: ``|---|:-:|``."""
-    return "|" in raw and "-" in raw and _DELIMITER.fullmatch(raw.strip()) is not None
+    return "|" in raw and "-" in raw and _DELIMITER.issuperset(raw)
 
 
 def pipe_table(lines: Sequence[Line]) -> Table:
@@ -100,7 +101,7 @@ def _cells(line: Line) -> list[Text]:
     ]
 
 
-def table_of(rows: list[list[Text]], head_rows: int | None) -> Table:
+def table_of(rows: list[list[Text]], head_rows: int | None, caption: Text | None = None) -> Table:
     """A table of ``rows``; without a known number of heading rows the cells decide."""
     rows = [row for row in rows if row]
     if head_rows is None:
@@ -112,7 +113,7 @@ def table_of(rows: list[list[Text]], head_rows: int | None) -> Table:
     if not any(cell.chars for cell in head):
         head = ()
     body = tuple(tuple(row) for row in rows[head_rows:])
-    return Table(head, body)
+    return Table(head, body, caption)
 
 
 def _looks_like_head(rows: list[list[Text]]) -> bool:
