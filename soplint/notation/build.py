@@ -146,8 +146,12 @@ def _late_strengths(found: list[Part]) -> list[Part]:
 def _behind_link(result: list[Part]) -> int | None:
     """Index of the material or dose that a fact may still join, or None."""
     index = len(result) - 1
+    equals = False
     while index >= 0 and isinstance(result[index], Role) and _kind(result[index]) in _LINKS:
+        equals = equals or _kind(result[index]) == "EQUALS"
         index -= 1
+    if equals and index >= 0 and isinstance(result[index], Dose):
+        return None  # "100 µL A + 100 µL water = 0.5 mg/mL" claims a result
     if index >= 0 and isinstance(result[index], (Material, Dose)):
         return index
     return None

@@ -91,6 +91,10 @@ class Meaning:
         self.between.append(role.kind)
         if role.kind in _CLAIMING:
             self.claiming = role.kind
+        elif role.kind == "EQUALS" and self.phrases and isinstance(
+            self.phrases[-1], (Dose, ToVolume, Claim)
+        ):
+            self.claiming = role.kind
         elif role.kind in ("EQUIVALENT", "EACHML"):
             self.phrases.append(Command(role.start, role.end, role.kind))
         elif role.kind == "PHWORD":
@@ -131,10 +135,15 @@ class Meaning:
             return 3
         diluent: Material | None = None
         last = self.phrases[-1] if self.phrases else None
-        if isinstance(last, Material) and (last.is_water or self.command in ("MAKE_UP", "ADD")):
-            if not self.between or self.between == ["COMMA"]:
+        beside = not self.between or self.between == ["COMMA"]
+        if isinstance(last, Material) and beside:
+            if last.match is not None or last.solution or self.command in ("MAKE_UP", "ADD"):
                 diluent = last
                 self.phrases.pop()
+            elif self.command is None and not part.said_final and part.volume is not None:
+                # "read to 0.02 mL": no liquid and no command to make up
+                self.phrases.append(Loose(part.start, part.end, part.volume))
+                return 1
         self.phrases.append(replace(part, command=self.command, diluent=diluent))
         self.adjusting = False
         return 1
@@ -225,7 +234,11 @@ class Meaning:
     def _nameless(self, material: Material, role: str | None) -> None:
         if material.ph is not None and not material.strengths:
             said = self.ph_word or "IS" in self.between or "GIVES" in self.between
-            if said or self.command in ("VERIFY", "CALIBRATE"):
+            if "AT" in self.between or self.command == "CALIBRATE":
+                said = False  # "electrode checked at pH 9.18"
+            elif self.command == "VERIFY":
+                said = True
+            if said:
                 self.phrases.append(Claim(material.start, material.end, material.ph, kind="pH"))
                 return
         if self.claiming or (self.command == "DILUTE" and role == "to"):

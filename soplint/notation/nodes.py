@@ -14,6 +14,9 @@ from soplint.substances.model import Match
 
 Node = Tree[Token] | Token
 
+# Endings of words that make a following name part of a longer one (radicals of organic names).
+_RADICALS = ("yl", "oxy", "amino", "phenyl", "bromo", "chloro", "iodo", "fluoro", "nitro", "-")
+
 
 @dataclass(slots=True)
 class Remarks:
@@ -93,7 +96,20 @@ class Reader:
         solution = any(t.kind == "SOLUTION" for t in found)
         words = self.chars[found[0].start : found[-1].end]
         distinct = {m.substances[0].family for m in matches if m.substances}
-        return words, (matches[0] if len(distinct) == 1 else None), solution
+        match = matches[0] if len(distinct) == 1 else None
+        if match is not None and self._belongs_to_longer_name(found):
+            match = None
+        return words, match, solution
+
+    def _belongs_to_longer_name(self, found: list[Terminal]) -> bool:
+        """Whether an unknown chemical word stands before a name: "4-nitrophenyl phosphate"."""
+        for before, after in zip(found, found[1:], strict=False):
+            if after.match is None or before.kind != "OTHER":
+                continue
+            last = self.chars[before.start : before.end].split()[-1].lower().rstrip(",")
+            if last.endswith(_RADICALS) or any(c.isdigit() for c in last):
+                return True
+        return False
 
     def _tail(self, tree: Tree[Token], before: list[Measure], remarks: Remarks) -> None:
         for child in tree.children:
@@ -135,6 +151,22 @@ class Reader:
                 into.amounts.append(measure)
         return into
 
+    def _amount(self, tree: Tree[Token], remarks: Remarks) -> tuple[Measure | None, bool]:
+        """The quantity of a dose; brackets behind it go to ``remarks``."""
+        amount: Measure | None = None
+        each = False
+        for part in tree.children:
+            if isinstance(part, Token):
+                each = True
+            elif part.data == "quantity":
+                amount = next(self.tokens(part)).measure
+            elif part.data == "amount":
+                amount, inner = self._amount(part, remarks)
+                each = each or inner
+            else:
+                self.remarks(part, remarks)
+        return amount, each
+
     # --- doses -----------------------------------------------------------------------------------
 
     def dose(self, tree: Tree[Token]) -> Dose:
@@ -149,13 +181,7 @@ class Reader:
             if child.data == "material":
                 material = self.material(child)
             elif child.data == "amount":
-                for part in child.children:
-                    if isinstance(part, Tree) and part.data == "quantity":
-                        amount = next(self.tokens(part)).measure
-                    elif isinstance(part, Tree) and part.data == "bracket":
-                        self.remarks(part, remarks)
-                    else:
-                        each = True
+                amount, each = self._amount(child, remarks)
         assert amount is not None
         start, end = self.bounds(tree)
         if material is None and (remarks.strengths or remarks.finals or remarks.molar_mass):
