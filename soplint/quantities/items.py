@@ -6,7 +6,7 @@ from typing import NamedTuple
 
 from soplint.quantities.late import LatePattern
 from soplint.quantities.leads import Lead, read_lead
-from soplint.quantities.noise import identifier_end, not_a_quantity, token_end
+from soplint.quantities.noise import identifier_end, in_name, not_a_quantity, token_end
 from soplint.quantities.numerals import Numeral, read_numeral, with_space_groups
 from soplint.quantities.style import NumberStyle
 from soplint.quantities.unit_reader import ReadUnit, read_unit
@@ -29,6 +29,7 @@ _OF_VOLUME = LatePattern(r" (?:the )?(?:final |total )*(?:volume|water)")
 _SPACES = " \u00a0\u2009\u202f"
 _MINUS = "-−–"
 _HYDRATE_DOTS = "·•∙⋅"
+_AFTER_POINT = {"mL", "µL", "mg", "kg", "mM", "mmol", "mol/L", "°C", "g/L", "g/mol"}
 _GLUED_BEFORE = {"ph", "рн", "рh", "pн", "mw", "fw", "mr", "x", "pka"}
 _GLUED_ABOUT = {"ca", "approx", "about"}  # not "Ca", as in "Ca2+"
 _ATTACHED_UNITS = {"mass", "volume", "molarity", "mass-concentration", "fraction", "normality"}
@@ -52,9 +53,11 @@ def read_item(chars: str, at: int, style: NumberStyle) -> Item | int:
     unit = read_unit(chars, numeral.end)
     lead = read_lead(chars, start)
     if numeral.before_comma is not None:
+        if unit is None and in_name(chars, numeral.end):
+            return identifier_end(chars, at)
         numeral, unit = _settle_comma(chars, numeral, unit, lead, style)
     if unit is None:
-        grouped = _grouped(chars, numeral, lead)
+        grouped = _grouped(chars, numeral, lead) or _with_point(chars, numeral)
         if grouped is not None:
             numeral, unit = grouped
     if unit is None and attached and chars[at - 1] == "/":
@@ -67,7 +70,7 @@ def read_item(chars: str, at: int, style: NumberStyle) -> Item | int:
         end = not_a_quantity(chars, start, numeral.end, numeral.value)
         if end:
             return end
-        if lead.kind == "label" and not lead.sign:
+        if (lead.kind == "label" and not lead.sign) or lead.sign == "#":
             return identifier_end(chars, at)
     elif not _fits(numeral, unit):
         unit = None
@@ -147,6 +150,16 @@ def _grouped(chars: str, numeral: Numeral, lead: Lead) -> tuple[Numeral, ReadUni
         if last:
             grouped = grouped._replace(alternatives=(last,))
     return grouped, unit
+
+
+def _with_point(chars: str, numeral: Numeral) -> tuple[Numeral, ReadUnit] | None:
+    """A number with a bare decimal point: "25. mL"."""
+    if chars[numeral.end : numeral.end + 1] != "." or numeral.kind != "digits" or numeral.places:
+        return None
+    unit = read_unit(chars, numeral.end + 1)
+    if unit is None or unit.unit.symbol not in _AFTER_POINT:
+        return None
+    return numeral._replace(end=numeral.end + 1), unit
 
 
 def _over_number(chars: str, at: int, numeral: Numeral, lead: Lead) -> Item | int:

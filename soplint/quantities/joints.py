@@ -43,7 +43,7 @@ _CHANGES = LatePattern(
     r"\b(?:dilut|add|bring|brought|ma[dk]e|fill|transfer|top|adjust|rais|reduc|concentrat|chang"
     r"|increas|decreas|pipett|dispens|pour|put|from|up)", re.IGNORECASE
 )  # fmt: skip
-_PARTS_NEAR = LatePattern(r"dilut|part|ratio|v/v|\bmix", re.IGNORECASE)
+_PARTS_NEAR = LatePattern(r"dilut|part|ratio|v/v|\bmix|by vol", re.IGNORECASE)
 _SLASH_RATIO = LatePattern(r"([0-9.]+)[/⁄]([0-9.]+)$")
 
 

@@ -57,8 +57,7 @@ def not_a_quantity(chars: str, start: int, end: int, value: float) -> int:
     if value <= 24 and (found := _HYDRATE.match(chars, end)):
         return found.end()
     if after.isalpha() or after == "_":
-        if after.isupper() or after.isascii() or after.isalpha():
-            return token_end(chars, end)
+        return token_end(chars, end)
     if after in "-‑'′’" and _IN_NAME.match(chars, end):
         return identifier_end(chars, end + 1)
     if after in "-./ abcdefghijklmnopqrstuvwxyz" and (date := _DATE.match(chars, start)):
@@ -68,10 +67,9 @@ def not_a_quantity(chars: str, start: int, end: int, value: float) -> int:
     return 0
 
 
-def date_end(chars: str, start: int) -> int:
-    """End of a date, registry number or section number at ``start``; 0 where there is none."""
-    found = _DATE.match(chars, start)
-    return found.end() if found else 0
+def in_name(chars: str, end: int) -> bool:
+    """Whether digits that end at ``end`` are locants of a name: "1,10-phenanthroline"."""
+    return _IN_NAME.match(chars, end) is not None
 
 
 def _clock_end(chars: str, start: int) -> int:

@@ -21,7 +21,7 @@ class Numeral(NamedTuple):
     digits: int  # significant figures, trailing zeros counted
     kind: str  # digits, power, fraction, word
     flags: tuple[str, ...] = ()
-    alternatives: tuple[float, ...] = ()
+    alternatives: tuple[float, ...] = ()  # the other reading of "1,250"
     places: int = 0  # decimals as written
     before_comma: Numeral | None = None  # the number it is if the comma only separates: "6,50 mM"
 
@@ -33,7 +33,7 @@ VULGAR = {
 _HALF = tuple(float(f"5e-{places + 1}") for places in range(12))
 _TAIL_FIRST = frozenset("x×X*·⋅∙eE^/⁄⁻⁺⁰¹²³⁴⁵⁶⁷⁸⁹0123456789") | frozenset(VULGAR)
 _SUPERSCRIPTS = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺−–", "0123456789-+--")
-_BODY = re.compile(r"([0-9]*)((?:,[0-9]+)*)(\.[0-9]+)?")
+_BODY = re.compile(r"([0-9]*)((?:,[0-9]+){0,5})(\.[0-9]+)?")
 _SPACED = LatePattern(r"(?:[ \u00a0\u2009\u202f'’][0-9]{3})+(?![0-9])")
 _POWER = LatePattern(
     r" ?[x×X*·⋅∙] ?10 ?(?:(?:\^|\*\*) ?[{(]?([-−–+]?[0-9]{1,3})[})]?|([⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]{1,3}))"
@@ -121,7 +121,7 @@ def _with_commas(chars: str, start: int, end: int, style: NumberStyle) -> Numera
 
 def _ambiguous(point: Numeral, thousands: Numeral, style: NumberStyle) -> Numeral:
     taken, other = (point, thousands) if style.comma_is_decimal else (thousands, point)
-    return taken if style.settled else taken._replace(alternatives=(other.value,))
+    return taken._replace(alternatives=(other.value,))
 
 
 def _with_tail(chars: str, numeral: Numeral, integer: str) -> Numeral:

@@ -74,7 +74,7 @@ def _measure(chars: str, item: Item, style: NumberStyle, measures: list[Measure]
     if joined is None:
         if item.unit is None and item.lead.kind != "pH" and _in_identifier(chars, item.end):
             return identifier_end(chars, item.end)
-        measure = _single(chars, item, measures)
+        measure = _single(chars, item, style, measures)
     elif joined.manner == "ratio":
         measure = _ratio(item, joined)
     else:
@@ -118,7 +118,8 @@ def _unit_from_lead(chars: str, item: Item, measures: list[Measure]) -> Unit:
     if sign and sign in "$€£":
         return unit_table()[sign]
     if sign and sign in "×xX" and not _after_number(chars, item.start):
-        return _REPEAT if _WASH.search(chars) or sign == "x" else unit_table()["X"]
+        near = chars[max(0, item.start - 60) : item.end + 20]
+        return _REPEAT if _WASH.search(near) or sign == "x" else unit_table()["X"]
     if measures and measures[-1].dimension == "pH" and 0 <= item.numeral.value <= 14:
         if chars[measures[-1].end : item.start] in _PH_LIST:
             return _PH
@@ -149,7 +150,7 @@ def _fold_or_repeat(chars: str, item: Item, read: ReadUnit) -> Unit:
 
 
 def _is_force(chars: str, item: Item, end: int) -> bool:
-    if _SPIN.search(chars) is None:
+    if _SPIN.search(chars, max(0, item.start - 100), end + 100) is None:
         return False
     before = chars[max(0, item.start - 24) : item.start]
     if before.endswith(("at ", "@ ", "@")):
@@ -157,10 +158,14 @@ def _is_force(chars: str, item: Item, end: int) -> bool:
     return _FORCE_AFTER.match(chars, end) is not None and _WEIGHED.search(before) is None
 
 
-def _single(chars: str, item: Item, measures: list[Measure]) -> Measure:
+def _single(chars: str, item: Item, style: NumberStyle, measures: list[Measure]) -> Measure:
     numeral, read, lead = item.numeral, item.unit, item.lead
     unit = _unit(chars, item, read, measures)
-    value, manner = numeral.value, lead.manner
+    value, manner, alternatives = numeral.value, lead.manner, numeral.alternatives
+    if alternatives and unit.dimension == "speed":
+        value = max(value, *alternatives)
+    if style.settled or unit.dimension == "speed":
+        alternatives = ()
     half = numeral.half
     if unit.dimension in _EXACT:
         half = abs(value) * 0.005
@@ -191,7 +196,7 @@ def _single(chars: str, item: Item, measures: list[Measure]) -> Measure:
         manner,
         read.basis if read is not None else None,
         (),
-        numeral.alternatives if unit.dimension != "speed" else (),
+        alternatives,
         flags,
         unit.offset,
         (item.start, numeral.end),
