@@ -32,6 +32,7 @@ class Mixture:
     working: str
     systems: frozenset[str]
     acids: int  # doses that bring an acid system or a strong acid or base
+    strong: bool  # a strong acid or base is among them
 
 
 def mixtures(preparation: Preparation, facts: Facts, order: int) -> Iterator[Mixture]:
@@ -53,7 +54,9 @@ def mixtures(preparation: Preparation, facts: Facts, order: int) -> Iterator[Mix
                 total[name] = total.get(name, 0.0) + mol / volume.litres
         systems = frozenset(s for _, _, found, _ in chosen for s in found)
         working = "; ".join(text for _, text, _, counts in chosen if text and counts)
-        yield Mixture(total, working, systems, sum(counts for *_, counts in chosen))
+        strong = any(counts and not found for _, _, found, counts in chosen)
+        acids = sum(counts for *_, counts in chosen)
+        yield Mixture(total, working, systems, acids, strong)
 
 
 def _contents(
@@ -99,9 +102,9 @@ def _acid_systems(portion: Portion) -> tuple[frozenset[str] | None, bool]:
             found = dissociation(name)
         except EquilibriumError:
             continue
-        charge = abs(sum(found.systems.values())) if found.systems else 0
         strong = portion.substance.kind.startswith("strong") or portion.substance.family in _STRONG
-        return frozenset(found.systems), bool(charge) or strong
+        systems = frozenset(system for system, _ in found.systems)
+        return systems, bool(systems) or strong
     return None, False
 
 
@@ -160,7 +163,7 @@ def _stated_ph(preparation: Preparation) -> Iterator[tuple[Stated, Measure | Non
 def _is_buffer(mixture: Mixture, preparation: Preparation) -> bool:
     if not mixture.systems - NO_BUFFERS:
         return False
-    if mixture.acids >= 2:
+    if _has_pair(preparation) or mixture.strong:
         return True
     families = {
         s.family
@@ -169,6 +172,22 @@ def _is_buffer(mixture: Mixture, preparation: Preparation) -> bool:
         for s in candidates(t.dose.material)
     }
     return mixture.acids == 1 and bool(families & STANDARDS)
+
+
+def _has_pair(preparation: Preparation) -> bool:
+    """Whether two doses bring two forms of one buffer system."""
+    forms: dict[str, set[str]] = {}
+    for taken in preparation.taken:
+        material = taken.dose.material
+        if material is None:
+            continue
+        meant = candidates(material)
+        if not meant:
+            forms.setdefault("", set()).add(material.words)
+        for substance in meant[:1]:
+            if substance.acid_system and substance.acid_system not in NO_BUFFERS:
+                forms.setdefault(substance.acid_system, set()).add(substance.family)
+    return any(len(found) >= 2 for found in forms.values())
 
 
 def _ph(

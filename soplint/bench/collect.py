@@ -146,6 +146,7 @@ class Collector:
                 self._inline_title(sentence, dose)
                 return
         solvent = dose.role == "in" and dose.amount.dimension == "volume"
+        dose = self._with_material(dose, solvent)
         taken = Taken(sentence.text, dose, self.step, solvent)
         if not self.closed:
             self.current.taken.append(taken)
@@ -153,6 +154,27 @@ class Collector:
             self._begin_after_make_up(taken, command)
         else:
             self.pending.append(taken)
+
+    def _with_material(self, dose: Dose, solvent: bool) -> Dose:
+        """A dose without a name: of what the line's title names, or of the solution before it."""
+        material = dose.material
+        nameless = material is None or not (material.words or material.molar_mass)
+        title = self.current.title
+        if not nameless or solvent or dose.role not in (None, "of"):
+            return dose
+        named = [m for m in title.materials if m.words] if title is not None else []
+        if self.kind == "line" and len(named) == 1 and not self.closed:
+            base = replace(named[0], strengths=(), finals=(), bracket=(), ph=None, solution=False)
+            if material is not None:
+                base = replace(
+                    base, strengths=material.strengths, bracket=material.bracket,
+                    finals=material.finals,
+                )  # fmt: skip
+            return replace(dose, material=base)
+        if material is None and dose.amount.dimension == "volume" and self.done + [self.current]:
+            if self.closed or self.done:
+                return replace(dose, material=Material(dose.start, dose.end, "", solution=True))
+        return dose
 
     def _begin_after_make_up(self, taken: Taken, command: str | None) -> None:
         if command in _STARTS and not self.pending:
@@ -165,7 +187,7 @@ class Collector:
         if self.closed and self.pending:
             last = self.current.made[-1].to.volume
             grown = to.volume.base / last.base if to.volume and last and last.base else 0.0
-            if 0.999 <= grown <= _TWO_STAGE:
+            if 1.001 <= grown <= _TWO_STAGE:
                 self.current.taken.extend(self.pending)
             else:
                 pending = self.pending
@@ -179,6 +201,9 @@ class Collector:
 
     def rows(self, table: RecipeTable, number: int) -> None:
         """Take up one amount column of a recipe table."""
+        if self.closed or self.current.total is not None:
+            self._settle_pending()
+            self._next()
         for row in table.rows:
             self.step += 1
             dose = row.doses[number] if number < len(row.doses) else None

@@ -64,9 +64,21 @@ def _of_dose(dose: Dose, facts: Facts) -> Iterator[Portion]:
 
 def candidates(material: Material) -> tuple[Substance, ...]:
     """The substances that a name can mean."""
-    if material.match is None or material.match.generic and not material.match.substances:
+    if material.match is not None:
+        return material.match.substances
+    if material.molar_mass is None or not material.words:
         return ()
-    return material.match.substances
+    return (_as_printed(material.words, material.molar_mass.base),)
+
+
+def _as_printed(words: str, molar_mass: float) -> Substance:
+    """A substance that the catalogue does not know, with the molar mass that the text prints."""
+    return Substance(
+        name=words, formula=None, molar_mass=molar_mass, family=words.lower(), hydrate=0.0,
+        state="solid", kind="", acid_system=None, density=None, strength=None, strength_low=None,
+        strength_high=None, solubility=None, cas=None, hazards=(), other_forms=(),
+        status="as printed in the text",
+    )  # fmt: skip
 
 
 def _of_mass(
@@ -236,7 +248,7 @@ def _neat(
             litres,
             max(spread, CONCENTRATE),
             f"{text} × {strength.mol_per_litre:.4g} mol/L",
-            f"taken as {strength.percent:g} % w/w",
+            f"taken as {strength.percent_w_w:g} % w/w",
             named and number == 0,
             True,
         )

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 from soplint.bench.preparation import Preparation, Stated
 from soplint.intake.model import Text
-from soplint.notation.phrases import Command, Dose, Material, Phrase, Sentence, ToVolume
+from soplint.notation.phrases import Command, Dose, Loose, Material, Phrase, Sentence, ToVolume
 from soplint.substances.model import Substance
 
 # % w/w from which pouring water onto the acid is dangerous (issue of the main job).
@@ -103,10 +103,14 @@ def _liquid(
     rest: tuple[Phrase, ...],
 ) -> Iterator[Pouring]:
     material = phrase.material if isinstance(phrase, Dose) else phrase
-    if material is None or command not in ("ADD", "POUR", "DILUTE", "MIX", "DISSOLVE", "PREPARE"):
+    if material is None or command in ("WASH", "STORE", "USE", "CALIBRATE"):
         return
     acid = strong_acid(material)
     water = material.is_water
+    if command is None and not water:
+        return  # a recipe line states no order
+    if rest and isinstance(rest[0], Loose) and rest[0].measure.dimension == "ratio":
+        acid = None  # "sulfuric acid 1 + 3" is diluted already
     into = _into(rest)
     if water and into is not None and (hit := strong_acid(_material(into))) is not None:
         yield Pouring(*hit, _place(sentence, into), sentence.text, phrase.start, into.end, True)
@@ -118,7 +122,10 @@ def _liquid(
         vessel.wet = True
     elif acid is not None and isinstance(phrase, Dose):
         liquid = phrase.amount.dimension == "volume"
-        into_water = into is not None and not strong_acid(_material(into))
+        receiver = _material(into) if into is not None else None
+        into_water = receiver is not None and (
+            receiver.is_water or receiver.solution or receiver.match is not None
+        )
         if liquid and phrase.role is None and not into_water and not vessel.wet:
             vessel.acid = (*acid, Stated(sentence.text, phrase.amount))
         else:

@@ -131,7 +131,9 @@ class _Walker:
         colon = block.text.chars.rstrip().endswith(":")
         if block.kind == "item":
             return following.kind == "item" and following.level > block.level
-        if following.kind == "item" or following.table is not None:
+        if following.table is not None:
+            return colon or (len(block.text.chars) < 120 and not block.text.chars.endswith("."))
+        if following.kind == "item":
             names = any(isinstance(phrase, (Material, Dose)) for phrase in phrases)
             return colon or (names and len(block.text.chars) < 120 and not _commands(phrases))
         return colon and len(block.text.chars) < 100
@@ -139,9 +141,16 @@ class _Walker:
     # --- contents --------------------------------------------------------------------------------
 
     def _text(self, read: ReadBlock) -> None:
+        opening = _opening(read)
+        if opening is not None:
+            self._alone(replace(read, sentences=read.sentences[1:]), opening)
+            return
         alone = _one_line(read)
         if alone is not None:
-            self._alone(read, alone)
+            head = read.sentences[0]
+            titled = not _is_mass(head.phrases[0])
+            body = replace(head, phrases=head.phrases[1:]) if titled else head
+            self._alone(replace(read, sentences=(body, *read.sentences[1:])), alone)
             return
         for sentence in read.sentences:
             self.collector.sentence(sentence)
@@ -222,6 +231,35 @@ def _variant_title(variant: Variant, title: Title | None) -> Title:
     )
 
 
+def _opening(read: ReadBlock) -> Title | None:
+    """The title that opens a paragraph: "Borax, 0.05 mol/L, one litre. Dissolve 19.1 g ...", else None."""
+    if len(read.sentences) < 2:
+        return None
+    first, rest = read.sentences[0], read.sentences[1:]
+    if len(first.text.chars) > 120 or not _only_names(first.phrases):
+        return None
+    made = any(isinstance(p, (Dose, ToVolume)) for s in rest for p in s.phrases)
+    title = title_of(first, "line")
+    return title if made and (title.targets or title.volume or title.ph or title.fold) else None
+
+
+def _only_names(phrases: Sequence[object]) -> bool:
+    """Whether phrases name a solution and what it shall be, and do nothing."""
+    named = False
+    for phrase in phrases:
+        if isinstance(phrase, Dose):
+            if phrase.amount.dimension != "volume" or phrase.role is not None:
+                return False
+            named = named or phrase.material is not None
+        elif isinstance(phrase, Material):
+            named = True
+        elif isinstance(phrase, Command) and phrase.kind not in ("PREPARE", "MAKE_UP", "DILUTE"):
+            return False
+        elif isinstance(phrase, ToVolume) and not phrase.said_final:
+            return False
+    return named
+
+
 def _one_line(read: ReadBlock) -> Title | None:
     """The title of a line such as "0.2 mol/L TCEP: 57 mg in 1 mL of ...", else None."""
     if not read.sentences or not read.sentences[0].phrases:
@@ -237,13 +275,28 @@ def _one_line(read: ReadBlock) -> Title | None:
     taken = any(isinstance(p, Dose) and p.amount.dimension in ("mass", "volume") for p in phrases)
     named = bool(head.strengths or head.bracket or head.finals or head.solution)
     if isinstance(first, Dose):
+        if head.start != first.start or head.end > first.amount.start > first.end:
+            return None
         molar = any(m.dimension == "molarity" for m in (*head.strengths, *head.finals))
-        if not (first.amount.dimension == "mass" and molar and makes and head.start == first.start):
+        if first.amount.dimension == "volume":
+            if not (named and _goes_on(read.sentences[0], first) and len(phrases) > 1):
+                return None
+            return title_of(replace(read.sentences[0], phrases=(first,)), "line")
+        if not (first.amount.dimension == "mass" and molar and makes):
             return None
     elif not (named and taken and (makes or read.block.kind == "item") and not _facts_only(phrases)):
         return None
     sentence = replace(read.sentences[0], phrases=(head,))
     return title_of(sentence, "line")
+
+
+def _is_mass(phrase: object) -> bool:
+    return isinstance(phrase, Dose) and phrase.amount.dimension == "mass"
+
+
+def _goes_on(sentence: Sentence, first: Dose) -> bool:
+    """Whether a colon or dash follows: "Borax 0.1 mol/L, 1 L: 38.1 g ..."."""
+    return sentence.text.chars[first.end :].lstrip()[:1] in (":", "-", "–", "—")
 
 
 def _facts_only(phrases: Sequence[object]) -> bool:

@@ -6,7 +6,8 @@ from collections.abc import Iterator, Sequence
 
 from soplint.bench.facts import Component, Facts, Solution, tokens
 from soplint.bench.portions import portions
-from soplint.bench.preparation import Preparation
+from soplint.bench.preparation import Preparation, Title
+from soplint.notation.phrases import Material
 from soplint.quantities.model import Measure
 
 
@@ -22,20 +23,32 @@ def stock_shelf(preparations: Sequence[Preparation], facts: Facts) -> None:
 
 def _solution(preparation: Preparation, order: int, facts: Facts) -> Solution | None:
     title = preparation.title
-    if title is None or not (preparation.taken or title.targets or title.fold):
+    if title is None or not (preparation.taken or title.targets or title.fold or title.ph):
         return None
     adjusted = [a.set_ph.ph for a in preparation.adjusted if a.set_ph.ph is not None]
     ph: Measure | None = adjusted[-1] if adjusted else (title.ph.measure if title.ph else None)
     return Solution(
         title.words,
         tokens(title.words),
-        tuple((t.stated.measure, t.material) for t in title.targets),
+        (*_labels(title), *_claims(preparation)),
         title.fold.measure if title.fold else None,
         ph,
         tuple(_components(preparation, order, facts)),
         order,
         preparation.section,
     )
+
+
+def _labels(title: Title) -> Iterator[tuple[Measure, Material | None]]:
+    for target in title.targets:
+        yield target.stated.measure, target.material
+
+
+def _claims(preparation: Preparation) -> Iterator[tuple[Measure, Material | None]]:
+    """"S2: 100 µL of S1 + 100 µL water = 0.5 mg/mL": the claim is the label."""
+    for claimed in preparation.claimed:
+        if claimed.claim.kind == "strength":
+            yield claimed.claim.measure, claimed.claim.material
 
 
 def _components(preparation: Preparation, order: int, facts: Facts) -> Iterator[Component]:

@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from soplint.bench.facts import Component, Facts, Solution, same_substance, tokens
 from soplint.bench.numbers import ALIQUOT, relative, shown
 from soplint.bench.portions import Portion, candidates, equivalents, portions
 from soplint.bench.preparation import Preparation, Taken
+from soplint.bench.species import fragment_of, groups_per_formula, share_of
 from soplint.notation.phrases import Material
 from soplint.quantities.model import Measure
 from soplint.substances.model import Substance
@@ -49,11 +50,48 @@ def bearers(
 ) -> Iterator[Bearers]:
     """The groups of doses that can bear a strength, the most literal first."""
     doses = [t for t in preparation.taken if not _is_water(t)]
+    fragment = _fragment(material)
+    if fragment is not None:
+        parts = tuple(tuple(s) for t in doses if (s := _of_part(t, fragment, strength, facts)))
+        if parts:
+            yield Bearers("part", parts)
+        if strength.dimension != "molarity":
+            return
     if material is not None and (material.match is not None or tokens(material.words)):
         yield from _named(doses, material, strength, facts, order, preparation)
-        if not material.solution and not (material.match and material.match.generic):
+        if material.match is not None and not material.solution and not material.match.generic:
             return
     yield from _unnamed(doses, material, strength, facts, order, preparation)
+
+
+def _fragment(material: Material | None) -> str | None:
+    """The element or ion that a strength is about, where no whole substance is named."""
+    if material is None or (material.match is not None and not material.match.generic):
+        return None
+    return fragment_of(material.words)
+
+
+def _of_part(taken: Taken, fragment: str, strength: Measure, facts: Facts) -> list[Share]:
+    """What a dose brings of a part of its substance: copper of copper sulfate."""
+    material = taken.dose.material
+    if material is not None and _fragment(material) == fragment:
+        return shares(taken, strength, facts)  # diluted from a stock of the same part
+    found = []
+    for portion in portions(taken, facts):
+        if portion.substance is None or portion.moles is None or portion.grams is None:
+            continue
+        if strength.dimension == "molarity":
+            count = groups_per_formula(portion.substance, fragment)
+            if count is not None:
+                changed = replace(portion, moles=portion.moles * count)
+                found.extend(_as_shares(taken, changed, strength))
+            continue
+        share = share_of(portion.substance, fragment)
+        if share is not None:
+            reading = f"{fragment} is {share:.4g} of {portion.substance.name}"
+            changed = replace(portion, grams=portion.grams * share, reading=reading)
+            found.extend(_as_shares(taken, changed, strength))
+    return found
 
 
 def _is_water(taken: Taken) -> bool:
@@ -262,9 +300,9 @@ def _in_unit(component: Component, strength: Measure) -> float | None:
     if strength.dimension == "normality" and component.substance is not None:
         mol = component.mol_per_litre
         return None if mol is None else mol * equivalents(component.substance)
-    if strength.dimension in ("mass-concentration", "ppm"):
+    if strength.dimension == "mass-concentration":
         return component.gram_per_litre
-    if strength.dimension == "fraction" and component.gram_per_litre is not None:
+    if strength.dimension in ("fraction", "ppm") and component.gram_per_litre is not None:
         return component.gram_per_litre / 1000
     return None
 
@@ -291,6 +329,15 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
         label = max(labels, key=lambda m: m.base) if labels else None
         if label is not None and label is not strength:
             found.append(_diluted(taken, label))
+            if strength.dimension == "fraction" and strength.basis in (None, "v/v"):
+                # a percentage of the concentrate as it is bought, by volume
+                amount = taken.dose.amount
+                found.append(
+                    Share(
+                        taken, amount.base, relative(amount, ALIQUOT), shown(amount), "neat",
+                        "v/v of the concentrate", False,
+                    )  # fmt: skip
+                )
     if not found:
         for portion in portions(taken, facts):
             found.extend(_as_shares(taken, portion, strength))
@@ -303,7 +350,7 @@ def _by_mass(taken: Taken, strength: Measure) -> Iterator[Share]:
     """A mass (or neat volume) of something without a formula."""
     amount = taken.dose.amount
     if amount.dimension == "mass":
-        scale = 1000.0 if strength.dimension == "fraction" else 1.0
+        scale = 1000.0 if strength.dimension in ("fraction", "ppm") else 1.0
         yield Share(taken, amount.base / scale, relative(amount, 0.05), shown(amount), "mass")
     elif amount.dimension == "volume" and strength.dimension == "fraction":
         yield Share(taken, amount.base, relative(amount, ALIQUOT), shown(amount), "neat")
@@ -326,8 +373,10 @@ def _as_shares(taken: Taken, portion: Portion, strength: Measure) -> Iterator[Sh
     elif strength.dimension == "normality" and portion.moles is not None:
         z = equivalents(portion.substance) if portion.substance else 1
         yield share(portion.moles * z, f"{portion.working} × {z}" if z > 1 else portion.working)
-    elif strength.dimension in ("mass-concentration", "ppm") and grams is not None:
+    elif strength.dimension == "mass-concentration" and grams is not None:
         yield share(grams, f"{grams:.4g} g")
+    elif strength.dimension == "ppm" and grams is not None:
+        yield share(grams / 1000, f"{grams:.4g} g")
     elif strength.dimension == "fraction":
         volume = taken.dose.amount
         if volume.dimension == "volume" and strength.basis in (None, "v/v"):

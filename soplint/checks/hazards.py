@@ -31,6 +31,9 @@ def _sections(bench: Bench) -> Iterator[list[Sentence]]:
             yield current
             current = []
         elif read.table is None and index not in bench.scope.aside:
+            if read.block.kind == "paragraph" and read.block.number is None:
+                yield current  # a paragraph of its own begins with a vessel of its own
+                current = []
             current.extend(read.sentences)
     yield current
 
