@@ -212,7 +212,12 @@ def decompose(atoms: Atoms, name: str, hint: str | None = None) -> Dissociation 
 
 
 def from_split(split: Split, name: str) -> Dissociation:
-    """A split as a dissociation."""
+    """A split as a dissociation.
+
+    >>> split = find_split(parse_formula("NaHCO3")[0])
+    >>> from_split(split, "NaHCO3").systems if split else None
+    (('carbonate', 1.0),)
+    """
     systems = tuple((part.name, float(n)) for part, n in split.parts if part.acid)
     ions = tuple((part.name, float(n)) for part, n in split.parts if not part.acid)
     return Dissociation(name, systems, ions, "dissociates", ())

@@ -22,7 +22,7 @@ def henderson_hasselbalch(apparent_pka: float, base: float, acid: float) -> floa
     Parameters: apparent_pka, pKa' at the ionic strength of the buffer (see `pka`);
     base, acid, concentrations in one unit.
     Returns: pH [1].
-    Validity: ratio 0.1 to 10, pH 4 to 10, both above 0.001 mol/L: within 0.05.
+    Validity: both forms at least twenty times [H+] and [OH-]: within 0.05.
     Errors: BadAmountError.
     Reference: Henderson 1908, Am. J. Physiol. 21, 173; Hasselbalch 1917, Biochem. Z. 78, 112.
 
