@@ -6,13 +6,21 @@ final volume.  All reasonable readings are tried before a disagreement is record
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
 from itertools import islice, product
 
 from soplint.bench.facts import Facts
 from soplint.bench.numbers import EXACT, nominal_relative, relative, shown
-from soplint.bench.preparation import FinalVolume, Preparation, Stated, Taken, Target
+from soplint.bench.preparation import (
+    Claimed,
+    FinalVolume,
+    Preparation,
+    Stated,
+    Taken,
+    Target,
+)
 from soplint.bench.relation import Relation
 from soplint.bench.things import Bearers, Share, bearers, shares
 from soplint.bench.volumes import final_volume
@@ -83,8 +91,23 @@ def targets_of(preparation: Preparation) -> Iterator[Target]:
             yield from _finals(replace(taken, dose=other))
     for claimed in preparation.claimed:
         claim = claimed.claim
+        if not _claim_counts(claimed):
+            continue
         if claim.kind == "strength" and claim.measure.dimension in _STRENGTHS:
             yield Target(Stated(claimed.text, claim.measure), claim.material, "claim")
+
+
+# Sentences whose results come from a measurement, not from the recipe before them.
+_MEASURED = re.compile(
+    r"\b(example|titre|titration|reading|sample|absorbance|blank|limit|range|between|sensitivity)\b"
+    r"|[A-Za-z]\w*\s*=\s*\d|\b\d+(?:\.\d+)?\s?[x×X]\b",
+    re.IGNORECASE,
+)
+
+
+def _claim_counts(claimed: Claimed) -> bool:
+    """Whether a claim speaks of the preparation as made (not of a result or another fold)."""
+    return claimed.claim.material is not None or not _MEASURED.search(claimed.text.chars)
 
 
 def _title_counts(preparation: Preparation) -> bool:

@@ -27,6 +27,8 @@ from soplint.notation.phrases import (
 from soplint.quantities.model import Measure
 
 _NOISE_COMMANDS = {"WASH", "STORE", "FILTER", "REPEAT"}
+# After these a quantity without a substance means that the sentence was not understood.
+_QUANTITATIVE = {"WEIGH", "DISSOLVE", "DILUTE"}
 _UNIT_FREE = {"number", "time", "money", "count", "other"}
 
 
@@ -161,5 +163,5 @@ def _unbound(sentence: Sentence) -> Iterator[Measure]:
         elif isinstance(phrase, (Loose, Ware)) or command in _NOISE_COMMANDS:
             continue
         elif isinstance(phrase, Dose) and phrase.material is None and phrase.role is None:
-            if phrase.amount.dimension in ("mass", "volume", "amount"):
+            if command in _QUANTITATIVE and phrase.amount.dimension in ("mass", "volume", "amount"):
                 yield phrase.amount

@@ -114,7 +114,7 @@ def _liquid(
     into = _into(rest)
     if water and into is not None and (hit := strong_acid(_material(into))) is not None:
         yield Pouring(*hit, _place(sentence, into), sentence.text, phrase.start, into.end, True)
-    elif water and phrase.role in ("in", "to", "into", "with") and vessel.acid is None:
+    elif water and (phrase.role in ("in", "to", "into") or _new_vessel(sentence, phrase)):
         vessel.wet = True
     elif water:
         if vessel.acid is not None and not vessel.wet and isinstance(phrase, Dose):
@@ -132,6 +132,18 @@ def _liquid(
             vessel.wet = True
     elif isinstance(phrase, Dose) and phrase.amount.dimension == "volume":
         vessel.wet = True  # another liquid is there: its water meets the acid slowly or first
+
+
+_VESSEL_VERBS = ("place", "put", "measure", "take", "fill", "charge")
+
+
+def _new_vessel(sentence: Sentence, phrase: Phrase) -> bool:
+    """"Place 60 mL of water in the receiver": the water is there before anything else."""
+    verbs = [p for p in sentence.phrases if isinstance(p, Command) and p.end <= phrase.start]
+    if not verbs:
+        return False
+    word = sentence.text.chars[verbs[-1].start : verbs[-1].end].lower()
+    return word.startswith(_VESSEL_VERBS)
 
 
 def _into(rest: tuple[Phrase, ...]) -> Dose | Material | None:

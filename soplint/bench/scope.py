@@ -158,7 +158,9 @@ class _Walker:
     def _alone(self, read: ReadBlock, title: Title) -> None:
         """A line that names a solution and makes it: its own preparation."""
         collector = Collector(self.scope.reagents, self.scope.equivalents)
-        _, parents = self._title()
+        above, parents = self._title()
+        if title.bare and above is not None:
+            title = inherit([title, above])
         collector.open(title, parents, self.section, kind="line")
         for sentence in read.sentences:
             collector.sentence(sentence)
@@ -267,6 +269,11 @@ def _one_line(read: ReadBlock) -> Title | None:
     phrases = [phrase for sentence in read.sentences for phrase in sentence.phrases]
     first = read.sentences[0].phrases[0]
     head = first.material if isinstance(first, Dose) else first
+    if isinstance(first, Dose) and head is None and first.amount.dimension == "volume":
+        # "- 10 L: 100 mL stock A, ...": the line is a batch size of the section's recipe
+        if first.role is None and _goes_on(read.sentences[0], first) and len(phrases) > 1:
+            return title_of(replace(read.sentences[0], phrases=(first,)), "line")
+        return None
     if not isinstance(head, Material) or not head.words:
         return None
     makes = any(isinstance(phrase, ToVolume) for phrase in phrases) or any(

@@ -50,6 +50,8 @@ def bearers(
 ) -> Iterator[Bearers]:
     """The groups of doses that can bear a strength, the most literal first."""
     doses = [t for t in preparation.taken if not _is_water(t)]
+    if material is not None and material.is_water:
+        return
     fragment = _fragment(material)
     if fragment is not None:
         parts = tuple(tuple(s) for t in doses if (s := _of_part(t, fragment, strength, facts)))
@@ -111,7 +113,12 @@ def _named(
     members = [(t, _of_substance(t, material, strength, facts, order, preparation)) for t in doses]
     direct = [(t, s) for t, s in members if s]
     generic = material.match is not None and material.match.generic
+    if generic and strength.dimension not in ("molarity", "molality", "normality"):
+        return  # "phosphate, 10 mg/L" may be counted as any of its forms
     if direct and not generic:
+        same = [(t, s) for t, s in direct if not _only_related(t, material)]
+        if same and len(same) < len(direct):
+            yield Bearers("substance", tuple(tuple(s) for _, s in same))
         yield Bearers("substance", tuple(tuple(s) for _, s in direct))
     systems = _systems(material)
     if systems:
@@ -160,6 +167,12 @@ def _related(material: Material, own: Material) -> bool:
     )
 
 
+def _only_related(taken: Taken, material: Material) -> bool:
+    """Whether a dose is a salt or the free form of the substance, not the substance itself."""
+    own = taken.dose.material
+    return own is not None and own.match is not None and not same_substance(material, own)
+
+
 def _of_system(
     taken: Taken,
     systems: frozenset[str],
@@ -188,6 +201,7 @@ def _unnamed(
     preparation: Preparation,
 ) -> Iterator[Bearers]:
     """A strength without a name: of the only stock, the only buffer system, the only solute."""
+    told = material is not None and material.match is None and bool(tokens(material.words))
     stocks = [(t, _by_label(t, material, strength, facts, order, preparation)) for t in doses]
     kept = [s for _, s in stocks if s]
     if len(kept) == 1 and len(doses) == 1:
@@ -200,14 +214,15 @@ def _unnamed(
         for s in candidates(t.dose.material)
         if s.acid_system and s.acid_system not in SEQUESTRANTS
     }
-    if len(systems) == 1:
+    if len(systems) == 1 and not told:
         one = frozenset(str(s) for s in systems)
         sums = [_of_system(t, one, strength, facts, order, preparation) for t in doses]
         group = tuple(tuple(s) for s in sums if s)
         if group:
             yield Bearers("system", group)
             return
-    if len(doses) == 1:
+    by_count = strength.dimension in ("molarity", "molality", "normality")
+    if len(doses) == 1 and (by_count or not told):
         found = shares(doses[0], strength, facts)
         if found:
             yield Bearers("solute", (tuple(found),))
@@ -239,7 +254,7 @@ def _by_label(
 
 
 def _alike(of: Material, material: Material | None) -> bool:
-    if material is None or not tokens(material.words):
+    if material is None or of.match is None or material.match is None:
         return True
     return same_substance(of, material) or bool(_systems(of) & _systems(material))
 

@@ -66,6 +66,9 @@ class _Title:
         if material.ph is not None and self.ph is None:
             self.ph = self._stated(material.ph)
         self.temperature = self.temperature or material.temperature
+        for part in material.contents:
+            for strength in part.strengths:
+                self._strength(strength, part)
         for strength in (*material.strengths, *material.finals, *material.bracket):
             if strength.dimension == "volume" and self.volume is None:
                 self.volume = self._stated(strength)

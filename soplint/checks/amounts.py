@@ -90,6 +90,8 @@ def _common(bench: Bench) -> Iterator[Judgement]:
     for relations in groups.values():
         first = relations[0]
         cause = likely_cause(first, bench)
+        if _rest_follows(first):
+            continue
         grade = severity(replace(first, one_figure=False), cause is not None)
         if grade is None:
             continue
@@ -108,6 +110,17 @@ def _common(bench: Bench) -> Iterator[Judgement]:
         finding = replace(made.finding, related=others + made.finding.related)
         disproved = tuple(Disagreement(r.tested, r.computed, r.working) for r in relations)
         yield Judgement(finding, disproved)
+
+
+_REST = 0.25
+
+
+def _rest_follows(relation: Relation) -> bool:
+    """Whether the strengths may refer to a larger volume: the sample is added to the mix later."""
+    volume = relation.volume
+    if volume is None or volume.provenance not in ("total", "sum", "weak"):
+        return False
+    return 0 < relation.deviation <= _REST
 
 
 @rule("amounts.mass-fits-named-form")

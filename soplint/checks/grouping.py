@@ -31,6 +31,8 @@ def common_factor(bench: Bench) -> dict[int, int]:
         if key in agreeing or len(tested) < 2:
             continue
         factors = [1 + r.deviation for r in relations]
+        if min(factors) <= 0:
+            continue
         if max(factors) <= min(factors) * (1 + _ALIKE):
             found.update({id(r): number for r in relations})
     return found

@@ -119,6 +119,13 @@ class Meaning:
 
     def _to_volume(self, part: ToVolume, index: int) -> int:
         after = self.found[index + 1 : index + 3]
+        if self._pours(part, after[:1]):
+            material = after[0]
+            assert isinstance(material, Material) and part.volume is not None
+            self.phrases.append(
+                Dose(part.start, material.end, part.volume, material, role="to", command=self.command)
+            )
+            return 2
         poured = (
             len(after) == 2
             and isinstance(after[0], Role)
@@ -147,6 +154,13 @@ class Meaning:
         self.phrases.append(replace(part, command=self.command, diluent=diluent))
         self.adjusting = False
         return 1
+
+    def _pours(self, part: ToVolume, after: Sequence[Part]) -> bool:
+        """"Add 10 µL to 90 µL medium": something is added to a volume of something else."""
+        if part.volume is None or part.said_final or self.command not in ("ADD", "POUR"):
+            return False
+        added = any(isinstance(phrase, Dose) for phrase in self.phrases)
+        return added and bool(after) and isinstance(after[0], Material) and bool(after[0].words)
 
     # --- doses -----------------------------------------------------------------------------------
 

@@ -29,7 +29,7 @@ class Remarks:
     temperature: Measure | None = None
     molar_mass: Measure | None = None
     density: Measure | None = None
-    names: list[Match] = field(default_factory=list)
+    contents: list[Material] = field(default_factory=list)
 
 
 class Reader:
@@ -88,6 +88,7 @@ class Reader:
             finals=tuple(remarks.finals),
             molar_mass=remarks.molar_mass,
             density=remarks.density,
+            contents=tuple(remarks.contents),
         )
 
     def _head(self, tree: Tree[Token]) -> tuple[str, Match | None, bool]:
@@ -124,8 +125,22 @@ class Reader:
                     elif terminal.measure is not None:
                         before.append(terminal.measure)
 
+    def _contents(self, bracket: Tree[Token]) -> list[Material]:
+        """Named strengths in a bracket, where it lists at least two: "(0.15 M NaCl, 10 mM Tris)"."""
+        named = [
+            self.material(child)
+            for child in bracket.children
+            if isinstance(child, Tree) and child.data == "material"
+        ]
+        named = [m for m in named if m.words and m.strengths]
+        return named if len(named) > 1 else []
+
     def remarks(self, bracket: Tree[Token], into: Remarks) -> Remarks:
         """What the bracket says, added to ``into``."""
+        named = self._contents(bracket)
+        if named:
+            into.contents.extend(named)
+            return into
         found = list(self.tokens(bracket))
         final = any(t.kind in ("FINAL", "FINALCONC") for t in found)
         solvent = False
@@ -133,8 +148,6 @@ class Reader:
             measure = terminal.measure
             if terminal.kind == "IN":
                 solvent = True  # "(10 g/L in ethanol 96 % v/v)": what follows is the solvent's
-            elif terminal.match is not None and not solvent:
-                into.names.append(terminal.match)
             if measure is None or solvent:
                 continue
             if terminal.kind in ("STRENGTH", "PERCENT", "FOLD"):

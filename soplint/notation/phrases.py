@@ -30,6 +30,7 @@ class Material:
     molar_mass: Measure | None = None
     density: Measure | None = None
     role: str | None = None  # the role word before it: "in", "with", "into", "from", "of"
+    contents: tuple[Material, ...] = ()  # named strengths in its brackets: "(0.15 M NaCl, 10 mM Tris)"
 
     @property
     def is_water(self) -> bool:

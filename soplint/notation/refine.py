@@ -6,6 +6,7 @@ A volume beside a vessel is the size of ware ("1000 mL volumetric flask"), a bar
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import replace
 
@@ -27,6 +28,7 @@ _LINKS = {"COMMA", "AND", "OR", "SLASH", "SEMICOLON"}
 
 def refine(chars: str, found: list[Terminal]) -> list[Terminal]:
     """The terminals with ware sizes and pH values recognised."""
+    found = _adjectives(chars, found)
     kinds = {terminal.kind for terminal in found}
     if "WARE" in kinds:
         found = _ware(chars, found)
@@ -35,6 +37,24 @@ def refine(chars: str, found: list[Terminal]) -> list[Terminal]:
     if "NUMBER" in kinds and ("PHWORD" in kinds or "ADJUST" in kinds):
         found = _ph_numbers(found)
     return found
+
+
+_PARTICIPLE = {"MIX", "DILUTE", "FILTER", "HEAT", "COOL", "STORE", "USE", "ADJUST", "WASH", "PREPARE"}
+_ARTICLE = re.compile(r"(?:\b(?:the|a|an|of|this|that|each|with|in|to)|[0-9][^ ]*|\d [^ ]+)\s+$", re.IGNORECASE)
+
+
+def _adjectives(chars: str, found: list[Terminal]) -> list[Terminal]:
+    """"the mixed intermediate", "of boiled water": a participle before a noun commands nothing."""
+    result = list(found)
+    for index, terminal in enumerate(found[:-1]):
+        if terminal.kind not in _PARTICIPLE or not chars[: terminal.end].endswith("ed"):
+            continue
+        following = found[index + 1].kind
+        if following in ("NAME", "WATER", "SOLUTION", "OTHER") and _ARTICLE.search(
+            chars[: terminal.start]
+        ):
+            result[index] = replace(terminal, kind="OTHER")
+    return result
 
 
 def _ware(chars: str, found: list[Terminal]) -> list[Terminal]:
