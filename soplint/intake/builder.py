@@ -37,6 +37,7 @@ class Builder:
         text = strip(text, task(text.chars))
         if text.chars:
             ordered = number is not None
+            number = None if number == "#" else number  # counted by the reader of the text
             self.blocks.append(Block("item", text, level, number, bold, ordered, self.strict))
 
     def paragraph(self, text: Text, bold: bool = False) -> None:

@@ -51,6 +51,7 @@ class Titles:
         self.ranks: dict[str, int] = {}
         self.first = _first_title(lines) if first_is_title else -1
         self.following = _following_numbers(lines)
+        self.previous = ("", False)  # the last printed number, and whether it was a title's
 
     def at(self, index: int) -> Title | None:
         """The heading that begins with the line at ``index``."""
@@ -69,10 +70,9 @@ class Titles:
             return None
         if index == self.first:
             return Title(line, 1, index + 1)
-        if self.numbered(index, stripped):
-            mark = printed_number(stripped, heading=True)
-            assert mark is not None and mark.number is not None
-            return Title(line, 2 + mark.number.count("."), index + 1)
+        number = self.numbered(index, stripped)
+        if number is not None:
+            return Title(line, 2 + number.count("."), index + 1)
         if self.alone(index) and is_all_capitals(stripped):
             return Title(line, 1 if index == 0 else 2, index + 1)
         return None
@@ -111,35 +111,50 @@ class Titles:
     def blank(self, index: int) -> bool:
         return index >= len(self.lines) or not self.lines[index].raw.strip()
 
-    def numbered(self, index: int, stripped: str) -> bool:
-        """Whether a numbered line is a title: no sentence, with parts or a gap below it."""
-        if not stripped[:1].isalnum() or stripped[-1:] in _END_OF_SENTENCE:
-            return False
+    def numbered(self, index: int, stripped: str) -> str | None:
+        """The number of a numbered line that is a title, not a step; None for any other line."""
+        if not stripped[:1].isdigit():
+            return None
         mark = printed_number(stripped, heading=True)
-        if mark is None or mark.number is None or not mark.number[:1].isdigit():
+        if mark is None or mark.number is None or stripped[mark.length - 1] == ")":
+            return None
+        titled = self.titled(index, mark.number, stripped[: mark.length], stripped[mark.length :])
+        self.previous = (mark.number, titled)
+        return mark.number if titled else None
+
+    def titled(self, index: int, number: str, printed: str, title: str) -> bool:
+        """Whether a numbered line is no sentence and has parts or a gap below it."""
+        if not title or title[-1] in _END_OF_SENTENCE:
             return False
-        if stripped.startswith(("Step", "STEP")) or stripped[mark.length - 1] == ")":
-            return False
-        title = stripped[mark.length :].strip()
         following = self.following[index]
-        if following is not None and following[1].startswith(mark.number + "."):
+        if following is not None and following[1].startswith(number + "."):
             return True
-        if index and printed_number(self.lines[index - 1].raw.strip()):
-            return False
-        word = title.split(maxsplit=1)[0].lower().strip(",") if title else ""
+        if _is_next(self.previous[0], number) and not self.previous[1]:
+            return False  # the step before was an item
+        word = title.split(maxsplit=1)[0].lower().strip(",")
         if word in _VERBS or starts_with_quantity(title) or ". " in title:
             return False
+        sibling = following is not None and _is_next(number, following[1])
         if self.blank(index + 1):
-            gap_only = following is not None and not self.text_between(index + 1, following[0])
-            pointed = not stripped[: mark.length].strip()[-1].isdigit()
-            return not (gap_only and (pointed or title[:1].islower()))
-        if following is not None and following[0] == index + 1:
+            bare = following is None or self.text_between(index + 1, following[0])
+            return bare or not sibling or (printed.strip()[-1].isdigit() and title[0].isupper())
+        if sibling and following is not None and following[0] == index + 1:
             return False
         below = self.lines[index + 1].raw.strip()
-        return self.alone(index) and (not below[:1].islower()) and len(title) < 70
+        return self.alone(index) and not below[:1].islower() and len(title) < 70
 
     def text_between(self, start: int, end: int) -> bool:
+        """Whether lines with text stand from ``start`` to ``end``; a few are looked at."""
         return any(self.lines[k].raw.strip() for k in range(start, min(end, start + 5)))
+
+
+def _is_next(number: str, following: str) -> bool:
+    """Whether ``following`` counts on from ``number`` at the same depth."""
+    stem, _, last = number.rpartition(".")
+    next_stem, _, next_last = following.rpartition(".")
+    if stem != next_stem or not (last.isdecimal() and next_last.isdecimal()):
+        return False
+    return int(next_last) == int(last) + 1
 
 
 def without_closing_hashes(title: str) -> str:

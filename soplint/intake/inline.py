@@ -33,7 +33,7 @@ _LINK = re.compile(
 )
 _FOOTNOTE = re.compile(r"\[\^[^\[\]\s]{1,30}\]")
 _ROLE = re.compile(r":[a-z][a-z-]{1,20}:$")
-_TARGET = re.compile(r"\s?<[^<>\r]{1,300}>$")
+_TARGET = re.compile(r" ?<[^<>\r]{1,300}>$")
 # Text struck out, ~~so~~, is left out up to this length; a longer stretch is not taken for one.
 LONGEST_STRUCK = 2000
 _BRACES = re.compile(r"\{([^{}\r]{0,200})\}")

@@ -10,6 +10,7 @@ from soplint.intake.grids import grid_table, simple_table
 from soplint.intake.inline import clean_line
 from soplint.intake.model import Table, Text
 from soplint.intake.numbering import bullet, printed_number
+from soplint.intake.rst import list_table
 from soplint.intake.scan import Line
 from soplint.intake.tables import pipe_segments, pipe_table, table_of
 
@@ -39,6 +40,8 @@ def layout_table(lines: Sequence[Line], index: int) -> Found | None:
     found: tuple[Table, int] | None = None
     if first == "+":
         found = grid_table(lines, index)
+    elif first == ".":
+        found = list_table(lines, index)
     elif first == "=":
         found = simple_table(lines, index)
     if found is None and "|" in raw:

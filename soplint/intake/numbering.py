@@ -11,7 +11,7 @@ from dataclasses import dataclass
 
 _UNIT_WORDS = """
     kg mg µg ug pg ng g gm gms gr gram grams milligram milligrams microgram micrograms kilogram
-    L l mL ml ML Ml mls µL µl uL ul nL nl dL dl cL cl pL m1 u1 cc cm3 dm3 liter liters litre litres
+    l mL ml ML Ml mls µL µl uL ul nL nl dL dl cL cl pL m1 u1 cc cm3 dm3 liter liters litre litres
     milliliter milliliters millilitre millilitres microliter microliters microlitre microlitres
     mM µM uM nM pM mol mmol µmol umol nmol pmol mole moles molar millimolar micromolar normal
     molal mN meq mEq eq equiv equivalents ppm ppb % ‰ percent fold U IU unit units
@@ -37,6 +37,7 @@ QUANTITY = rf"(?:[~≈<>≤≥]|ca\.?|about|approx\.?)?\s?{_RANGE}\s?-?\s?{_UNIT
 _QUANTITY_START = re.compile(rf"(?:\(|\+\s?)?{QUANTITY}", re.IGNORECASE)
 _QUANTITY_END = re.compile(rf"{QUANTITY}(?:\s?\([^()]{{0,60}}\))?[.,;]?\s*$", re.IGNORECASE)
 _UNIT_NEXT = re.compile(rf"-?\s?{_UNIT}")
+_RANGE_NEXT = re.compile(r"(?:to|or|and)\s[\d.~]")
 
 _STEP = re.compile(
     r"(?:Step|STEP|Schritt|Étape|Шаг)\s+(\d{1,3}[a-z]?)(?:\s*[.:)]\s*|\s+[-–—]\s+|$)"
@@ -131,7 +132,7 @@ def _dotted(match: re.Match[str], chars: str) -> Mark | None:
     parts = number.lstrip("ABCDEFGHIJKLMNOPQRSTUVWXYZ.").split(".")
     if any(len(part) > 1 and part[0] == "0" for part in parts):
         return None
-    if not rest or _UNIT_NEXT.match(rest):
+    if not rest or _UNIT_NEXT.match(rest) or _RANGE_NEXT.match(rest):
         return None
     if rest[0].isupper() or rest[0] in "(\"'“‘[":
         return Mark(number, match.end(), True)

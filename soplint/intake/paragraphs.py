@@ -54,6 +54,7 @@ class Place:
 
     depth: int = 0
     mark: Mark | None = None
+    column: int = 0  # where the item's text begins; a number left of it belongs beside the item
 
 
 def is_bold(raw: str) -> bool:
@@ -93,9 +94,10 @@ def _add_line(builder: Builder, line: Line, place: Place) -> None:
 
 
 def _add_text(builder: Builder, lines: list[Line], place: Place) -> None:
+    column = lines[0].column
     for group in _groups(_units(lines), place.mark is not None):
         _add_group(builder, group, place)
-        place = Place(place.depth)
+        place = Place(place.depth, column=column)
 
 
 def _add_group(builder: Builder, group: Sequence[_Unit], place: Place) -> None:
@@ -108,7 +110,8 @@ def _add_group(builder: Builder, group: Sequence[_Unit], place: Place) -> None:
         else:
             builder.item(rest, place.depth, mark, bold)
     elif mark is not None:
-        builder.item(rest, place.depth + 1, mark, bold)
+        beside = place.depth and text.column < place.column
+        builder.item(rest, place.depth if beside else place.depth + 1, mark, bold)
     else:
         builder.paragraph(text, bold)
 
@@ -134,7 +137,8 @@ def _groups(units: Iterable[_Unit], listed: bool) -> Iterator[list[_Unit]]:
         if group:
             mark = _mark_after(group[-1].text.chars, unit.text, in_item, width)
             begins = unit.anew or length > BLOCK_LENGTH or mark is not None
-            if begins or starts_anew(group[-1].text.chars, unit.text.chars, width, listed):
+            inside = listed and unit.text.column >= units[0].text.column
+            if begins or starts_anew(group[-1].text.chars, unit.text.chars, width, inside):
                 yield group
                 group, length = [], 0
         if not group:
@@ -170,7 +174,7 @@ def starts_anew(before: str, chars: str, width: int, listed: bool = False) -> bo
         return True
     if _OPEN_END.search(before[-12:]) or _CONTINUES.match(chars) or _unclosed(before):
         return False
-    if listed and _begins_low(chars):
+    if listed and (before[-1:] == "," or _begins_low(chars)):
         return False
     recipe = is_recipe_line(before)
     if recipe and is_recipe_line(chars):

@@ -46,10 +46,13 @@ def _markdown(lines: Sequence[str]) -> Reading:
 
 def _plain(lines: Sequence[str], strict: bool, rst: bool) -> Reading:
     from soplint.intake.plain import read_plain
+    from soplint.intake.rst import readable
 
     builder = Builder(strict=strict)
     values, skip = front_matter(lines)
     source = [Line(k + 1, 1, lines[k]) for k in range(skip, len(lines))]
+    if rst:
+        source = readable(source)
     read_plain(builder, source, first_is_title=strict, by_appearance=rst)
     title = _first_title(builder.blocks) or values.get("title") or values.get("Title") or None
     if title is None and strict and builder.blocks:

@@ -38,8 +38,6 @@ def sentences(text: Text) -> list[Text]:
     ['Add 5.0 mL of conc. HCl.', 'Mix for 2 min.', 'Cool.']
     """
     chars = text.chars
-    if chars.find(" ") < 0:
-        return [text] if chars else []
     found: list[Text] = []
     start = 0
     for end in _END.finditer(chars):

@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator, Sequence
 
-from soplint.intake.builder import joined
+from soplint.intake.builder import joined, one_line
 from soplint.intake.inline import clean_line
 from soplint.intake.model import Table, Text
 from soplint.intake.numbering import starts_with_quantity
@@ -109,7 +109,7 @@ def table_of(rows: list[list[Text]], head_rows: int | None, caption: Text | None
     if head_rows and len(rows) > head_rows and _holds_units(rows[head_rows]):
         head_rows += 1
     _fill(rows)
-    head = _merged(rows[:head_rows])
+    head = tuple(one_line(cell) for cell in _merged(rows[:head_rows]))
     if not any(cell.chars for cell in head):
         head = ()
     body = tuple(tuple(row) for row in rows[head_rows:])

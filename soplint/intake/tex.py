@@ -22,7 +22,7 @@ def mathematics(scan: Scan, start: int, end: int) -> None:
         at = step.start()
         if top is not None:
             mathematics(scan, step.start(1), step.end(1))
-            scan.put("/", at)
+            scan.put("/", step.end(1))
             mathematics(scan, step.start(2), step.end(2))
         elif braced is not None or single is not None:
             scan.raise_(plain_superscript((braced or single or "").strip()), at, step.end())
