@@ -42,6 +42,8 @@ def mixtures(preparation: Preparation, facts: Facts, order: int) -> Iterator[Mix
         return
     parts: list[list[tuple[dict[str, float], str, frozenset[str], bool]]] = []
     for taken in preparation.taken:
+        if taken.dose.amount.manner == "about" and _is_adjuster(taken):
+            return
         options = _contents(taken, facts, order, preparation)
         if options is None:
             return
@@ -59,13 +61,19 @@ def mixtures(preparation: Preparation, facts: Facts, order: int) -> Iterator[Mix
         yield Mixture(total, working, systems, acids, strong)
 
 
+def _is_adjuster(taken: Taken) -> bool:
+    """Whether a dose is a strong acid or base: "about" so much of it settles no pH."""
+    material = taken.dose.material
+    return material is not None and any(s.family in _STRONG for s in candidates(material))
+
+
 def _contents(
     taken: Taken, facts: Facts, order: int, preparation: Preparation
 ) -> list[tuple[dict[str, float], str, frozenset[str], bool]] | None:
     """What a dose brings, in mol by name; [] for water and neutral things, None when unknown."""
     material = taken.dose.material
     if material is None:
-        return [] if taken.solvent else None
+        return [] if taken.solvent or taken.dose.amount.dimension == "mass" else None
     if material.is_water:
         return []
     meant = candidates(material)

@@ -195,14 +195,22 @@ def _test(
     if not measure.base:
         return None
     first: Balance | None = None
-    ways = 0
+    ways, sure = 0, True
     for group in _groups(preparation, target, facts, order):
         for candidate in _balances(preparation, target, group, volume, scale):
             if candidate.closes:
                 return _relation(preparation, candidate, ways)
             first = first or candidate
-        ways += 1
-    return _relation(preparation, first, ways) if first is not None else None
+        ways, sure = ways + 1, sure and group.sure and not _many(group)
+    return _relation(preparation, first, ways) if first is not None and sure else None
+
+
+def _many(group: Bearers) -> bool:
+    """Whether one dose can mean several stocks of different strength."""
+    return any(
+        len({s.label.base for s in readings if s.label is not None}) > 1
+        for readings in group.shares
+    )
 
 
 def _groups(

@@ -146,6 +146,8 @@ class Collector:
                 self._inline_title(sentence, dose)
                 return
         solvent = dose.role == "in" and dose.amount.dimension == "volume"
+        if dose.material is None and dose.role == "to":
+            return  # "weigh to 1 mg": how exactly, not how much
         dose = self._with_material(dose, solvent)
         taken = Taken(sentence.text, dose, self.step, solvent)
         if not self.closed:
@@ -163,6 +165,10 @@ class Collector:
         if not nameless or solvent or dose.role not in (None, "of"):
             return dose
         named = [m for m in title.materials if m.words] if title is not None else []
+        anonymous = material is None and dose.amount.dimension == "volume"
+        if anonymous and (self.closed or self.done):
+            # "pipette 1.00 mL of it": of the solution made just before
+            return replace(dose, material=Material(dose.start, dose.end, "", solution=True))
         if self.kind == "line" and len(named) == 1 and not self.closed:
             base = replace(named[0], strengths=(), finals=(), bracket=(), ph=None, solution=False)
             if material is not None:
@@ -171,9 +177,6 @@ class Collector:
                     finals=material.finals,
                 )  # fmt: skip
             return replace(dose, material=base)
-        if material is None and dose.amount.dimension == "volume" and self.done + [self.current]:
-            if self.closed or self.done:
-                return replace(dose, material=Material(dose.start, dose.end, "", solution=True))
         return dose
 
     def _begin_after_make_up(self, taken: Taken, command: str | None) -> None:
@@ -217,6 +220,7 @@ class Collector:
                     self.current.made.append(
                         Made(row.text, to, self.step, len(self.current.taken))
                     )
+                    self.closed = True
             if dose is None and to is None:
                 for phrase in row.sentence.phrases:
                     if isinstance(phrase, SetPH):

@@ -73,15 +73,34 @@ class Facts:
         return found[0] if len({m.base for m in found}) == 1 else None
 
     def solution(self, material: Material, order: int, section: int) -> Solution | None:
-        """The solution of this document that a material names, the nearest one before it first."""
+        """The solution of this document that a material names, if only one can be meant."""
+        found = self.meant(material, order, section)
+        return found[0] if len(found) == 1 or (found and tokens(material.words)) else None
+
+    def meant(self, material: Material, order: int, section: int) -> tuple[Solution, ...]:
+        """Solutions that a material can mean, the likeliest first; never the preparation itself.
+
+        A name of its own means the nearest solution of that name.  A bare "stock", "buffer" or
+        nothing means the solution made last in the section, else any made before.
+        """
         wanted = tokens(material.words)
-        named = [s for s in self.solutions if _fits(s, material, wanted)]
+        named = [s for s in self.solutions if s.order != order and _fits(s, material, wanted)]
         if wanted:
             exact = [s for s in named if s.tokens == wanted] or named
-            return min(exact, key=lambda s: _distance(s, order), default=None)
+            return tuple(sorted(exact, key=lambda s: _distance(s, order))[:1])
+        said = _KINDS & set(_TOKEN.findall(material.words.lower()))
         before = [s for s in named if s.order < order]
-        near = [s for s in before if s.section == section] or before
-        return near[-1] if near else None
+        telling = [s for s in before if said & set(_TOKEN.findall(s.words.lower()))]
+        near = [s for s in before if s.section == section]
+        if near and (not said or near[-1] in telling or not telling):
+            return (near[-1],) if said != {"buffer"} or near[-1] in telling else ()
+        if said and telling:
+            return tuple(reversed(telling))
+        return () if said else tuple(reversed(before))[:1]
+
+
+# Nouns that stand for a solution named before.
+_KINDS = {"stock", "buffer", "solution", "concentrate", "titrant", "standard", "medium"}
 
 
 def _distance(solution: Solution, order: int) -> int:

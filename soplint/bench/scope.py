@@ -15,7 +15,7 @@ from soplint.bench.collect import Collector
 from soplint.bench.preparation import Preparation, Stated, Title
 from soplint.bench.title import title_of
 from soplint.notation.document import ReadBlock
-from soplint.notation.phrases import Command, Dose, Equivalent, Material, Sentence, ToVolume
+from soplint.notation.phrases import Claim, Command, Dose, Equivalent, Material, Sentence, ToVolume
 from soplint.notation.rows import RecipeTable, Variant
 from soplint.quantities.model import Measure
 
@@ -145,6 +145,10 @@ class _Walker:
         if opening is not None:
             self._alone(replace(read, sentences=read.sentences[1:]), opening)
             return
+        divided = _divided(read)
+        if divided is not None:
+            self._alone(*divided)
+            return
         alone = _one_line(read)
         if alone is not None:
             head = read.sentences[0]
@@ -238,11 +242,22 @@ def _opening(read: ReadBlock) -> Title | None:
     if len(read.sentences) < 2:
         return None
     first, rest = read.sentences[0], read.sentences[1:]
+    if not first.phrases or not _carries(first.phrases[0]):
+        return None
     if len(first.text.chars) > 120 or not _only_names(first.phrases):
         return None
     made = any(isinstance(p, (Dose, ToVolume)) for s in rest for p in s.phrases)
     title = title_of(first, "line")
     return title if made and (title.targets or title.volume or title.ph or title.fold) else None
+
+
+def _carries(phrase: object) -> bool:
+    """Whether a phrase names something with a strength, pH or volume."""
+    if isinstance(phrase, Dose):
+        return phrase.material is not None
+    return isinstance(phrase, Material) and bool(
+        phrase.strengths or phrase.bracket or phrase.ph or phrase.contents or phrase.solution
+    )
 
 
 def _only_names(phrases: Sequence[object]) -> bool:
@@ -260,6 +275,33 @@ def _only_names(phrases: Sequence[object]) -> bool:
         elif isinstance(phrase, ToVolume) and not phrase.said_final:
             return False
     return named
+
+
+_COLON = re.compile(r":(?=\s)|\s[-–—]\s")
+
+
+def _divided(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
+    """"25 mmol/L MES with 0.1 mol/L NaCl, 1 L: 250 mL of ...": title and body at the first colon."""
+    if not read.sentences:
+        return None
+    first = read.sentences[0]
+    colon = _COLON.search(first.text.chars)
+    if colon is None:
+        return None
+    before = tuple(p for p in first.phrases if p.end <= colon.start())
+    after = tuple(p for p in first.phrases if p.start >= colon.end())
+    if len(before) + len(after) != len(first.phrases) or not _only_names(before):
+        return None
+    body = [p for s in read.sentences[1:] for p in s.phrases] + list(after)
+    doses = [p for p in body if isinstance(p, Dose)]
+    title = title_of(replace(first, text=first.text, phrases=before), "line")
+    own = bool(title.targets or title.volume or title.ph or title.fold)
+    result = any(isinstance(p, (Claim, ToVolume)) for p in body) or len(doses) > 1
+    if not doses or not (own or (read.block.kind == "item" or len(doses) > 1) and result):
+        return None
+    title = replace(title, words=first.text.chars[: colon.start()].strip())
+    rest = (replace(first, phrases=after), *read.sentences[1:])
+    return replace(read, sentences=rest), title
 
 
 def _one_line(read: ReadBlock) -> Title | None:

@@ -37,8 +37,9 @@ class Share:
 class Bearers:
     """Doses that together bring the thing; ``how`` says why they were put together."""
 
-    how: str  # substance, system, stock, solute, words
+    how: str  # substance, part, system, stock, solute
     shares: tuple[tuple[Share, ...], ...]  # per dose its readings, nearest to the text first
+    sure: bool = True  # the text leaves no doubt that these doses are meant
 
 
 def bearers(
@@ -63,6 +64,8 @@ def bearers(
         yield from _named(doses, material, strength, facts, order, preparation)
         if material.match is not None and not material.solution and not material.match.generic:
             return
+        if material.match is not None and material.match.generic and not _counts(strength):
+            return
     yield from _unnamed(doses, material, strength, facts, order, preparation)
 
 
@@ -76,7 +79,8 @@ def _fragment(material: Material | None) -> str | None:
 def _of_part(taken: Taken, fragment: str, strength: Measure, facts: Facts) -> list[Share]:
     """What a dose brings of a part of its substance: copper of copper sulfate."""
     material = taken.dose.material
-    if material is not None and _fragment(material) == fragment:
+    poured = taken.dose.amount.dimension == "volume"
+    if material is not None and poured and _fragment(material) == fragment:
         return shares(taken, strength, facts)  # diluted from a stock of the same part
     found = []
     for portion in portions(taken, facts):
@@ -96,6 +100,11 @@ def _of_part(taken: Taken, fragment: str, strength: Measure, facts: Facts) -> li
     return found
 
 
+def _counts(strength: Measure) -> bool:
+    """Whether a strength counts particles, so that all salts of one acid weigh alike in it."""
+    return strength.dimension in ("molarity", "molality", "normality")
+
+
 def _is_water(taken: Taken) -> bool:
     material = taken.dose.material
     return material is not None and material.is_water
@@ -113,13 +122,14 @@ def _named(
     members = [(t, _of_substance(t, material, strength, facts, order, preparation)) for t in doses]
     direct = [(t, s) for t, s in members if s]
     generic = material.match is not None and material.match.generic
-    if generic and strength.dimension not in ("molarity", "molality", "normality"):
+    if generic and not _counts(strength):
         return  # "phosphate, 10 mg/L" may be counted as any of its forms
+    sure = len(doses) == 1 or _counts(strength) or not _extra_words(material)
     if direct and not generic:
         same = [(t, s) for t, s in direct if not _only_related(t, material)]
         if same and len(same) < len(direct):
-            yield Bearers("substance", tuple(tuple(s) for _, s in same))
-        yield Bearers("substance", tuple(tuple(s) for _, s in direct))
+            yield Bearers("substance", tuple(tuple(s) for _, s in same), sure)
+        yield Bearers("substance", tuple(tuple(s) for _, s in direct), sure)
     systems = _systems(material)
     if systems:
         sums = [_of_system(t, systems, strength, facts, order, preparation) for t in doses]
@@ -147,13 +157,14 @@ def _of_substance(
         return []
     if same_substance(material, own) or _related(material, own):
         return shares(taken, strength, facts)
-    solution = _shelf(taken, facts, order, preparation)
-    if solution is None or material.match is None:
+    if material.match is None:
         return []
     families = {s.family for s in material.match.substances}
-    return list(
-        _from_shelf(taken, solution, strength, lambda s: s.family in families, material)
-    )
+    return [
+        share
+        for solution in _shelf(taken, facts, order, preparation)
+        for share in _from_shelf(taken, solution, strength, lambda s: s.family in families)
+    ]
 
 
 def _related(material: Material, own: Material) -> bool:
@@ -165,6 +176,12 @@ def _related(material: Material, own: Material) -> bool:
         {s.acid_system for s in material.match.substances}
         & {s.acid_system for s in own.match.substances}
     )
+
+
+def _extra_words(material: Material) -> bool:
+    """Whether the name says more than the substance found in it ("acid alcohol")."""
+    written = material.match.written if material.match is not None else ""
+    return bool(tokens(material.words) - tokens(written))
 
 
 def _only_related(taken: Taken, material: Material) -> bool:
@@ -186,10 +203,11 @@ def _of_system(
         return []
     if any(s.acid_system in systems for s in candidates(own)):
         return shares(taken, strength, facts)
-    solution = _shelf(taken, facts, order, preparation)
-    if solution is None:
-        return []
-    return list(_from_shelf(taken, solution, strength, lambda s: s.acid_system in systems, None))
+    return [
+        share
+        for solution in _shelf(taken, facts, order, preparation)
+        for share in _from_shelf(taken, solution, strength, lambda s: s.acid_system in systems)
+    ]
 
 
 def _unnamed(
@@ -221,8 +239,7 @@ def _unnamed(
         if group:
             yield Bearers("system", group)
             return
-    by_count = strength.dimension in ("molarity", "molality", "normality")
-    if len(doses) == 1 and (by_count or not told):
+    if len(doses) == 1 and (_counts(strength) or not told):
         found = shares(doses[0], strength, facts)
         if found:
             yield Bearers("solute", (tuple(found),))
@@ -240,17 +257,18 @@ def _by_label(
     dose = taken.dose
     if dose.material is None or dose.amount.dimension != "volume":
         return []
-    labels = [m for m in dose.material.strengths if m.dimension == strength.dimension]
-    if not labels:
-        solution = _shelf(taken, facts, order, preparation)
+    if any(m.dimension == strength.dimension for m in dose.material.strengths):
+        return shares(taken, strength, facts)
+    found: list[Share] = []
+    for solution in _shelf(taken, facts, order, preparation):
         labels = [
             m
-            for m, of in (solution.strengths if solution else ())
+            for m, of in solution.strengths
             if m.dimension == strength.dimension and (of is None or _alike(of, material))
         ]
-    if len(labels) != 1:
-        return []
-    return [_diluted(taken, labels[0])]
+        if len(labels) == 1:
+            found.append(_diluted(taken, labels[0]))
+    return found
 
 
 def _alike(of: Material, material: Material | None) -> bool:
@@ -272,13 +290,16 @@ def _diluted(taken: Taken, label: Measure, substance: Substance | None = None) -
     )
 
 
-def _shelf(taken: Taken, facts: Facts, order: int, preparation: Preparation) -> Solution | None:
+def _shelf(
+    taken: Taken, facts: Facts, order: int, preparation: Preparation
+) -> tuple[Solution, ...]:
+    """Solutions of this document that a dose can mean, the likeliest first."""
     material = taken.dose.material
     if material is None or material.is_water or taken.dose.amount.dimension != "volume":
-        return None
+        return ()
     if material.match is not None and material.strengths and not material.solution:
-        return None
-    return facts.solution(material, order, preparation.section)
+        return ()
+    return facts.meant(material, order, preparation.section)
 
 
 def _from_shelf(
@@ -286,7 +307,6 @@ def _from_shelf(
     solution: Solution,
     strength: Measure,
     fits: Callable[[Substance], bool],
-    material: Material | None,
 ) -> Iterator[Share]:
 
     amount = taken.dose.amount

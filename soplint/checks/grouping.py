@@ -6,7 +6,7 @@ from soplint.bench import Bench, Relation
 from soplint.causes import Cause, likely_cause
 
 _ALIKE = 0.02  # factors this close to each other are one factor
-_KINDS = ("mass", "stock", "concentrate", "neat")
+_KINDS = ("mass", "stock", "concentrate", "neat", "fold")
 
 
 def common_factor(bench: Bench) -> dict[int, int]:

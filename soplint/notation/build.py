@@ -166,6 +166,8 @@ def _with_fact(target: Part, part: Part) -> Part | None:
     material = target.material if isinstance(target, Dose) else target
     if not isinstance(material, Material) or not material.words:
         return None
+    if isinstance(target, Dose) and material.is_water:
+        return None  # "10 mL bleach + 90 mL water, 0.5 %" speaks of the mixture
     if isinstance(part, Loose) and part.measure.dimension == "molar-mass":
         changed = replace(material, molar_mass=material.molar_mass or part.measure, end=part.end)
     elif isinstance(part, Loose) and part.measure.dimension == "density":

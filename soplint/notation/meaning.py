@@ -56,7 +56,21 @@ class Meaning:
         index = 0
         while index < len(self.found):
             index += self._step(index)
+        self._mark_unsaid()
         return self.phrases
+
+    def _mark_unsaid(self) -> None:
+        """"make up with assay buffer": to the mark of the flask, though no mark is named."""
+        if any(isinstance(phrase, ToVolume) for phrase in self.phrases):
+            return
+        for index, phrase in enumerate(self.phrases[:-1]):
+            after = self.phrases[index + 1]
+            if isinstance(phrase, Command) and phrase.kind == "MAKE_UP":
+                if isinstance(after, Material) and after.role == "with" and after.words:
+                    self.phrases[index + 1] = ToVolume(
+                        phrase.start, after.end, None, after, "MAKE_UP"
+                    )
+                    return
 
     def _step(self, index: int) -> int:
         part = self.found[index]
@@ -207,6 +221,14 @@ class Meaning:
         last = self.phrases[-1] if self.phrases else None
         if material.ph is not None and self._sets_ph(material, role):
             self._set_ph(material)
+        elif material.ph is not None and not material.words and self._with_follows(index):
+            self._set_ph(material)
+        elif material.ph is not None and not material.words and role == "to" and (
+            isinstance(last, Material) and last.match is not None and not last.is_water
+        ):
+            self.phrases.pop()  # "KOH to pH 6.8"
+            self.reagents = [last]
+            self._set_ph(material)
         elif not material.words:
             self._nameless(material, role)
         elif self.claiming and (material.strengths or material.finals):
@@ -226,6 +248,17 @@ class Meaning:
             self.phrases[-1] = replace(last, diluent=material)
         else:
             self.phrases.append(material)
+
+    def _with_follows(self, index: int) -> bool:
+        """"pH 6.0 with NaOH": a list line that sets the pH."""
+        after = self.found[index + 1 : index + 3]
+        return (
+            len(after) == 2
+            and not self.phrases
+            and isinstance(after[0], Role)
+            and after[0].kind == "WITH"
+            and isinstance(after[1], (Material, Dose))
+        )
 
     def _sets_ph(self, material: Material, role: str | None) -> bool:
         """Whether the pH of this material is an instruction."""
@@ -255,7 +288,11 @@ class Meaning:
             if said:
                 self.phrases.append(Claim(material.start, material.end, material.ph, kind="pH"))
                 return
-        if self.claiming or (self.command == "DILUTE" and role == "to"):
+        last = self.phrases[-1] if self.phrases else None
+        mixed = isinstance(last, ToVolume) or (
+            isinstance(last, Dose) and last.material is not None and last.material.is_water
+        )
+        if self.claiming or mixed or (self.command == "DILUTE" and role == "to"):
             for strength in material.strengths:
                 self._claim(None, strength)
             return
