@@ -11,7 +11,7 @@ from dataclasses import replace
 from functools import cache
 from typing import Any
 
-from .elements import DATA
+from .elements import read_data
 from .formula import molar_mass, parse_formula
 from .model import Substance
 from .naming import HYDRATE_WORDS, key
@@ -30,8 +30,7 @@ class Catalogue:
         self.families: list[list[int]] = prepared["families"]
         self.names: dict[str, int | list[Any]] = prepared["names"]
         self.compositions: dict[str, list[int]] = prepared["compositions"]
-        self.gate: frozenset[str] = frozenset(prepared["gate"])
-        self.longest = max(map(len, self.names))
+        self.firsts: frozenset[str] = frozenset(prepared["firsts"])
 
     def __len__(self) -> int:
         return len(self._rows)
@@ -43,7 +42,7 @@ class Catalogue:
         """The substance of one row."""
         made = self._made.get(number)
         if made is None:
-            values = [tuple(v) if isinstance(v, list) else v for v in self._rows[number]]
+            values: list[Any] = [tuple(v) if isinstance(v, list) else v for v in self._rows[number]]
             made = self._made[number] = Substance(*values)
         return made
 
@@ -94,7 +93,7 @@ class Catalogue:
 @cache
 def catalogue() -> Catalogue:
     """The catalogue, loaded once."""
-    return Catalogue(json.loads((DATA / "index.json").read_text(encoding="utf-8")))
+    return Catalogue(json.loads(read_data("index.json")))
 
 
 def with_water(substance: Substance, water: float) -> Substance:

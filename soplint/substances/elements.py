@@ -6,11 +6,17 @@ rather than the csv module: its first five fields hold no commas.
 
 from __future__ import annotations
 
+import os
 from functools import cache
-from pathlib import Path
 from typing import NamedTuple
 
-DATA = Path(__file__).parent / "data"
+DATA = os.path.join(os.path.dirname(__file__), "data")
+
+
+def read_data(name: str) -> str:
+    """The text of a data file of this room."""
+    with open(os.path.join(DATA, name), encoding="utf-8") as file:
+        return file.read()
 
 
 class AtomicWeight(NamedTuple):
@@ -31,7 +37,7 @@ def atomic_weights() -> dict[str, AtomicWeight]:
     22.98976928
     """
     table: dict[str, AtomicWeight] = {}
-    for line in (DATA / "atomic_weights.csv").read_text(encoding="utf-8").splitlines():
+    for line in read_data("atomic_weights.csv").splitlines():
         if line.startswith(("#", "number,")):
             continue
         _, symbol, _, value, uncertainty, kind = line.split(",", 6)[:6]

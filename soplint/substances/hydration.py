@@ -7,10 +7,9 @@ from typing import NamedTuple
 
 from .naming import HYDRATE_PREFIXES
 
-_PREFIX = "|".join(sorted(HYDRATE_PREFIXES, key=len, reverse=True))
 _SPELLED = re.compile(
     r"[ ,;]{0,3}[-·.*]? ?(?P<open>[(\[]?) ?"
-    rf"(?:(?P<prefix>{_PREFIX})[- ]?hydrat(?:e|ed)(?![^\W_])"
+    r"(?:(?P<prefix>[a-z]{2,9})[- ]?hydrat(?:e|ed)(?![^\W_])"
     r"|(?P<number>\d{1,2}(?:\.5)?)[- ]?(?:hydrat(?:e|ed)|aq)(?![^\W_])"
     r"|(?P<some>hydrat(?:e|ed)|x-hydrate)(?![^\W_])"
     r"|(?P<none>anhydrous|anhydr\.?|anhyd\.?|anh\.|water[- ]free)(?![^\W_]))"
@@ -28,10 +27,10 @@ _REACH = 24  # characters behind a name within which its hydrate must begin
 
 
 class Water(NamedTuple):
-    """Water named behind a substance: ``count`` None means "hydrate" without a number."""
+    """Water named behind a substance: ``molecules`` None means "hydrate" without a number."""
 
     end: int
-    count: float | None
+    molecules: float | None  # mol per mol
     flags: tuple[str, ...]
 
 
@@ -41,7 +40,7 @@ def water_behind(chars: str, at: int, known: frozenset[float]) -> Water | None:
     ``known`` holds the hydrates of the catalogue for that name: a loose joint (a space, a comma, a
     hyphen, a plus sign) counts only if the number is among them or stands close to the H2O.
 
-    >>> water_behind("CuSO4-5H20", 5, frozenset({5.0})).count
+    >>> water_behind("CuSO4-5H20", 5, frozenset({5.0})).molecules
     5.0
     >>> water_behind("NaCl, H2O", 4, frozenset({0.0})) is None
     True
@@ -50,7 +49,8 @@ def water_behind(chars: str, at: int, known: frozenset[float]) -> Water | None:
         return None
     spelled = _SPELLED.match(chars, at)
     if spelled is not None and not (spelled.end("open") == at and spelled["number"]):
-        return _spelled(spelled)
+        if not spelled["prefix"] or spelled["prefix"].lower() in HYDRATE_PREFIXES:
+            return _spelled(spelled)
     written = _WRITTEN.match(chars, at)
     if written is None:
         return None

@@ -12,9 +12,10 @@ import re
 from .catalogue import Catalogue, catalogue
 from .hydration import Water, water_behind
 from .model import Match
-from .naming import FOLD, LOOK_ALIKE, WORD, spell
+from .naming import FOLD, spell
 from .reading import Found, hydrates_known, made_with_water, meaning, read_formula
 from .water import FIRST, water_phrase
+from .words import Line, Names
 
 _BEFORE = {
     "anhydrous": "anhydrous",
@@ -27,22 +28,23 @@ _BEFORE = {
 _BEHIND = re.compile(
     r" ?,? ?\(?(?:conc\.?|concd\.?|concentrated)(?![^\W_])\.?\)?(?! ?[^\W_])", re.IGNORECASE
 )
-_JOINT = " -,()[]'"  # what may stand between the words of one name
-_JOINT_LENGTH = 4
-_SHORT = 6  # keys below this length must stand as one word: "K, I" is no potassium iodide
+_FOLDED = re.compile("[" + "".join(map(chr, FOLD)) + "]")
+_GOES_ON = ("-", ",", "'", "(", "[")  # "2-propanol", "1,4-dioxane", "N,N'-", "K[...]"
 _REMEMBERED = 20_000  # words and formulas kept; a hostile text must not fill the memory
 
-_RUN = re.compile(r"[A-ZАВЕКМНОРСТХІ][A-Za-z0-9()\[\]АВЕКМНОРСТХІасеохі]*")
-_LED = re.compile(r"[(\[][A-Z][A-Za-z0-9]*[)\]]\d*[A-Z][A-Za-z0-9()\[\]]*")
+_RUN = re.compile(r"[A-ZАВЕКМНОРСТХІ][A-Za-z0-9()\[\]АВЕКМНОРСТХІасеохі]{0,80}")
+_LIKE_FORMULA = re.compile(r"(?:[A-ZАВЕКМНОРСТХІ][a-zасеохі]?\d*)+$")
+_LED = re.compile(r"[(\[][A-Z][A-Za-z0-9]{0,20}[)\]]\d{0,3}[A-Z][A-Za-z0-9()\[\]]{0,60}")
 
 
 class NameIndex:
     """Names of the catalogue in running text."""
 
     def __init__(self, data: Catalogue | None = None) -> None:
-        self._data = data or catalogue()
+        self._names = Names(data or catalogue())
         self._spelled: dict[str, str] = {}
         self._formulas: dict[str, Found | None] = {}
+        self._dull: set[str] = set()  # words with which nothing can begin
 
     def find(self, chars: str) -> list[Match]:
         """All names in ``chars``, longest first at each place, none overlapping, in order.
@@ -50,17 +52,20 @@ class NameIndex:
         >>> [m.written for m in NameIndex().find("Dissolve 12.1 g Tris base and 3 g KCl in water")]
         ['Tris base', 'KCl', 'water']
         """
-        if len(self._spelled) > _REMEMBERED or len(self._formulas) > _REMEMBERED:
-            self._spelled.clear()
-            self._formulas.clear()
-        folded = chars if chars.isascii() else chars.translate(FOLD)
-        words = [found.span() for found in WORD.finditer(folded)]
+        self._forget()
+        folded = chars.translate(FOLD) if _FOLDED.search(chars) else chars
+        line = Line(folded, self._spelled)
+        dull = self._dull
         matches: list[Match] = []
         reached = 0
-        for at, (start, _) in enumerate(words):
-            if start < reached:
+        for at, (start, end) in enumerate(line.spans):
+            if start < reached or folded[start:end] in dull:
                 continue
-            found = self._at(folded, words, at)
+            if end - start == 1 and folded[end : end + 1] not in _GOES_ON:
+                continue  # a number or letter by itself
+            if self._is_dull(folded[start:end]):
+                continue
+            found = self._at(line, at)
             if found is None:
                 continue
             reached = found[1]
@@ -69,89 +74,52 @@ class NameIndex:
                 reached = matches[-1].end
         return matches
 
-    def _at(
-        self, chars: str, words: list[tuple[int, int]], at: int
-    ) -> tuple[int, int, Found, str] | None:
+    def _forget(self) -> None:
+        """Keep the memory of words and formulas within bounds."""
+        for memory in (self._spelled, self._formulas, self._dull):
+            if len(memory) > _REMEMBERED:
+                memory.clear()
+
+    def _is_dull(self, written: str) -> bool:
+        """Whether nothing can begin with this word; such words are remembered."""
+        word = spell(written)
+        if (
+            self._names.can_begin(word)
+            or word in _BEFORE
+            or word in FIRST
+            or _LIKE_FORMULA.match(written) is not None
+        ):
+            return False
+        self._dull.add(written)
+        return True
+
+    def _at(self, line: Line, at: int) -> tuple[int, int, Found, str] | None:
         """Start, end, what was found at word ``at``, and the word before it that belongs to it."""
-        before = _BEFORE.get(self._word(chars, words[at]))
-        if before and at + 1 < len(words):
-            joint = chars[words[at][1] : words[at + 1][0]]
+        before = _BEFORE.get(line.word(at))
+        if before and at + 1 < len(line.spans):
+            joint = line.joint(at)
             if len(joint) <= 2 and not joint.strip(" .-"):
-                found = self._plain(chars, words, at + 1)
+                found = self._plain(line, at + 1)
                 if found is not None and found.kind not in ("n", "g"):
-                    return words[at][0], found.end, found, before
-        found = self._plain(chars, words, at)
+                    return line.spans[at][0], found.end, found, before
+        found = self._plain(line, at)
         return None if found is None else (found.start, found.end, found, "")
 
-    def _plain(self, chars: str, words: list[tuple[int, int]], at: int) -> Found | None:
+    def _plain(self, line: Line, at: int) -> Found | None:
         """The longer of the name and the formula that begin at word ``at``."""
-        if self._word(chars, words[at]) in FIRST:
-            noun = water_phrase(chars, words, at, lambda place: self._word(chars, words[place]))
+        if line.word(at) in FIRST:
+            noun = water_phrase(line, at)
             if noun is not None:
-                found = self._name(chars, words, noun)
-                return found and found._replace(start=words[at][0])
-        name = self._name(chars, words, at)
-        first = chars[words[at][0]]
-        if not (first.isupper()):
+                found = self._names.longest(line, noun)
+                return found and found._replace(start=line.spans[at][0])
+        name = self._names.longest(line, at)
+        start = line.spans[at][0]
+        if not line.chars[start].isupper():
             return name
-        formula = self._formula(chars, words[at][0])
+        formula = self._formula(line.chars, start)
         if formula is None or (name is not None and name.end >= formula.end and name.kind != "f"):
             return name
         return formula
-
-    def _word(self, chars: str, word: tuple[int, int]) -> str:
-        """A word in the spelling of the keys."""
-        written = chars[word[0] : word[1]]
-        known = self._spelled.get(written)
-        if known is None:
-            known = self._spelled[written] = spell(written)
-        return known
-
-    def _name(self, chars: str, words: list[tuple[int, int]], at: int) -> Found | None:
-        """The longest name of the catalogue that begins at word ``at``."""
-        names, gate, longest = self._data.names, self._data.gate, self._data.longest
-        name = self._word(chars, words[at])
-        if name[:4] not in gate:
-            return None
-        best: Found | None = None
-        last = at
-        start = words[at][0]
-        while len(name) <= longest:
-            end = words[last][1]
-            if name in names and (last == at or len(name) >= _SHORT or " " not in chars[start:end]):
-                best = self._entry(chars, start, end, name) or best
-            elif name[-1:] == "s" and len(name) > _SHORT and name[:-1] in names:
-                best = self._entry(chars, start, end, name[:-1]) or best
-            last += 1
-            if last >= len(words):
-                break
-            joint = chars[end : words[last][0]]
-            if len(joint) > _JOINT_LENGTH or joint.strip(_JOINT):
-                break
-            name += self._word(chars, words[last])
-            if name[:4] not in gate or (len(name) >= 8 and name[:8] not in gate):
-                break
-        return best
-
-    def _entry(self, chars: str, start: int, end: int, name: str) -> Found | None:
-        """The entry of a name, unless its capitals speak against it; brackets are completed."""
-        targets, kind, exact = self._data.entry(name)
-        flags: tuple[str, ...] = ()
-        if exact:
-            written = re.sub(r"[ \-,()\[\]']", "", chars[start:end])
-            meant = written in {re.sub(r"[ \-,()\[\]']", "", spelling) for spelling in exact}
-            if kind == "f":
-                flags = () if meant else ("case",)
-                if not meant and written in ("COCl2",):
-                    return None
-            elif not meant:
-                return None
-        inside = chars[start:end]
-        if inside.count("(") > inside.count(")") and chars[end : end + 1] == ")":
-            end += 1
-        elif inside.count(")") > inside.count("(") and chars[start - 1 : start] == "(":
-            start -= 1
-        return Found(start, end, targets, kind, flags)
 
     def _formula(self, chars: str, start: int) -> Found | None:
         """The compound whose formula begins at ``start``, or one bracket before it."""
@@ -198,7 +166,7 @@ class NameIndex:
             flags += ("concentrated",)
         if found.kind == "b":
             flags += ("buffer-name",)
-        named, count = water is not None, water.count if water else None
+        named, count = water is not None, water.molecules if water else None
         if found.made:
             read = made_with_water(found, named, count, before)
         else:

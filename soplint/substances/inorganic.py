@@ -12,7 +12,7 @@ from itertools import product
 from math import gcd
 from typing import NamedTuple
 
-from .rows import read_table
+from .tables import read_table
 
 
 class Ions(NamedTuple):

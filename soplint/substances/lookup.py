@@ -40,8 +40,8 @@ def lookup(name: str) -> Match | None:
     if exact is not None:
         return Match(0, len(name), (exact,), True, False, name)
     strength = _PERCENT.search(text)
-    plain = _PERCENT.sub(lambda found: " " * len(found[0]), text) if strength else text
-    for chars in dict.fromkeys((text, plain)):
+    plain = _PERCENT.sub(_blank, text)
+    for chars in dict.fromkeys((text, plain, _SOLUTION.sub(_blank, plain))):
         found = _index().find(chars)
         if len(found) != 1:
             continue
@@ -49,6 +49,10 @@ def lookup(name: str) -> Match | None:
         if not rest.strip(" .,;:()[]"):
             return _at_strength(replace(found[0], written=name), strength and strength[1])
     return None
+
+
+def _blank(found: re.Match[str]) -> str:
+    return " " * len(found[0])
 
 
 def _at_strength(match: Match, percent: str | None) -> Match:

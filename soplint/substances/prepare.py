@@ -7,13 +7,16 @@ compares the stored index with a fresh one.
 from __future__ import annotations
 
 import json
+import os
 from dataclasses import astuple
 from typing import Any
 
 from .elements import DATA
 from .formula import FormulaError, hill, parse_formula
-from .naming import key, stem
-from .rows import Row, read_table, rows, without_water
+from .naming import FOLD, WORD, key, spell
+from .rows import Row, rows, without_water
+from .stems import stem
+from .tables import read_table
 
 FORMULA = "f"
 _KINDS = {"generic": "g", "none": "n", "buffer-name": "b", "concentrated": "c"}
@@ -111,6 +114,18 @@ def _add_synonyms(
         entries[key(name)] = entry
 
 
+def _firsts(texts: list[str]) -> list[str]:
+    """First words of all names; "disodium" may also be written "di-sodium"."""
+    firsts = set()
+    for text in texts:
+        first = spell((WORD.findall(text.translate(FOLD)) or [""])[0])
+        firsts.add(first)
+        for prefix in ("di", "tri", "tetra", "mono", "penta", "hexa"):
+            if first.startswith(prefix) and len(first) > len(prefix):
+                firsts.add(prefix)
+    return sorted(firsts - {""})
+
+
 def build() -> dict[str, Any]:
     """The index as it is stored."""
     all_rows = rows()
@@ -130,7 +145,8 @@ def build() -> dict[str, Any]:
     compositions = _add_formulas(entries, all_rows, place)
     _add_synonyms(entries, names, stems)
     entries.pop("", None)
-    gate = {name[:length] for name in entries for length in (1, 2, 3, 4, 8)}
+    written = [name for row in all_rows for name in (row.substance.name, *row.synonyms)]
+    written += [record["synonym"] for record in read_table("synonyms.csv")]
     return {
         "substances": [astuple(row.substance) for row in all_rows],
         "stems": {
@@ -139,8 +155,8 @@ def build() -> dict[str, Any]:
         },
         "families": list(families.values()),
         "names": {name: _compact(entry) for name, entry in sorted(entries.items())},
+        "firsts": _firsts(written),
         "compositions": dict(sorted(compositions.items())),
-        "gate": sorted(gate),
     }
 
 
@@ -151,10 +167,24 @@ def _compact(entry: Entry) -> int | list[Any]:
     return [entry["targets"], entry.get("kind", ""), entry.get("exact", [])]
 
 
+def _lines(value: Any) -> str:
+    """A list or table with one element a line, so that changes show as lines."""
+    if isinstance(value, dict):
+        items = [f"{_json(name)}:{_json(content)}" for name, content in value.items()]
+        return "{\n" + ",\n".join(items) + "\n}"
+    return "[\n" + ",\n".join(map(_json, value)) + "\n]"
+
+
+def _json(value: Any) -> str:
+    return json.dumps(value, ensure_ascii=False, separators=(",", ":"))
+
+
 def text() -> str:
     """The index file as text."""
-    return json.dumps(build(), ensure_ascii=False, separators=(",", ":"), indent=None) + "\n"
+    tables = [f"{_json(name)}:{_lines(value)}" for name, value in build().items()]
+    return "{" + ",\n".join(tables) + "}\n"
 
 
 if __name__ == "__main__":
-    (DATA / "index.json").write_text(text(), encoding="utf-8")
+    with open(os.path.join(DATA, "index.json"), "w", encoding="utf-8") as file:
+        file.write(text())

@@ -3,16 +3,16 @@
 from __future__ import annotations
 
 import re
+from dataclasses import replace
 from functools import lru_cache
 from typing import NamedTuple
 
 from .catalogue import Catalogue, catalogue, complete, with_water
 from .formula import Formula, FormulaError, hill, molar_mass, parse_formula
-from .inorganic import ions, neutralised
 from .model import Substance
 from .naming import LOOK_ALIKE
 
-_NOT_MEANT = {
+NOT_MEANT = {
     "HI",
     "CO",
     "NO",
@@ -102,7 +102,7 @@ def _compound(run: str) -> Found | None:
     if not run.isascii():
         formula = run.translate(LOOK_ALIKE)
         flags = ("look-alike",)
-    if formula in _NOT_MEANT or formula.isdigit():
+    if formula in NOT_MEANT or formula.isdigit():
         return None
     try:
         parsed = parse_formula(formula)
@@ -134,6 +134,8 @@ def _salt(run: str, formula: str, parsed: Formula, flags: tuple[str, ...]) -> Fo
     """A neutral row of ions; or, flagged, a metal salt whose charges do not cancel."""
     if formula.isupper() and formula.isalpha():
         return None
+    from .inorganic import ions, neutralised  # rare: reads a table of its own
+
     read = ions(formula)
     if read is None:
         return None
@@ -181,7 +183,10 @@ def meaning(
     if kind == "f" and not named:
         found.sort(key=lambda m: m.state == "solid" and m.hydrate > 0)
     substances = tuple(dict.fromkeys(found))
-    settled = (named and water is not None) or len(substances) == 1
+    if named and water is None:  # "hydrate": settled if there is one, unless its water is unknown
+        settled = len(substances) == 1 and substances[0].hydrate > 0
+    else:
+        settled = named or len(substances) == 1
     return Meaning(substances, settled)
 
 
@@ -228,8 +233,6 @@ def made_with_water(found: Found, named: bool, water: float | None, before: str)
 
 
 def _hydrated(base: Substance, formula: str, water: float) -> Substance:
-    from dataclasses import replace
-
     return replace(
         base, name=formula, formula=formula, molar_mass=molar_mass(formula), hydrate=water
     )

@@ -7,14 +7,13 @@ each family is named instead.
 
 from __future__ import annotations
 
-import csv
 from dataclasses import dataclass, replace
 from functools import cache
 
-from .elements import DATA
 from .formula import hill, molar_mass, parse_formula
 from .model import Substance
-from .naming import stem
+from .stems import stem
+from .tables import read_table
 
 _GASES = ("HCl", "HBr", "HI", "NH3", "CH2O")  # at room temperature and undiluted
 FILES = ("reagents.csv", "more_reagents.csv")
@@ -26,13 +25,6 @@ class Row:
 
     substance: Substance
     synonyms: tuple[str, ...]
-
-
-def read_table(name: str) -> list[dict[str, str]]:
-    """A data file as dictionaries; lines that open with "#" are its explanation."""
-    text = (DATA / name).read_text(encoding="utf-8")
-    lines = [line for line in text.splitlines() if not line.startswith("#")]
-    return list(csv.DictReader(lines))
 
 
 def without_water(formula: str) -> str:

@@ -13,7 +13,7 @@ from typing import NamedTuple
 
 from .formula import FormulaError, hill, molar_mass, parse_formula
 from .model import Substance
-from .rows import read_table
+from .tables import read_table
 
 _TEMPERATURE_REACH = 0.5  # K: a table at 20 °C serves 19.5 to 20.5 °C
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from .words import Line
 
 NOUNS = frozenset({"water", "h2o", "h20"})
 _BOTH = (
@@ -13,7 +13,7 @@ _BOTH = (
 )
 _FIRST_ONLY = (
     "de milli mili co2 c02 carbon rnase dnase nuclease freshly double doubly triple glass grade "
-    "type reagent lc depc endotoxin pyrogen particle ice laboratory lab molecular aqua"
+    "type reagent lc depc endotoxin pyrogen particle ice molecular aqua"
 )
 _INNER_ONLY = (
     "free treated dioxide grade q pure ionised ionized biology culture quality ms i ii iii 1 2 3 "
@@ -24,20 +24,15 @@ _INNER = frozenset((_BOTH + " " + _INNER_ONLY).split())
 _LONGEST = 7  # words before "water"
 
 
-def water_phrase(
-    chars: str, words: list[tuple[int, int]], at: int, word: Callable[[int], str]
-) -> int | None:
-    """Number of the word "water" (or H2O) that ends a phrase begun at word ``at``, or None.
-
-    ``word`` gives a word in the spelling of the keys.
-    """
-    last = min(at + _LONGEST, len(words) - 1)
+def water_phrase(line: Line, at: int) -> int | None:
+    """Number of the word "water" (or H2O) that ends a phrase begun at word ``at``, or None."""
+    last = min(at + _LONGEST, len(line.spans) - 1)
     for place in range(at + 1, last + 1):
-        joint = chars[words[place - 1][1] : words[place][0]]
+        joint = line.joint(place - 1)
         if len(joint) > 3 or joint.strip(" -/,("):
             return None
-        if word(place) in NOUNS:
+        if line.word(place) in NOUNS:
             return place
-        if word(place) not in _INNER:
+        if line.word(place) not in _INNER:
             return None
     return None
