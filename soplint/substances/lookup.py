@@ -10,9 +10,8 @@ from .catalogue import catalogue
 from .index import NameIndex
 from .model import Match
 
-_PERCENT = re.compile(
-    r"[\s,(]*(\d+(?:[.,]\d+)?)\s*%\s*(?:\(?w/w\)?)?\)?|\bsolution\b", re.IGNORECASE
-)
+_PERCENT = re.compile(r"[\s,(]*(\d+(?:[.,]\d+)?)\s*%\s*(?:\(?w/w\)?)?\)?", re.IGNORECASE)
+_SOLUTION = re.compile(r"\bsolution\b", re.IGNORECASE)
 _LONGEST = 400
 _SAME_STRENGTH = 2.0  # per cent w/w: "36 %" means the 37 % row
 
