@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import islice, product
 
 from soplint.bench.facts import Facts
@@ -246,6 +246,48 @@ def _ph(
     return first
 
 
+def exchanged_ph(preparation: Preparation, facts: Facts, order: int) -> Iterator[float]:
+    """pH with the amounts of the two forms of a buffer exchanged: by mol and as written."""
+    from soplint.equilibria import EquilibriumError, acid_systems_of, solve
+
+    swapped = _with_amounts_exchanged(preparation)
+    for one in (preparation, swapped):
+        if one is None:
+            continue
+        for mixture in mixtures(one, facts, order):
+            contents = dict(mixture.contents)
+            try:
+                forms = [name for name in contents if set(acid_systems_of(name)) - NO_BUFFERS]
+                if one is preparation:
+                    if len(forms) != 2:
+                        continue
+                    first, second = forms
+                    contents[first], contents[second] = contents[second], contents[first]
+                yield solve(contents, 25.0).pH
+            except EquilibriumError:
+                continue
+
+
+def _with_amounts_exchanged(preparation: Preparation) -> Preparation | None:
+    """The preparation with the written amounts of its two buffer components exchanged."""
+    pair = [
+        index
+        for index, taken in enumerate(preparation.taken)
+        if taken.dose.material is not None
+        and not taken.dose.material.is_water
+        and not taken.solvent
+    ]
+    if len(pair) != 2:
+        return None
+    first, second = (preparation.taken[i] for i in pair)
+    if first.dose.amount.dimension != second.dose.amount.dimension:
+        return None
+    taken = list(preparation.taken)
+    taken[pair[0]] = replace(first, dose=replace(first.dose, amount=second.dose.amount))
+    taken[pair[1]] = replace(second, dose=replace(second.dose, amount=first.dose.amount))
+    return replace(preparation, taken=taken)
+
+
 def _neutral(taken: Taken) -> bool:
     material = taken.dose.material
     return material is None or material.is_water
@@ -282,6 +324,8 @@ def reach_of(preparation: Preparation, facts: Facts, order: int) -> Reach | None
 
     title = preparation.title
     given = title.temperature if title else None
+    for adjusted in preparation.adjusted:
+        given = adjusted.set_ph.temperature or given
     temperature = given.nominal if given is not None and 0 <= given.nominal <= 60 else 25.0
     strength = _ionic_strength(preparation, facts, order)
     ph = stated.measure.nominal

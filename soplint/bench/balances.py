@@ -248,6 +248,11 @@ def _volumes(
     target: Target,
 ) -> Iterator[FinalVolume]:
     """The final volume; where only a solvent volume is known, that of the dose's own line."""
+    if target.stated.measure.dimension == "fraction" and target.stated.measure.basis != "w/v":
+        mass = _total_mass(preparation)
+        if mass is not None:
+            yield FinalVolume(mass, EXACT, "total", None)
+            return
     strong = volume is not None and volume.provenance not in ("weak", "sum", "heading")
     if volume is not None:
         yield volume
@@ -276,6 +281,18 @@ def _volumes(
             )
             if added:
                 yield replace(local, litres=local.litres + added)
+
+
+def _total_mass(preparation: Preparation) -> float | None:
+    """kg of everything, where the solvent is weighed: per cent by mass refers to it."""
+    amounts = [t.dose.amount for t in preparation.taken]
+    weighed = any(
+        t.dose.amount.dimension == "mass" and t.dose.material is not None and t.dose.material.is_water
+        for t in preparation.taken
+    )
+    if not weighed or any(a.dimension != "mass" for a in amounts):
+        return None
+    return sum(a.base for a in amounts) / 1000
 
 
 def _relation(preparation: Preparation, balance: Balance, ways: int) -> Relation:

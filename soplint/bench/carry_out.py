@@ -7,16 +7,19 @@ from dataclasses import dataclass, field
 
 from soplint.bench.acidity import ph_relations
 from soplint.bench.balances import balance_relations
+from soplint.bench.columns import column_relations
+from soplint.bench.dimensions import dimension_relations
 from soplint.bench.entries import Reading, enter_all
 from soplint.bench.facts import Facts
 from soplint.bench.labels import equivalent_relation, label_relation, molar_mass_relation
 from soplint.bench.ledger import Ledger
 from soplint.bench.parts import fold_relations, ratio_relations, sum_relations
-from soplint.bench.preparation import Preparation
+from soplint.bench.preparation import Preparation, Stated
 from soplint.bench.relation import Relation
 from soplint.bench.scope import Scope, scope_of
 from soplint.bench.shelf import stock_shelf
 from soplint.bench.volumes import final_volume
+from soplint.findings.model import Interval
 from soplint.notation.document import ReadBlock
 from soplint.notation.phrases import Dose, Material, Sentence
 
@@ -66,6 +69,11 @@ def _relations(bench: Bench) -> Iterator[Relation]:
         yield from sum_relations(preparation)
         yield from ratio_relations(preparation)
         yield from ph_relations(preparation, bench.facts, order)
+    for table, made in bench.scope.tables:
+        yield from column_relations(table, made)
+    for block in bench.blocks:
+        for sentence in block.sentences:
+            yield from dimension_relations(sentence)
     for sentence, material in _materials(bench.blocks):
         for relation in (
             molar_mass_relation(sentence.text, material),
@@ -98,4 +106,22 @@ def _close(bench: Bench) -> None:
             bench.ledger.agree(relation.tested, relation.computed, relation.working)
             for stated in relation.inputs:
                 if stated.key not in broken:
-                    bench.ledger.agree(stated, None, relation.working)
+                    bench.ledger.agree(stated, _implied(relation, stated), relation.working)
+
+
+def _implied(relation: Relation, stated: Stated) -> Interval:
+    """The value of an input that would close the relation exactly, the others as stated.
+
+    Strength aimed at and final volume grow with the amount, the strength of a stock falls with it.
+    """
+    measure = stated.measure
+    if measure.value is None:
+        return Interval(None, measure.unit or "1", measure.low, measure.high)
+    factor = 1 + relation.deviation if relation.kind != "ph" else 1.0
+    aimed = {s.key for s in (relation.target, relation.volume and relation.volume.stated) if s}
+    if stated.key not in aimed and factor > 0:
+        factor = 1 / factor
+    value = measure.value * factor
+    half = abs(relation.computed.high - relation.computed.low) / 2
+    share = half / abs(relation.computed.value) if relation.computed.value else 0.0
+    return Interval(value, measure.unit or "1", value * (1 - share), value * (1 + share))

@@ -56,6 +56,7 @@ class Collector:
         self.closed = False
         self.step = 0
         self.pending: list[Taken] = []  # added after the make-up
+        self.waiting: list[tuple[Stated, str]] = []  # flasks named after the make-up
 
     def open(
         self, title: Title | None, parents: tuple[Title, ...], section: int, kind: str = "steps"
@@ -78,6 +79,8 @@ class Collector:
         """End the current preparation and begin another one in the same scope."""
         self.done.append(self.current)
         self.current = Preparation(title, self.parents, section=self.section, kind=self.kind)
+        self.current.flasks.extend(self.waiting)
+        self.waiting = []
         self.closed = False
 
     def _settle_pending(self) -> None:
@@ -113,7 +116,8 @@ class Collector:
             self.current.mixed.append(Mixed(text, phrase, self.step))
         elif isinstance(phrase, Ware):
             words = text.chars[phrase.start : phrase.end + 30].lower()
-            self.current.flasks.append((Stated(text, phrase.measure), words))
+            ware = (Stated(text, phrase.measure), words)
+            (self.waiting if self.closed else self.current.flasks).append(ware)
         elif isinstance(phrase, Equivalent):
             self.equivalents.append((sentence, phrase))
         elif isinstance(phrase, Material):

@@ -72,7 +72,7 @@ def _sentence(ledger: Ledger, sentence: Sentence, aside: bool, reading: Reading)
         reading.with_quantities += 1
         if any(reason != "unread" for _, reason in bound.values()):
             reading.read += 1
-    loose = [] if aside else list(_unbound(sentence))
+    loose = [] if aside else _unbound(sentence)
     if loose and not counts:
         reading.with_quantities += 1
         line = sentence.text.place(loose[0].start)[0]
@@ -154,14 +154,21 @@ def _reason(material: Material | None) -> str:
     return "given"
 
 
-def _unbound(sentence: Sentence) -> Iterator[Measure]:
-    """Masses, volumes and strengths that no phrase took up: the sentence was not understood."""
+def _unbound(sentence: Sentence) -> list[Measure]:
+    """Masses and volumes that no phrase took up: the sentence was not understood.
+
+    A single one without a command to weigh or dissolve is a remark ("about 17 mL is needed").
+    """
     command: str | None = None
+    found: list[Measure] = []
+    quantitative = False
     for phrase in sentence.phrases:
         if isinstance(phrase, Command):
             command = phrase.kind
-        elif isinstance(phrase, (Loose, Ware)) or command in _NOISE_COMMANDS:
+        elif command in _NOISE_COMMANDS or isinstance(phrase, (Loose, Ware)):
             continue
         elif isinstance(phrase, Dose) and phrase.material is None and phrase.role is None:
-            if command in _QUANTITATIVE and phrase.amount.dimension in ("mass", "volume", "amount"):
-                yield phrase.amount
+            if phrase.amount.dimension in ("mass", "volume", "amount"):
+                found.append(phrase.amount)
+                quantitative = quantitative or command in _QUANTITATIVE
+    return found if quantitative or len(found) > 1 else []

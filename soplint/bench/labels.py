@@ -7,9 +7,12 @@ from collections.abc import Iterator
 from soplint.bench.numbers import shown
 from soplint.bench.preparation import Stated
 from soplint.bench.relation import Relation
+from soplint.bench.species import fragment_of
+from soplint.bench.stoichiometry import units_of_analyte, units_of_titrant
 from soplint.findings.model import Interval
 from soplint.intake.model import Text
 from soplint.notation.phrases import Equivalent, Material
+from soplint.substances import molar_mass
 from soplint.substances.model import Substance
 
 # Weight sets that average older isotope data differ by up to 0.02 % (IUPAC abridged weights 2021).
@@ -30,6 +33,8 @@ def molar_mass_relation(text: Text, material: Material) -> Relation | None:
     best = min(forms, key=lambda s: abs((s.molar_mass or 0) / printed.base - 1))
     chosen = best if not material.match.form_named else forms[0]
     mass = chosen.molar_mass or 0.0
+    if chosen.density and printed.base < 23 and abs(printed.base / chosen.density - 1) < 0.02:
+        return None  # a density in the wrong unit
     deviation = printed.base / mass - 1
     allowed = (printed.high - printed.low) / 2 * printed.factor + mass * ATOMIC_WEIGHTS
     return Relation(
@@ -86,44 +91,45 @@ def _liquid(material: Material) -> Substance | None:
 
 
 def equivalent_relation(text: Text, phrase: Equivalent) -> Relation | None:
-    """mg of analyte per mL of titrant = c·M / z, over the usual stoichiometric numbers."""
+    """mg of analyte per mL of titrant: c·n(titrant)·M / n(analyte), by the table of reactions."""
     titrant, analyte = phrase.titrant, phrase.mass.material
-    molar = [m for m in titrant.strengths if m.dimension in ("molarity", "normality")]
-    if len(molar) != 1 or analyte is None or analyte.match is None or analyte.match.generic:
+    strength = [m for m in titrant.strengths if m.dimension in ("molarity", "normality")]
+    measure = phrase.mass.amount
+    if len(strength) != 1 or analyte is None or measure.dimension != "mass" or not measure.base:
         return None
     litres = phrase.volume.base if phrase.volume is not None else 0.001
-    measure = phrase.mass.amount
-    options = [
-        (substance, z, molar[0].base * litres * substance.molar_mass / z)
-        for substance in analyte.match.substances
-        if substance.molar_mass
-        for z in ((1.0,) if molar[0].dimension == "normality" else (1.0, 2.0, 0.5, 3.0))
+    kind, units = units_of_titrant(_liquid(titrant))
+    if strength[0].dimension == "normality":
+        units = 1.0
+    ways = [
+        (name, mass, number, strength[0].base * litres * units * mass / number)
+        for name, family, mass in _analytes(analyte)
+        for number in units_of_analyte(family, kind)
     ]
-    if molar[0].dimension == "normality":
-        options += [
-            (s, z, molar[0].base * litres * s.molar_mass / z)
-            for s in analyte.match.substances
-            if s.molar_mass
-            for z in (2.0, 3.0, 5.0, 6.0)
-        ]
-    if not options or measure.dimension != "mass":
+    if not ways:
         return None
-    best = min(options, key=lambda o: abs(o[2] / measure.base - 1) if measure.base else 9.0)
-    first = best if abs(best[2] / measure.base - 1) < 0.002 else options[0]
-    substance, z, grams = first
+    name, mass, number, grams = min(ways, key=lambda way: abs(way[3] / measure.base - 1))
     value = grams / measure.factor
     half = (measure.high - measure.low) / 2 + value * ATOMIC_WEIGHTS
-    by = f" / {z:g}" if z != 1 else ""
+    by = f" / {number:g}" if number != 1 else ""
+    times = f" × {units:g}" if units != 1 else ""
     return Relation(
         "equivalent",
         Stated(text, measure),
-        substance.name,
+        name,
         Interval(value, measure.unit, value - half, value + half),
         abs(measure.nominal - value) <= half + value * MOLAR_MASS / 4,
         measure.nominal / value - 1,
-        f"{shown(molar[0])} × {litres * 1000:g} mL × {substance.molar_mass:.2f} g/mol{by}"
+        f"{shown(strength[0])} × {litres * 1000:g} mL{times} × {mass:.3f} g/mol{by}"
         f" = {value:.5g} {measure.unit}",
-        (Stated(text, molar[0]),),
-        substance=substance,
+        (Stated(text, strength[0]),),
         exact=True,
     )
+
+
+def _analytes(analyte: Material) -> list[tuple[str, str, float]]:
+    """Name, family and molar mass of what a factor counts: a substance or an element."""
+    if analyte.match is not None and not analyte.match.generic:
+        return [(s.name, s.family, s.molar_mass) for s in analyte.match.substances if s.molar_mass]
+    fragment = fragment_of(analyte.words)
+    return [(fragment, fragment, molar_mass(fragment))] if fragment else []

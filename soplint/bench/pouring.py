@@ -26,6 +26,7 @@ class Pouring:
     start: int
     end: int
     poured: bool  # an explicit pour of water, not a bare "make up to"
+    diluted: bool = False  # "dilute 50 mL of the acid to 1 L": the order is left open
 
 
 @dataclass(slots=True)
@@ -166,6 +167,7 @@ def _place(sentence: Sentence, phrase: Dose | Material) -> Stated | None:
 
 def _make_up(sentence: Sentence, phrase: ToVolume, vessel: _Vessel) -> Iterator[Pouring]:
     if vessel.acid is not None and not vessel.wet:
-        yield Pouring(*vessel.acid, sentence.text, phrase.start, phrase.end, False)
+        diluted = phrase.command == "DILUTE"
+        yield Pouring(*vessel.acid, sentence.text, phrase.start, phrase.end, False, diluted)
     vessel.acid, vessel.wet = None, False
 

@@ -14,6 +14,7 @@ from dataclasses import dataclass, field, replace
 from soplint.bench.collect import Collector
 from soplint.bench.preparation import Preparation, Stated, Title
 from soplint.bench.title import title_of
+from soplint.intake.model import Block
 from soplint.notation.document import ReadBlock
 from soplint.notation.phrases import Claim, Command, Dose, Equivalent, Material, Sentence, ToVolume
 from soplint.notation.rows import RecipeTable, Variant
@@ -52,6 +53,7 @@ class _Walker:
         self.lead_level = 0  # nesting level of the item that leads, 0 for a paragraph
         self.aside = False
         self.section = 0
+        self.cover = _cover(blocks)
         self.collector = Collector(self.scope.reagents, self.scope.equivalents)
 
     def walk(self) -> Scope:
@@ -85,7 +87,8 @@ class _Walker:
         self.section += 1
         if not read.sentences:
             return
-        title = title_of(read.sentences[0], "document" if level == 1 else "title")
+        source = "document" if read.block is self.cover else "title"
+        title = title_of(read.sentences[0], source)
         self.headings.append((level, title))
         self.aside = bool(_ASIDE.search(title.words)) and not title.targets and title.volume is None
         self._open()
@@ -195,6 +198,19 @@ class _Walker:
     @staticmethod
     def _has_head(variant: Variant) -> bool:
         return bool(variant.volume or variant.fold or variant.name)
+
+
+def _cover(blocks: Sequence[ReadBlock]) -> Block | None:
+    """The heading that titles the whole document: the first, where others stand below it."""
+    headings = [read.block for read in blocks if read.block.kind == "heading"]
+    if len(headings) < 2:
+        return None
+    first = headings[0]
+    below = all(other.level > first.level for other in headings[1:])
+    return first if below or _DOCUMENT.search(first.text.chars) else None
+
+
+_DOCUMENT = re.compile(r"\b[A-Z]{2,5}-(?:[A-Z]{2,5}-)?\d{2,5}\b|\bprocedure\b|\bSOP\b", re.IGNORECASE)
 
 
 def inherit(chain: Sequence[Title]) -> Title:

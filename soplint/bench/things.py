@@ -364,7 +364,8 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
         label = max(labels, key=lambda m: m.base) if labels else None
         if label is not None and label is not strength:
             found.append(_diluted(taken, label))
-            if strength.dimension == "fraction" and strength.basis in (None, "v/v"):
+            as_bought = label.basis in (None, "w/w") and strength.basis in (None, "v/v")
+            if strength.dimension == "fraction" and as_bought:
                 # a percentage of the concentrate as it is bought, by volume
                 amount = taken.dose.amount
                 found.append(

@@ -63,6 +63,19 @@ def _percent(relation: Relation) -> bool:
     return target is not None and target.measure.dimension == "fraction"
 
 
+@rule("amounts.columns-scale-alike")
+def columns_scale_alike(bench: Bench) -> Iterator[Judgement]:
+    """Rows of a table grow with the volume of the column."""
+    for relation in _open(bench, "columns"):
+        deviation = abs(relation.deviation)
+        grade = "remark" if deviation < REMARK else "minor" if deviation < 0.08 else "major"
+        message = (
+            f"cell does not scale with its column: {_stated(relation)} stated,"
+            f" {computed_text(relation)} computed"
+        )
+        yield judgement(bench, relation, "amounts.columns-scale-alike", grade, message)
+
+
 @rule("amounts.mass-gives-concentration")
 def mass_gives_concentration(bench: Bench) -> Iterator[Judgement]:
     """The mass weighed gives the stated strength in the final volume."""
@@ -188,6 +201,9 @@ def percent_recomputes(bench: Bench) -> Iterator[Judgement]:
             )
 
 
+_SUM = 0.002  # a sum has no percent band: only rounding counts (design: "Exact claims")
+
+
 @rule("amounts.parts-fit-volume")
 def parts_fit_volume(bench: Bench) -> Iterator[Judgement]:
     """Parts do not exceed the final volume and add up to a printed total."""
@@ -196,7 +212,7 @@ def parts_fit_volume(bench: Bench) -> Iterator[Judgement]:
         if id(relation.preparation) in ratios or _explained(bench, relation):
             continue
         deviation = abs(relation.deviation)
-        grade = "remark" if deviation < REMARK else "minor" if deviation < 0.08 else "major"
+        grade = "remark" if deviation < _SUM else "major"
         message = (
             "parts exceed the final volume" if relation.kind == "parts" else "rows miss the total"
         )
@@ -239,17 +255,3 @@ def concentrate_strength_agrees(bench: Bench) -> Iterator[Judgement]:
             "amounts.concentrate-strength-agrees",
             "printed strength does not follow from density and per cent",
         )
-
-
-@rule("amounts.columns-scale-alike")
-def columns_scale_alike(bench: Bench) -> Iterator[Judgement]:
-    """Rows of a table grow with the volume of the column."""
-    for relation in _open(bench, "columns"):
-        deviation = abs(relation.deviation)
-        grade = "remark" if deviation < REMARK else "minor" if deviation < 0.08 else "major"
-        message = (
-            f"cell does not scale with its column: {_stated(relation)} stated,"
-            f" {computed_text(relation)} computed"
-        )
-        yield judgement(bench, relation, "amounts.columns-scale-alike", grade, message)
-

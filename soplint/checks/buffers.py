@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import replace
 
-from soplint.bench import Bench, Preparation, Relation
-from soplint.bench.acidity import ph_relations, reach_of
+from soplint.bench import Bench, Relation
+from soplint.bench.acidity import exchanged_ph, reach_of
 from soplint.bench.numbers import shown
 from soplint.causes import Cause
 from soplint.checks.registry import Disagreement, Judgement, rule
@@ -18,8 +18,8 @@ _RANGE = 1.0  # useful range: pKa' ± 1
 _FAR = 1.45  # beyond this nothing of the capacity is left (4 % of the maximum)
 
 
-def _disagreeing(bench: Bench) -> Iterator[tuple[Relation, Relation | None]]:
-    """pH relations that disagree, each with the same relation after exchanging the pair's amounts."""
+def _disagreeing(bench: Bench) -> Iterator[tuple[Relation, bool]]:
+    """pH relations that disagree, each with whether exchanging the pair's amounts mends it."""
     for relation in bench.relations:
         if relation.kind != "ph" or relation.agrees or relation.preparation is None:
             continue
@@ -33,31 +33,22 @@ def _disagreeing(bench: Bench) -> Iterator[tuple[Relation, Relation | None]]:
         yield relation, _exchanged(bench, relation)
 
 
-def _exchanged(bench: Bench, relation: Relation) -> Relation | None:
-    """The relation as it would be with the amounts of the two buffer salts exchanged."""
-    preparation = relation.preparation
-    assert preparation is not None
-    pair = [
-        index
-        for index, taken in enumerate(preparation.taken)
-        if taken.dose.material is not None
-        and taken.dose.material.match is not None
-        and any(s.acid_system for s in taken.dose.material.match.substances)
-    ]
-    if len(pair) != 2:
-        return None
-    first, second = (preparation.taken[i] for i in pair)
-    if first.dose.amount.dimension != second.dose.amount.dimension:
-        return None
-    swapped = list(preparation.taken)
-    swapped[pair[0]] = replace(first, dose=replace(first.dose, amount=second.dose.amount))
-    swapped[pair[1]] = replace(second, dose=replace(second.dose, amount=first.dose.amount))
-    other: Preparation = replace(preparation, taken=swapped)
+_CLEAR = 0.4  # near the pKa' an exchange hardly shows: below this it is no exchange
+
+
+def _exchanged(bench: Bench, relation: Relation) -> bool:
+    """Whether the stated pH comes out when acid form and base form exchange their amounts."""
+    preparation, value = relation.preparation, relation.computed.value
+    assert preparation is not None and value is not None
+    stated = relation.tested.measure
+    if abs(stated.nominal - value) < _CLEAR:
+        return False
     order = bench.preparations.index(preparation)
-    for candidate in ph_relations(other, bench.facts, order):
-        if candidate.tested.key == relation.tested.key and candidate.agrees:
-            return candidate
-    return None
+    allowance = (relation.computed.high - relation.computed.low) / 2
+    return any(
+        abs(other - stated.nominal) <= allowance
+        for other in exchanged_ph(preparation, bench.facts, order)
+    )
 
 
 def _grade(relation: Relation) -> str:
@@ -68,7 +59,7 @@ def _grade(relation: Relation) -> str:
 def computed_ph_meets_stated(bench: Bench) -> Iterator[Judgement]:
     """The pH computed from everything in the vessel is the stated one."""
     for relation, exchanged in _disagreeing(bench):
-        if exchanged is not None:
+        if exchanged:
             continue
         value = relation.computed.value
         message = f"pH {relation.tested.measure.nominal:g} stated, pH {value:.2f} computed"
@@ -83,7 +74,7 @@ def computed_ph_meets_stated(bench: Bench) -> Iterator[Judgement]:
 def pair_ratio_meets_ph(bench: Bench) -> Iterator[Judgement]:
     """Acid form and base form stand in the ratio that the pH needs."""
     for relation, exchanged in _disagreeing(bench):
-        if exchanged is None:
+        if not exchanged:
             continue
         value = relation.computed.value
         message = (

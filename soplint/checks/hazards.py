@@ -20,7 +20,8 @@ def acid_into_water(bench: Bench) -> Iterator[Judgement]:
     """Concentrated acid is added to water, never water to the acid."""
     for sentences in _sections(bench):
         for pouring in pourings(sentences):
-            yield _judgement(pouring)
+            if not pouring.diluted or pouring.acid.family == "H2SO4":
+                yield _judgement(pouring)
 
 
 def _sections(bench: Bench) -> Iterator[list[Sentence]]:
@@ -40,7 +41,9 @@ def _sections(bench: Bench) -> Iterator[list[Sentence]]:
 
 def _judgement(pouring: Pouring) -> Judgement:
     sulfuric = pouring.acid.family == "H2SO4"
-    if sulfuric:
+    if pouring.diluted:
+        grade = "minor"
+    elif sulfuric:
         grade = "critical"
     else:
         grade = "major" if pouring.poured else "minor"
