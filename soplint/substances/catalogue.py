@@ -102,7 +102,7 @@ def with_water(substance: Substance, water: float) -> Substance:
     Density, solubility, CAS number and strength range of the row do not carry over.
 
     >>> round(with_water(catalogue().named("magnesium chloride, anhydrous"), 4).molar_mass, 2)
-    167.26
+    167.27
     """
     base = substance.formula or ""
     parts = [part for part in base.split("·") if not part.endswith("H2O") or part == base]

@@ -220,7 +220,7 @@ def parse_formula(formula: str) -> Formula:
 
     >>> parsed = parse_formula("CH3COONa·3H2O")
     >>> parsed.elements["O"], parsed.water
-    (5, 3.0)
+    (5.0, 3.0)
     >>> parse_formula("SO4^2-").charge
     -2
     >>> parse_formula("NaH2PO4.H20").slips

@@ -61,8 +61,8 @@ class NameIndex:
         for at, (start, end) in enumerate(line.spans):
             if start < reached or folded[start:end] in dull:
                 continue
-            if end - start == 1 and folded[end : end + 1] not in _GOES_ON:
-                continue  # a number or letter by itself
+            if end - start == 1 and folded[end : end + 1] not in _GOES_ON and folded[start] != "K":
+                continue  # a number or letter by itself; "K phosphate" is written so
             if self._is_dull(folded[start:end]):
                 continue
             found = self._at(line, at)
