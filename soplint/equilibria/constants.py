@@ -5,10 +5,10 @@ from __future__ import annotations
 from math import isfinite
 
 from soplint.equilibria.acids import acid_at, system
-from soplint.equilibria.balance import damping
 from soplint.equilibria.dissociation import dissociation
 from soplint.equilibria.door import check_temperature
 from soplint.equilibria.errors import BadAmountError, EquilibriumError
+from soplint.equilibria.species import damping
 from soplint.equilibria.water import debye_huckel_slope
 
 

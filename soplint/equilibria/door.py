@@ -88,7 +88,8 @@ def resolve(composition: Mapping[str, float]) -> Resolved:
     if solvent > 0.5:
         level = "outside" if solvent > 2.0 else "edge"
         notes.append(f"{level}: mixed solvent, {solvent:.2g} mol/L of an organic liquid")
-    notes.extend(note for ion, note in ion_cautions().items() if ion in strong)
+    cautions = ion_cautions()
+    notes.extend(cautions[ion] for ion in strong if ion in cautions)
     if "Ca2+" in strong:
         totals[_CALCIUM] = totals.get(_CALCIUM, 0.0) + strong.pop("Ca2+")
     return Resolved(totals, strong, tuple(notes))
@@ -120,7 +121,7 @@ def solve_systems(
     *,
     co2_pressure: float | None = None,
     notes: tuple[str, ...] = (),
-    start: float = 7.0,
+    start: float | None = None,
 ) -> Solution:
     """Equilibrium of a composition already resolved to acid systems and strong ions.
 
@@ -160,7 +161,6 @@ def solve_systems(
         notes,
         problem,
         (*totals, *(held or ())),
-        root.residual,
     )
 
 

@@ -45,7 +45,7 @@ class Mixture:
     ) -> float:
         return one.get(name, 0.0) * self.first_volume + two.get(name, 0.0) * added
 
-    def solve(self, added: float, start: float = 7.0) -> Solution:
+    def solve(self, added: float, start: float | None = None) -> Solution:
         """The solution after `added` mL of the second."""
         totals, strong = self.composition(added)
         notes = self.first.notes + self.second.notes

@@ -8,7 +8,7 @@ from functools import lru_cache
 from pathlib import Path
 
 from soplint.equilibria.acids import AcidAt, acid_at
-from soplint.equilibria.balance import Dissolved, Form, Problem
+from soplint.equilibria.species import Dissolved, Form, Problem, Shape, shape_of
 from soplint.equilibria.water import properties
 
 _DATA = Path(__file__).parent / "data"
@@ -40,7 +40,11 @@ def interaction_term(ion: str, strong: Mapping[str, float]) -> float:
     row = interactions().get(ion)
     if not row:
         return 0.0
-    return sum(row.get(counter, 0.0) * molality for counter, molality in strong.items())
+    term = 0.0
+    for counter, epsilon in row.items():
+        if counter in strong:
+            term += epsilon * strong[counter]
+    return term
 
 
 def forms_of(acid: AcidAt, strong: Mapping[str, float]) -> tuple[Form, ...]:
@@ -65,6 +69,23 @@ def forms_of(acid: AcidAt, strong: Mapping[str, float]) -> tuple[Form, ...]:
     return tuple(forms)
 
 
+@lru_cache(maxsize=1)
+def _interacting() -> frozenset[str]:
+    """Acid systems with coefficients of their own in the table."""
+    return frozenset(ion.partition(":")[0] for ion in interactions() if ":" in ion)
+
+
+@lru_cache(maxsize=4096)
+def _plain_shape(name: str, temperature: float) -> Shape:
+    return shape_of(forms_of(acid_at(name, temperature), {}))
+
+
+def _shape(name: str, temperature: float, strong: Mapping[str, float]) -> Shape:
+    if name in _interacting():
+        return shape_of(forms_of(acid_at(name, temperature), strong))
+    return _plain_shape(name, temperature)
+
+
 def build(
     totals: Mapping[str, float],
     strong: Mapping[str, float],
@@ -86,8 +107,7 @@ def build(
     dissolved = []
     for name, total in totals.items():
         if total > 0.0 and not (held and name in held):
-            acid = acid_at(name, temperature)
-            dissolved.append(Dissolved(total, forms_of(acid, strong), bool(acid.clusters)))
+            dissolved.append(Dissolved(total, _shape(name, temperature, strong)))
     fixed = tuple(
         (anchor, forms_of(acid_at(name, temperature), strong))
         for name, anchor in (held or {}).items()

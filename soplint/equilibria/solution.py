@@ -7,8 +7,9 @@ from dataclasses import dataclass, field
 from math import log, sqrt
 from typing import Any
 
-from soplint.equilibria import balance as kernel
+from soplint.equilibria import species as kernel
 from soplint.equilibria.acids import system
+from soplint.equilibria.charges import slopes
 from soplint.equilibria.validity import Validity, model_uncertainty
 from soplint.equilibria.water import density
 
@@ -45,7 +46,6 @@ class Solution:
     notes: tuple[str, ...]
     problem: kernel.Problem = field(repr=False)
     names: tuple[str, ...] = field(repr=False)
-    residual: float = field(repr=False)
     _kept: dict[str, Any] = field(default_factory=dict, repr=False, compare=False)
 
     @property
@@ -57,10 +57,16 @@ class Solution:
         return found
 
     @property
+    def residual(self) -> float:
+        """Charge left over, relative to the larger of both charges."""
+        sums = slopes(self.problem, self.pH, self.ionic_strength)
+        return abs(sums.p - sums.n) / max(sums.p, sums.n)
+
+    @property
     def buffer_capacity(self) -> float:
         """Van Slyke's beta = dC_base/dpH at constant ionic strength [mol/(L pH)]."""
         if "capacity" not in self._kept:
-            sums = kernel.slopes(self.problem, self.pH, self.ionic_strength)
+            sums = slopes(self.problem, self.pH, self.ionic_strength)
             scale = density(self.temperature)
             self._kept["capacity"] = -_LN10 * (sums.px - sums.nx) * scale
         return float(self._kept["capacity"])
@@ -112,7 +118,7 @@ def _species(solution: Solution) -> dict[str, Species]:
         z = solution.charges[ion]
         activity = molality * 10.0 ** (-z * z * d)
         found[ion] = Species(ion, z, molality, molality * scale, activity)
-    groups = [s.forms for s in problem.systems] + [forms for _, forms in problem.fixed]
+    groups = [s.shape.forms for s in problem.systems] + [forms for _, forms in problem.fixed]
     amounts = kernel.molalities(problem, ph, solution.ionic_strength)
     for name, forms, values in zip(solution.names, groups, amounts, strict=True):
         for (q, _, z, _), molality in zip(forms, values, strict=True):
@@ -125,7 +131,7 @@ def _species(solution: Solution) -> dict[str, Species]:
 def _constants_part(solution: Solution) -> float:
     """Root sum of squares of (dpH/dpK) u(pK) over all steps, by moving each constant."""
     problem, strength = solution.problem, solution.ionic_strength
-    sums = kernel.slopes(problem, solution.pH, strength)
+    sums = slopes(problem, solution.pH, strength)
     capacity = -_LN10 * (sums.px - sums.nx)
     d = kernel.damping(problem.slope, strength)
     oh = 10.0 ** (solution.pH - problem.pkw + d - problem.hydroxide_term)
