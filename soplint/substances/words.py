@@ -8,10 +8,15 @@ from .reading import NOT_MEANT, Found
 
 _JOINT = " -,()[]'"  # what may stand between the words of one name
 _GLUE = frozenset(" -.·*")  # one of these alone is looked at without further ado
-_JOINT_LENGTH = 4
+_JOINT_LENGTH = 5
 _SHORT = 6  # keys below this length must stand without a space: "K, I" is no potassium iodide
-_SQUEEZE = str.maketrans("", "", " -,()[]'.·*")
+_SQUEEZE = str.maketrans("", "", " -,()[]'.·*+")
 _SIZES = (4, 8)  # lengths of the beginnings by which a growing name is given up early
+
+
+def _joins(joint: str) -> bool:
+    """Whether this may stand between two words of one name: "D-(+)-glucose"."""
+    return len(joint) <= _JOINT_LENGTH and not joint.replace("(+)", "").strip(_JOINT)
 
 
 class Line:
@@ -78,7 +83,7 @@ class Names:
                 return best
             following, after = spans[last + 1]
             joint = chars[end:following]
-            if joint not in _GLUE and (len(joint) > _JOINT_LENGTH or joint.strip(_JOINT)):
+            if joint not in _GLUE and not _joins(joint):
                 return best
             loose = loose or " " in joint
             last += 1
