@@ -28,7 +28,7 @@ if TYPE_CHECKING:
 # Lists and quotes inside one another, counted as the parser does (two for a list).
 NESTING = 40
 # Above this many lines, or lines that open many quotes, the plain reader takes over: it is faster.
-MOST_LINES = 60_000
+MOST_LINES = 20_000
 MOST_DEEP_QUOTES = 500
 
 _STRICT_FENCE = re.compile(r"[{.\s]*(?:procedure)\b", re.IGNORECASE)
@@ -56,7 +56,9 @@ def read_markdown(builder: Builder, lines: Sequence[str], skip: int) -> str | No
     deep = sum(1 for line in body if _DEEP_QUOTE.match(line))
     if len(body) > MOST_LINES or deep > MOST_DEEP_QUOTES:
         _read_simply(builder, lines, skip)
-        return "read line by line, without nesting: too many lines or quotes inside one another"
+        return (
+            "read line by line, without nesting and strict fences: too many lines or nested quotes"
+        )
     tokens: list[Token] = []
     parser = _parser()
     try:
@@ -65,7 +67,7 @@ def read_markdown(builder: Builder, lines: Sequence[str], skip: int) -> str | No
     except RecursionError:
         builder.blocks.clear()
         _read_simply(builder, lines, skip)
-        return "read line by line, without nesting: lists or quotes are nested too deeply"
+        return "read line by line, without nesting and strict fences: nested too deeply"
     return None
 
 

@@ -39,6 +39,9 @@ _QUANTITY_END = re.compile(rf"{QUANTITY}(?:\s?\([^()]{{0,60}}\))?[.,;]?\s*$", re
 _UNIT_NEXT = re.compile(rf"-?\s?{_UNIT}")
 _RANGE_NEXT = re.compile(r"(?:to|or|and)\s[\d.~]")
 
+_MAY_BE_NUMBER = re.compile(
+    r"\(?(?:\d|[A-Za-z][.)\d]|[ivxIVX]{2,5}[.)])|#\.|(?:Step|STEP|Schritt|Étape|Шаг)\s"
+)
 _STEP = re.compile(
     r"(?:Step|STEP|Schritt|Étape|Шаг)\s+(\d{1,3}[a-z]?)(?:\s*[.:)]\s*|\s+[-–—]\s+|$)"
 )
@@ -104,8 +107,7 @@ def printed_number(chars: str, heading: bool = False) -> Mark | None:
     >>> printed_number("Step 3: Stir").number, printed_number("a) Stir").number
     ('3', 'a')
     """
-    first = chars[:1]
-    if not (first.isalnum() or first in "(#"):
+    if _MAY_BE_NUMBER.match(chars) is None:
         return None
     match = _STEP.match(chars) or _BRACKET.match(chars)
     if match is not None:
