@@ -31,6 +31,9 @@ _OPEN_END = re.compile(
     r"No\.|e\.g\.|i\.e\.|und|mit|von|et|de|и|в)|[-+=~×*/<>≈±]|[(\[])$"
 )
 _CONTINUES = re.compile(r"[)\],;:.=%×/]|(?:and|or|of|to|in|with|und|et)\s")
+# "Author: ...", "Example: ..." begin a line of their own; so does what follows "c = m / V".
+_LABEL = re.compile(r"[A-ZÀ-ÞА-Я][^\W\d_]{2,15}(?: [^\W\d_]{1,12})?:(?:\s|$)")
+_FORMULA = re.compile(r"[^\W\d_]\w{0,5}(?:\s?\([^()]{1,40}\))?\s?=\s")
 _FIRST_WORD = re.compile(r"\S+")
 _LOWER_WORD = re.compile(r"[^\W\d_]+")
 _BOLD = re.compile(
@@ -174,6 +177,8 @@ def starts_anew(before: str, chars: str, width: int, listed: bool = False) -> bo
         return True
     if _OPEN_END.search(before[-12:]) or _CONTINUES.match(chars) or _unclosed(before):
         return False
+    if _LABEL.match(chars) or _FORMULA.match(before):
+        return True
     if listed and (before[-1:] == "," or _begins_low(chars)):
         return False
     recipe = is_recipe_line(before)
