@@ -1,5 +1,18 @@
 """Substances: formulas and molar masses, the catalogue of reagents, and names in running text.
 
+``molar_mass`` and ``parse_formula`` read a formula.  ``lookup`` tells what one name means;
+``NameIndex.find`` finds all names in a line.  A name that leaves the form open (no hydrate named,
+"EDTA", "Tris-HCl", an acid without its strength) means several substances, best first, so that
+the caller can try them all.  ``forms`` and ``hydrates`` give the relatives of a substance,
+``concentrated`` and ``density`` the commercial strengths and densities of liquids.
+
+The facts stand in ``data/``: atomic weights, two reagent files with one row per form, synonyms,
+strengths, densities, ions.  ``index.json`` is prepared from them by
+``python -m soplint.substances.prepare`` and is all that a review loads.  Modules, from the ground
+up: elements, formula (a formula by itself); naming, stems, tables, rows, prepare (the files);
+catalogue (substances at run time); hydration, inorganic, reading, words, water, index, lookup
+(names in text); strengths.
+
 >>> round(molar_mass("Na2HPO4·7H2O"), 2)
 268.06
 >>> [s.name for s in lookup("di-sodium hydrogen phosphate heptahydrate").substances]

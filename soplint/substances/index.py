@@ -13,7 +13,14 @@ from .catalogue import Catalogue, catalogue
 from .hydration import Water, water_behind
 from .model import Match
 from .naming import FOLD, spell
-from .reading import Found, hydrates_known, made_with_water, meaning, read_formula
+from .reading import (
+    Found,
+    hydrates_known,
+    made_with_water,
+    meaning,
+    read_formula,
+    sold_concentrated,
+)
 from .water import FIRST, water_phrase
 from .words import Line, Names
 
@@ -100,7 +107,8 @@ class NameIndex:
             joint = line.joint(at)
             if len(joint) <= 2 and not joint.strip(" .-"):
                 found = self._plain(line, at + 1)
-                if found is not None and found.kind not in ("n", "g"):
+                fits = before == "anhydrous" or (found and sold_concentrated(found.targets))
+                if found is not None and found.kind not in ("n", "g") and fits:
                     return line.spans[at][0], found.end, found, before
         found = self._plain(line, at)
         return None if found is None else (found.start, found.end, found, "")
@@ -158,7 +166,11 @@ class NameIndex:
         if water is not None:
             end = water.end
             flags += water.flags
-        elif not before and (behind := _BEHIND.match(folded, end)):
+        elif (
+            not before
+            and (behind := _BEHIND.match(folded, end))
+            and sold_concentrated(found.targets)
+        ):
             before, end = "concentrated", _closed(folded, end, behind.end())
         if found.kind == "c":
             before = "concentrated"

@@ -157,6 +157,14 @@ def hydrates_known(targets: tuple[int, ...]) -> frozenset[float]:
     return frozenset(member.hydrate for target in targets for member in _family(data, target))
 
 
+@lru_cache(maxsize=4096)
+def sold_concentrated(targets: tuple[int, ...]) -> bool:
+    """Whether "conc." can go with the name: some form is a liquid or solution, and not water."""
+    data = catalogue()
+    members = [member for target in targets for member in data.members(target)]
+    return any(m.state in ("solution", "liquid") and m.name != "water" for m in members)
+
+
 def _family(data: Catalogue, target: int) -> tuple[Substance, ...]:
     members = data.members(target)
     return data.family_of(members[0]) if target >= 0 else members

@@ -33,6 +33,6 @@ def water_phrase(line: Line, at: int) -> int | None:
             return None
         if line.word(place) in NOUNS:
             return place
-        if line.word(place) not in _INNER:
+        if line.word(place) not in _INNER or line.word(place) == line.word(place - 1):
             return None
     return None
