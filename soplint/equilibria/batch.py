@@ -17,7 +17,7 @@ from soplint.equilibria.balance import balance
 from soplint.equilibria.species import Dissolved, Form, Problem, shape_of
 
 _LN10 = float(np.log(10.0))
-_GRID = np.linspace(-1.0, 15.0, 41)
+_GRID = np.linspace(-1.0, 15.0, 57)
 _ROUNDS = 12
 _SMALL = 3e-7  # quadratic convergence: after a step this small the error is below 1e-11
 

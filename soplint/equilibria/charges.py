@@ -5,7 +5,7 @@ from __future__ import annotations
 from math import exp
 from typing import NamedTuple
 
-from soplint.equilibria.species import LN10, Form, Problem, Shape, damping, free_monomer
+from soplint.equilibria.species import LN10, Form, Problem, Shape, cubic_root, damping
 
 
 class Sums(NamedTuple):
@@ -54,7 +54,7 @@ def plain_sums(problem: Problem, x: float, d: float) -> tuple[float, ...]:
     for dissolved in problem.systems:
         shape, total = dissolved.shape, dissolved.total
         if shape.kind == "mixed":
-            part = _by_form(total, shape, y, e)
+            part = (_clusters if shape.nuclear else _both_signs)(total, shape, y, e)
             p, px, pd = p + part[0], px + part[1], pd + part[2]
             n, nx, nd = n + part[3], nx + part[4], nd + part[5]
             s, sx, sd = s + part[6], sx + part[7], sd + part[8]
@@ -104,45 +104,79 @@ def _moments(
     return m1 / whole, m2 / whole, m3 / whole, m4 / whole
 
 
-def _by_form(total: float, shape: Shape, y: float, e: float) -> tuple[float, ...]:
-    """The nine sums of a system with forms of both signs or with clusters, form by form."""
-    weights = [exp(j * y - power + e * lift) for j, power, lift, _, _ in shape.rows]
-    if shape.nuclear:
-        amounts = _cluster_amounts(total, shape, weights)
-    else:
-        unit = total / sum(weights)
-        amounts = [unit * w for w in weights]
+def _both_signs(total: float, shape: Shape, y: float, e: float) -> tuple[float, ...]:
+    """The nine sums of a system with forms of both signs, form by form."""
     whole = lost = lifted = 0.0
-    p = pq = pj = pl = n = nq = nj = nl = s = sq = sj = sl = 0.0
-    for m, (j, _, lift, z, q) in zip(amounts, shape.rows, strict=True):
-        whole += q * q * m
-        lost += q * j * m
-        lifted += q * lift * m
+    p = pj = pl = n = nj = nl = s = sj = sl = 0.0
+    for j, power, lift, z, _ in shape.rows:
+        w = exp(j * y - power + e * lift)
+        whole += w
+        lost += j * w
+        lifted += lift * w
         if z > 0:
-            c = m * z
+            c = w * z
             p += c
-            pq += c * q
             pj += c * j
             pl += c * lift
         elif z < 0:
-            c = -m * z
+            c = -w * z
             n += c
-            nq += c * q
             nj += c * j
             nl += c * lift
         else:
             continue
-        c = m * z * z
+        c = w * z * z
         s += c
-        sq += c * q
         sj += c * j
         sl += c * lift
     lost /= whole
     lifted /= whole
+    unit = total / whole
     return (
-        p,
-        pj - pq * lost,
-        pl - pq * lifted,
+        unit * p,
+        unit * (pj - p * lost),
+        unit * (pl - p * lifted),
+        unit * n,
+        unit * (nj - n * lost),
+        unit * (nl - n * lifted),
+        unit * s,
+        unit * (sj - s * lost),
+        unit * (sl - s * lifted),
+    )
+
+
+def _clusters(total: float, shape: Shape, y: float, e: float) -> tuple[float, ...]:
+    """The nine sums of a system with clusters, none of whose forms is a cation."""
+    weights = [exp(j * y - power + e * lift) for j, power, lift, _, _ in shape.rows]
+    parts = [0.0, 0.0, 0.0, 0.0]
+    for w, row in zip(weights, shape.rows, strict=True):
+        parts[row[4]] += w
+    b = cubic_root(total, parts[1], 2.0 * parts[2], 3.0 * parts[3])
+    powers = (1.0, b, b * b, b * b * b)
+    whole = lost = lifted = 0.0
+    n = nq = nj = nl = s = sq = sj = sl = 0.0
+    for w, (j, _, lift, z, q) in zip(weights, shape.rows, strict=True):
+        c = powers[q] * w * q
+        whole += q * c
+        lost += j * c
+        lifted += lift * c
+        if z:
+            c *= -z / q
+            n += c
+            nq += c * q
+            nj += c * j
+            nl += c * lift
+            c *= -z
+            s += c
+            sq += c * q
+            sj += c * j
+            sl += c * lift
+    lost /= whole
+    lifted /= whole
+    return (
+        0.0,
+        0.0,
+        0.0,
         n,
         nj - nq * lost,
         nl - nq * lifted,
@@ -150,13 +184,6 @@ def _by_form(total: float, shape: Shape, y: float, e: float) -> tuple[float, ...
         sj - sq * lost,
         sl - sq * lifted,
     )
-
-
-def _cluster_amounts(total: float, shape: Shape, weights: list[float]) -> list[float]:
-    """Molalities of the forms of a system whose free monomer b is a root of its own."""
-    b = free_monomer(total, [(form[0], w) for form, w in zip(shape.forms, weights, strict=True)])
-    powers = (1.0, b, b * b, b * b * b)
-    return [powers[form[0]] * w for form, w in zip(shape.forms, weights, strict=True)]
 
 
 def _held(anchor: float, forms: tuple[Form, ...], x: float, d: float) -> tuple[float, ...]:

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 from math import log, sqrt
 
 from soplint.equilibria.acids import ION_SIZE
+from soplint.equilibria.errors import EquilibriumError
 
 LN10 = log(10.0)
 
@@ -61,36 +62,26 @@ class Problem:
 
 
 def shape_of(forms: tuple[Form, ...]) -> Shape:
-    """The shape of a list of forms.
+    """The shape of a list of forms; a system with clusters may hold no cation.
 
     >>> shape_of(((1, 0, 0, 0.0), (1, 1, -1, 5.0))).charge
     0
     """
     nuclear = any(form[0] > 1 for form in forms)
     highest, lowest = forms[0][2], min(form[2] for form in forms)
+    if nuclear and highest > 0:
+        raise EquilibriumError("clusters of cations are not in the model", str(forms))
     kind = "mixed" if nuclear or highest > 0 > lowest else "cations" if highest > 0 else "anions"
     rows = tuple((j, LN10 * pk, z * z - q * highest * highest, z, q) for q, j, z, pk in forms)
     return Shape(forms, nuclear, kind, highest, tuple(row[1] for row in rows[1:]), rows)
 
 
-def free_monomer(total: float, weights: Sequence[tuple[int, float]]) -> float:
-    """Molality b of the first form from total = sum of q w b^q, by Newton from above.
+def cubic_root(total: float, one: float, two: float, three: float) -> float:
+    """Positive root b of one b + two b² + three b³ = total, by Newton from above.
 
-    Parameters: total [mol/kg]; weights, pairs (monomers q, at most 3; w, the
-    molality of the species at b = 1).
-    Returns: b [mol/kg].
-
-    >>> free_monomer(2.0, [(1, 1.0), (2, 0.5)])
+    >>> cubic_root(2.0, 1.0, 1.0, 0.0)
     1.0
     """
-    one = two = three = 0.0
-    for q, w in weights:
-        if q == 1:
-            one += w
-        elif q == 2:
-            two += 2.0 * w
-        else:
-            three += 3.0 * w
     b = total / one
     if two > 0.0:
         b = min(b, sqrt(total / two))
@@ -104,6 +95,20 @@ def free_monomer(total: float, weights: Sequence[tuple[int, float]]) -> float:
         if abs(step) <= 1e-9 * b:  # quadratic: the error is now below the last digit
             break
     return float(b)
+
+
+def free_monomer(total: float, weights: Sequence[tuple[int, float]]) -> float:
+    """Molality b of the first form from total = sum of q w b^q.
+
+    Parameters: total [mol/kg]; weights, pairs (monomers q, at most 3; w, the
+    molality of the species at b = 1).
+    Returns: b [mol/kg].
+
+    >>> free_monomer(2.0, [(1, 1.0), (2, 0.5)])
+    1.0
+    """
+    one, two, three = (k * sum(w for q, w in weights if q == k) for k in (1, 2, 3))
+    return cubic_root(total, one, two, three)
 
 
 def molalities(problem: Problem, ph: float, strength: float) -> list[tuple[float, ...]]:
