@@ -7,7 +7,7 @@ from typing import NamedTuple
 from soplint.quantities.late import LatePattern
 from soplint.quantities.leads import Lead, read_lead
 from soplint.quantities.noise import identifier_end, in_name, not_a_quantity, token_end
-from soplint.quantities.numerals import Numeral, read_numeral, with_space_groups
+from soplint.quantities.numerals import VULGAR, Numeral, read_numeral, with_space_groups
 from soplint.quantities.style import NumberStyle
 from soplint.quantities.unit_reader import ReadUnit, read_unit
 from soplint.quantities.units import unit_table
@@ -29,6 +29,9 @@ _OF_VOLUME = LatePattern(r" (?:the )?(?:final |total )*(?:volume|water)")
 _SPACES = " \u00a0\u2009\u202f"
 _MINUS = "-−–"
 _HYDRATE_DOTS = "·•∙⋅"
+_TIMES = ("x", "X", "×")
+_OPERATORS = ("=", "×", "*", "/", "·", "+")
+_FACTOR = LatePattern(r" ?(?:\(|[A-Za-z](?![A-Za-z0-9]))")
 _AFTER_POINT = {"mL", "µL", "mg", "kg", "mM", "mmol", "mol/L", "°C", "g/L", "g/mol"}
 _GLUED_BEFORE = {"ph", "рн", "рh", "pн", "mw", "fw", "mr", "x", "pka"}
 _GLUED_ABOUT = {"ca", "approx", "about"}  # not "Ca", as in "Ca2+"
@@ -43,7 +46,7 @@ def read_item(chars: str, at: int, style: NumberStyle) -> Item | int:
         if before.isalnum() or before == "_" or before == "^":
             if not _key_before(chars, at):
                 return token_end(chars, at)
-        elif before == ".":
+        elif before == "." and chars[at] not in VULGAR:
             start = _point_start(chars, at)
         elif before in _MINUS or before == "/":
             attached = at > 1 and (chars[at - 2].isalnum() or chars[at - 2] in ")]_")
@@ -51,6 +54,10 @@ def read_item(chars: str, at: int, style: NumberStyle) -> Item | int:
     if numeral is None:
         return identifier_end(chars, at)
     unit = read_unit(chars, numeral.end)
+    if unit is not None and (
+        _is_title(chars, start, numeral, unit) or _is_product(chars, start, numeral, unit)
+    ):
+        unit = None
     lead = read_lead(chars, start)
     if numeral.before_comma is not None:
         if unit is None and in_name(chars, numeral.end):
@@ -79,6 +86,29 @@ def read_item(chars: str, at: int, style: NumberStyle) -> Item | int:
         Item(numeral, unit, lead, start, unit.end if unit is not None else numeral.end),
         attached,
     )
+
+
+def _is_title(chars: str, start: int, numeral: Numeral, unit: ReadUnit) -> bool:
+    """Whether a number that opens a line counts the sections: "7.2 Wash", "8 Second stage"."""
+    if start or unit.unit.dimension in _ATTACHED_UNITS:
+        return False
+    word = chars[numeral.end : unit.end].strip()
+    return len(word) > 3 and word.isalpha() and word.istitle()
+
+
+def _is_product(chars: str, start: int, numeral: Numeral, unit: ReadUnit) -> bool:
+    """Whether the sign behind the number multiplies: "m × 1000 / (204.22 × V)"."""
+    if unit.unit.symbol != "X" or chars[numeral.end] != " ":
+        return False
+    if chars[numeral.end : unit.end].strip() not in _TIMES:
+        return False
+    if chars[max(0, start - 2) : start].strip()[-1:] in _OPERATORS:
+        return True
+    if chars[max(0, start - 3) : start].replace(" ", "").endswith("/("):
+        return True
+    if numeral.places > 1 or numeral.value > 10_000:
+        return True
+    return _FACTOR.match(chars, unit.end) is not None
 
 
 def read_word_item(chars: str, at: int) -> Item | int:
@@ -165,7 +195,9 @@ def _with_point(chars: str, numeral: Numeral) -> tuple[Numeral, ReadUnit] | None
 def _over_number(chars: str, at: int, numeral: Numeral, lead: Lead) -> Item | int:
     """A number under a slash: "N/50" is a normality, "TE/2" is a name."""
     letter = chars[at - 2]
-    if letter in "NM" and (at == 2 or not chars[at - 3].isalnum()) and numeral.value >= 1:
+    before = chars[max(0, at - 5) : at - 2]
+    alone = not before[-1:].isalnum() and not before.rstrip()[-1:].isnumeric()
+    if letter in "NM" and alone and numeral.value >= 1:
         value = 1 / numeral.value
         inverse = numeral._replace(value=value, half=value * 0.005, digits=2, kind="fraction")
         return Item(inverse, None, lead, at - 2, numeral.end, normality=True)

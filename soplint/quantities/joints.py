@@ -165,10 +165,17 @@ def _dash_range(
     if item.lead.kind == "label" and " " in joint.group():
         return None
     if own is None:
+        if _leading_zero(chars, second):
+            return None
         following = chars[second.end : second.end + 2]
         if following[:1] == "-" or item.numeral.end - item.numeral.start > 5:
             return None
     return _range(item, second, unit, factor)
+
+
+def _leading_zero(chars: str, numeral: Numeral) -> bool:
+    """Whether the digits look like the second half of an identifier: "26-0417"."""
+    return chars[numeral.start] == "0" and chars[numeral.start + 1 : numeral.start + 2].isdigit()
 
 
 def _word_range(

@@ -107,7 +107,7 @@ def _signs(chars: str, start: int, floor: int) -> tuple[int, str, str, str]:
             before = chars[at - 2 : at - 1]
             if at - 2 < floor and char == ">":
                 break
-            if before in ("-", "=", ">", "<", "–"):
+            if before in ("-", "=", ">", "<", "–") or (char == ">" and before.isalnum()):
                 break
             manner = "at-most" if char == "<" else "at-least"
         elif char in "±-−–×$€£xX#@" and not sign:
@@ -158,7 +158,7 @@ def _words(chars: str, at: int, floor: int, sign: str, manner: str, passed: str)
             bare = count == 0 and at == first and not set(passed) - set("=:")
             return Lead(role, manner, begin, bare and manner == "plain", between, sign)
         if role == "label":
-            if count == 0:
+            if count == 0 and "(" not in passed:
                 return Lead("label", manner, begin, True, between, sign)
             break
         if role in _MANNERS:
@@ -183,7 +183,8 @@ def _role(chars: str, word: str, begin: int, floor: int, passed: str) -> str:
         return role
     if role in ("d", "m"):
         wanted = "density" if word == "d" else "molar-mass" if word == "M" else ""
-        return wanted if "=" in passed else ""
+        opened = word == "M" and chars[begin - 1 : begin] == "("
+        return wanted if "=" in passed or opened else ""
     before = _previous_word(chars, begin, floor)
     if role == "than":
         return _than(chars, begin, floor, before)

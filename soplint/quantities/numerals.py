@@ -62,7 +62,7 @@ def read_numeral(chars: str, start: int, style: NumberStyle) -> Numeral | None:
     assert body is not None  # every part of the pattern is optional
     head, commas, point = body.groups()
     end = body.end()
-    if end - start > MAX_DIGITS:
+    if end == start or end - start > MAX_DIGITS:
         return None
     if commas:
         return _with_commas(chars, start, end, style)

@@ -51,7 +51,8 @@ def find_measures(chars: str, style: NumberStyle = DEFAULT) -> list[Measure]:
     word = next_word(lower, 0) if lower else -1
     measures: list[Measure] = []
     while found is not None or word >= 0:
-        if found is None or 0 <= word < found.start():
+        at = word if found is None or 0 <= word < found.start() else found.start()
+        if found is None or at == word:
             item = read_word_item(chars, word)
         else:
             quick = quick_measure(chars, found.start())
@@ -61,6 +62,7 @@ def find_measures(chars: str, style: NumberStyle = DEFAULT) -> list[Measure]:
                 continue
             item = read_item(chars, found.start(), style)
         end = item if isinstance(item, int) else _measure(chars, item, style, measures)
+        end = max(end, at + 1)  # whatever was read: go on, never back
         if found is not None and found.start() < end:
             found = _DIGIT.search(chars, end)
         if 0 <= word < end:
@@ -79,7 +81,8 @@ def _measure(chars: str, item: Item, style: NumberStyle, measures: list[Measure]
         measure = _ratio(item, joined)
     else:
         measure = _joined(chars, item, joined, measures)
-    measures.append(measure)
+    if not measures or measure.start >= measures[-1].end:
+        measures.append(measure)
     return measure.end
 
 
@@ -115,7 +118,7 @@ def _unit_from_lead(chars: str, item: Item, measures: list[Measure]) -> Unit:
         return unit_table()["g/mL"]
     if kind == "pKa":
         return _PKA
-    if sign and sign in "$€£":
+    if sign and sign in "$€£" and chars[item.end : item.end + 1] != "$":
         return unit_table()[sign]
     if sign and sign in "×xX" and not _after_number(chars, item.start):
         near = chars[max(0, item.start - 60) : item.end + 20]

@@ -20,7 +20,7 @@ class ReadUnit(NamedTuple):
 
 _WORD = re.compile(
     r"[ \u00a0\u2009\u202f]{0,2}(-(?=[A-Za-z]))?"
-    r"([%‰$€£]|[°º˚] ?[CFCС]?(?![A-Za-z])|[×✕](?: ?g(?![\w]))?|[A-Za-zµμÅΩ\u0400-\u04ff]+[0-9²³]?)"
+    r"([%‰€£]|[°º˚] ?[CFCС]?(?![A-Za-z])|[×✕](?: ?g(?![\w]))?|[A-Za-zµμÅΩ\u0400-\u04ff]+[0-9²³]?)"
 )
 _OVER = re.compile(
     r" ?/ ?(?P<slash>[A-Za-zµμ\u0400-\u04ff]+[3³]?)(?![\w]|-[A-Za-z])"
@@ -31,9 +31,9 @@ _OVER = re.compile(
 )
 OVER_FIRST = frozenset("/·⋅*.pLlmdckKgsµμh")
 _BASIS = LatePattern(
-    r" ?[(\[]? ?(?P<basis>(?:w|v|m|wt|vol|W|V|M|Vol|Wt)\.? ?[/:] ?(?:w|v|m|wt|vol|W|V|M|Vol|Wt)\.?"
-    r"|by (?:volume|weight|mass|vol\.?|wt\.?)|wt\.?(?!\w)|vol\.?(?!\w)|weight(?!\w)|mol(?!\w)"
-    r"|об\.?|мас\.?)(?!\w)(?: ?[)\]])?"
+    r" ?[(\[]? ?(?P<basis>(?:w|v|m|wt|vol|W|V|M|Vol|Wt)\.? ?[/:] ?(?:w|v|m|wt|vol|W|V|M|Vol|Wt)"
+    r"|by (?:volume|weight|mass|vol|wt)|wt(?!\w)|vol(?!\w)|weight(?!\w)|mol(?!\w)"
+    r"|об|мас)(?!\w)(?: ?[)\]])?"
 )
 _BASIS_FIRST = frozenset("([wvmbWVMоm")
 _NO_STRENGTH = LatePattern(

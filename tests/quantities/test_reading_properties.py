@@ -47,6 +47,11 @@ def test_lines_of_recipe_pieces(line: str, style: NumberStyle) -> None:
     _check(line, find_measures(line, style))
 
 
+@pytest.mark.parametrize("line", [".½", "1½,.½М", "½ N/50", "5.½ mL"])
+def test_lines_that_once_led_back(line: str) -> None:
+    _check(line, find_measures(line))
+
+
 @settings(max_examples=300, deadline=None)
 @given(st.text(max_size=60))
 def test_any_text(line: str) -> None:
