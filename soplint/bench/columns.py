@@ -11,6 +11,7 @@ from soplint.bench.relation import Relation
 from soplint.findings.model import Interval
 from soplint.notation.rows import RecipeTable
 
+_GOOD = ("made-up", "mark", "total", "column", "heading")
 _LEAST = 0.02  # cells rounded to one or two figures scale this well at best
 
 
@@ -18,7 +19,10 @@ def column_relations(
     table: RecipeTable, preparations: Sequence[Preparation]
 ) -> Iterator[Relation]:
     """Each cell against the others of its row, per litre of its column."""
-    volumes = [p.volume.litres if p.volume is not None else None for p in preparations]
+    volumes = [
+        p.volume.litres if p.volume is not None and p.volume.provenance in _GOOD else None
+        for p in preparations
+    ]
     if len({v for v in volumes if v}) < 2 or any(v is None for v in volumes):
         return
     for line in {t.text.line for p in preparations for t in p.taken}:

@@ -33,7 +33,12 @@ def _of_material(sentence: Sentence, material: Material) -> Iterator[Relation]:
                     Stated(sentence.text, density), substance.name, substance.molar_mass, "g/mol",
                     "a molar mass in a unit of density",
                 )  # fmt: skip
-        if mass is not None and mass.base < _DENSEST and substance.density:
+        if mass is not None and "unit-slip" in mass.flags:
+            yield _relation(
+                Stated(sentence.text, mass), substance.name, mass.nominal, "g/mol",
+                "a molar mass in another unit",
+            )  # fmt: skip
+        elif mass is not None and mass.base < _DENSEST and substance.density:
             if abs(mass.nominal / substance.density - 1) < _NEAR:
                 yield _relation(
                     Stated(sentence.text, mass), substance.name, substance.density, "g/mL",

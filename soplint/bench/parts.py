@@ -179,7 +179,8 @@ def _too_much(
 
 def ratio_relations(preparation: Preparation) -> Iterator[Relation]:
     """Parts of a mixture (70 : 30 v/v) against the volumes that are mixed."""
-    for mixed in preparation.mixed:
+    titled = preparation.title.mixtures if preparation.title is not None else ()
+    for mixed in (*preparation.mixed, *titled):
         ratio = mixed.mixture.ratio
         parts = ratio.parts
         doses = [_dose_of(preparation, material) for material in mixed.mixture.materials]

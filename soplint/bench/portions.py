@@ -12,10 +12,13 @@ from soplint.notation.phrases import Dose, Material
 from soplint.quantities.model import Measure
 from soplint.substances import Substance, concentrated
 from soplint.substances import density as solution_density
+from soplint.substances.model import Match
 
 # A strength of a pure liquid or a concentrate is uncertain by its assay range, at least this much
 # (design: "strength of a concentrate: the assay range of its row, at least 3 %").
 CONCENTRATE = 0.03
+# A printed molar mass names the form it agrees with this well.
+PRINTED_MASS = 0.003
 
 
 @dataclass(frozen=True, slots=True)
@@ -65,10 +68,22 @@ def _of_dose(dose: Dose, facts: Facts) -> Iterator[Portion]:
 def candidates(material: Material) -> tuple[Substance, ...]:
     """The substances that a name can mean."""
     if material.match is not None:
-        return material.match.substances
+        return _as_weighed(material.match, material.molar_mass)
     if material.molar_mass is None or not material.words:
         return ()
     return (_as_printed(material.words, material.molar_mass.base),)
+
+
+def _as_weighed(match: Match, printed: Measure | None) -> tuple[Substance, ...]:
+    """The forms a name can mean; a printed molar mass settles which."""
+    if printed is None or match.form_named:
+        return match.substances
+    fitting = tuple(
+        s
+        for s in match.substances
+        if s.molar_mass and abs(printed.base / s.molar_mass - 1) < PRINTED_MASS
+    )
+    return fitting or match.substances
 
 
 def _as_printed(words: str, molar_mass: float) -> Substance:
@@ -137,6 +152,8 @@ def _of_volume(
     if known is not None:
         yield from _of_stock(litres, text, spread, known, material, substance)
         return
+    if material.match is not None and material.match.generic:
+        return  # "the phosphate stock" is no bottle of phosphoric acid
     yield from _neat(litres, text, spread, substance, named, facts)
 
 

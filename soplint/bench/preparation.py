@@ -38,6 +38,15 @@ class Target:
 
 
 @dataclass(frozen=True, slots=True)
+class Mixed:
+    """Parts of named materials in their place."""
+
+    text: Text
+    mixture: Mixture
+    step: int
+
+
+@dataclass(frozen=True, slots=True)
 class Title:
     """What a heading, lead-in, one-line recipe or column head says about a preparation."""
 
@@ -50,6 +59,7 @@ class Title:
     temperature: Measure | None = None
     volume: Stated | None = None
     source: str = "title"
+    mixtures: tuple[Mixed, ...] = ()
 
     @property
     def bare(self) -> bool:
@@ -100,15 +110,6 @@ class Claimed:
 
     text: Text
     claim: Claim
-    step: int
-
-
-@dataclass(frozen=True, slots=True)
-class Mixed:
-    """Parts of named materials in their place."""
-
-    text: Text
-    mixture: Mixture
     step: int
 
 

@@ -16,7 +16,7 @@ from soplint.bench.preparation import Preparation, Stated, Title
 from soplint.bench.title import title_of
 from soplint.intake.model import Block
 from soplint.notation.document import ReadBlock
-from soplint.notation.phrases import Claim, Command, Dose, Equivalent, Material, Sentence, ToVolume
+from soplint.notation.phrases import Claim, Command, Dose, Loose, Mixture, Equivalent, Material, Sentence, ToVolume
 from soplint.notation.rows import RecipeTable, Variant
 from soplint.quantities.model import Measure
 
@@ -148,6 +148,12 @@ class _Walker:
         if opening is not None:
             self._alone(replace(read, sentences=read.sentences[1:]), opening)
             return
+        labelled = [_divided(replace(read, sentences=(s,))) for s in read.sentences]
+        if len(labelled) > 1 and all(labelled):
+            for one in labelled:
+                assert one is not None
+                self._alone(*one)
+            return
         divided = _divided(read)
         if divided is not None:
             self._alone(*divided)
@@ -166,7 +172,7 @@ class _Walker:
         """A line that names a solution and makes it: its own preparation."""
         collector = Collector(self.scope.reagents, self.scope.equivalents)
         above, parents = self._title()
-        if title.bare and above is not None:
+        if title.bare and title.volume is not None and above is not None:
             title = inherit([title, above])
         collector.open(title, parents, self.section, kind="line")
         for sentence in read.sentences:
@@ -258,7 +264,9 @@ def _opening(read: ReadBlock) -> Title | None:
     if len(read.sentences) < 2:
         return None
     first, rest = read.sentences[0], read.sentences[1:]
-    if not first.phrases or not _carries(first.phrases[0]):
+    if not any(_carries(phrase) for phrase in first.phrases):
+        return None
+    if not all(_carries(phrase) or _known(phrase) for phrase in first.phrases[1:]):
         return None
     if len(first.text.chars) > 120 or not _only_names(first.phrases):
         return None
@@ -273,6 +281,15 @@ def _carries(phrase: object) -> bool:
         return phrase.material is not None
     return isinstance(phrase, Material) and bool(
         phrase.strengths or phrase.bracket or phrase.ph or phrase.contents or phrase.solution
+    )
+
+
+def _known(phrase: object) -> bool:
+    """Whether a phrase is no run of unknown words ("run in slowly from the dispenser")."""
+    if isinstance(phrase, Material):
+        return phrase.match is not None or not phrase.words
+    return isinstance(phrase, (Dose, Mixture, ToVolume, Loose)) or (
+        isinstance(phrase, Command) and phrase.kind in ("PREPARE", "DILUTE")
     )
 
 
@@ -346,13 +363,19 @@ def _one_line(read: ReadBlock) -> Title | None:
         if first.amount.dimension == "volume":
             if not (named and _goes_on(read.sentences[0], first) and len(phrases) > 1):
                 return None
-            return title_of(replace(read.sentences[0], phrases=(first,)), "line")
+            title = title_of(replace(read.sentences[0], phrases=(first,)), "line")
+            return _named_by(title, first.end)
         if not (first.amount.dimension == "mass" and molar and makes):
             return None
     elif not (named and taken and (makes or read.block.kind == "item") and not _facts_only(phrases)):
         return None
     sentence = replace(read.sentences[0], phrases=(head,))
-    return title_of(sentence, "line")
+    return _named_by(title_of(sentence, "line"), head.end)
+
+
+def _named_by(title: Title, end: int) -> Title:
+    """The title with only the words up to ``end``, where its recipe begins."""
+    return replace(title, words=title.text.chars[:end].strip())
 
 
 def _is_mass(phrase: object) -> bool:

@@ -124,7 +124,7 @@ def _named(
     generic = material.match is not None and material.match.generic
     if generic and not _counts(strength):
         return  # "phosphate, 10 mg/L" may be counted as any of its forms
-    sure = len(doses) == 1 or _counts(strength) or not _extra_words(material)
+    sure = sum(not t.solvent for t in doses) == 1 or _counts(strength) or not _extra_words(material)
     if direct and not generic:
         same = [(t, s) for t, s in direct if not _only_related(t, material)]
         if same and len(same) < len(direct):

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 
-from soplint.bench.preparation import Stated, Target, Title
+from soplint.bench.preparation import Mixed, Stated, Target, Title
 from soplint.notation.phrases import Claim, Dose, Loose, Material, Mixture, Sentence, SetPH, ToVolume
 from soplint.notation.phrases import Phrase
 from soplint.quantities.model import Measure
@@ -34,10 +34,12 @@ class _Title:
         self.ph: Stated | None = None
         self.temperature: Measure | None = None
         self.volume: Stated | None = None
+        self.mixtures: list[Mixed] = []
 
     def take(self, phrase: Phrase) -> None:
         if isinstance(phrase, Material):
-            self._material(phrase)
+            if phrase.role != "from":  # "KOAc 100 mM from 3 M": the stock, not the aim
+                self._material(phrase)
         elif isinstance(phrase, Dose):
             if phrase.amount.dimension == "volume" and self.volume is None:
                 self.volume = self._stated(phrase.amount)
@@ -57,6 +59,7 @@ class _Title:
                 self._material(phrase.material)
         elif isinstance(phrase, Mixture):
             self.materials.extend(phrase.materials)
+            self.mixtures.append(Mixed(self.sentence.text, phrase, 0))
         elif isinstance(phrase, Loose) and phrase.measure.dimension == "temperature":
             self.temperature = self.temperature or phrase.measure
 
@@ -96,4 +99,5 @@ class _Title:
             self.temperature,
             self.volume,
             self.source,
+            tuple(self.mixtures),
         )

@@ -237,10 +237,19 @@ def _explained(bench: Bench, relation: Relation) -> bool:
 
 @rule("amounts.ratio-matches-parts")
 def ratio_matches_parts(bench: Bench) -> Iterator[Judgement]:
-    """Volumes mixed stand in the stated ratio."""
-    for relation, cause in _single(bench, "ratio"):
+    """Volumes mixed stand in the stated ratio: one finding a mixture, at the part that is most off."""
+    mixtures: dict[tuple[int, object], list[Relation]] = {}
+    for relation, _ in _single(bench, "ratio"):
+        key = (id(relation.preparation), relation.target.key if relation.target else None)
+        mixtures.setdefault(key, []).append(relation)
+    for relations in mixtures.values():
+        worst = max(relations, key=lambda r: abs(r.deviation))
         yield from _amount(
-            bench, relation, cause, "amounts.ratio-matches-parts", "volume misses the stated ratio"
+            bench,
+            worst,
+            likely_cause(worst, bench),
+            "amounts.ratio-matches-parts",
+            "volume misses the stated ratio",
         )
 
 
