@@ -153,6 +153,9 @@ def _rank(split: Split) -> tuple[int, bool, int]:
     """Rare strong ions and second acid systems are unlikely; so is water exchanged."""
     acids = sum(part.acid and part.name != "ammonia" for part, _ in split.parts)
     rare = sum(not part.acid and not _common(part) for part, _ in split.parts)
+    names = {part.name for part, _ in split.parts}
+    if names & {"NO3-", "ClO4-", "SCN-"} and any(_organic(part) for part, _ in split.parts):
+        rare += 1
     whole = sum(part.acid for part, _ in split.parts)
     return rare + max(acids - 1, 0), split.water != 0, whole
 

@@ -132,6 +132,8 @@ def test_unknown_substances_are_named(name):
         ("C4H9NO·HCl", {"morpholine": 1}, {"Cl-": 1}),
         ("Rb2SO4", {"sulfate": 1}, {"Rb+": 2}),
         ("CO2", {"carbonate": 1}, {}),
+        ("C6H14N2O7", {"citrate": 1, "ammonia": 2}, {}),
+        ("C2H8N2O3", {"ethylamine": 1}, {"NO3-": 1}),
     ],
 )
 def test_formulas_in_no_table_are_taken_apart(formula, systems, ions):
