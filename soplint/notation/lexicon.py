@@ -33,12 +33,24 @@ _SEPARATORS = {
     "=>": "ARROW",
     "=": "EQUALS",
     "+": "PLUS",
+    "x": "TIMES",  # settled by refine: the sign of an arithmetic, or a word like any other
+    "×": "TIMES",
+    "*": "TIMES",
     "&": "AND",
     "@": "AT",
     "(": "LPAR",
     "[": "LPAR",
     ")": "RPAR",
     "]": "RPAR",
+}
+
+# Symbols of quantities, as they stand before "=": "m", "V2", "c(NaOH)", "V_total".
+_SYMBOL = re.compile(r"[mncCVvwWfFtTNQM](?:_\w{1,12}|\d{1,2}|[₀-₉]{1,2})?")
+_ASSIGNS = re.compile(r"\s*(?:\([^()=]{1,40}\))?\s*=")
+# What may stand before a symbol; after a word it is the name of something: "buffer A = ...".
+_BEFORE_SYMBOL = {
+    *("COMMA", "SEMICOLON", "COLON", "DASH", "AND", "LPAR", "GIVES", "THEN", "WITH", "EQUALS"),
+    *("IS", "PREPARE", "OR"),
 }
 
 Spellings = dict[str, list[tuple[tuple[str, ...], str]]]
@@ -63,9 +75,7 @@ def spellings() -> Spellings:
     return table
 
 
-def terminals(
-    chars: str, measures: Sequence[Measure], names: Sequence[Match]
-) -> list[Terminal]:
+def terminals(chars: str, measures: Sequence[Measure], names: Sequence[Match]) -> list[Terminal]:
     """The terminals of a sentence, left to right; brackets are balanced.
 
     ``measures`` and ``names`` are those found in ``chars``.  Where they overlap, a name that holds
@@ -117,6 +127,10 @@ def _words(chars: str, start: int, end: int, found: list[Terminal]) -> None:
     index = 0
     while index < len(words):
         word, low, high = words[index]
+        if _is_symbol(chars, word, high, found):
+            found.append(Terminal("SYMBOL", low, high))
+            index += 1
+            continue
         separator = _SEPARATORS.get(word)
         if separator:
             if word != "-" or _stands_alone(chars, low, high):
@@ -137,15 +151,20 @@ def _words(chars: str, start: int, end: int, found: list[Terminal]) -> None:
             found.append(Terminal(kind, low, high))
 
 
+def _is_symbol(chars: str, word: str, high: int, found: list[Terminal]) -> bool:
+    """Whether a word is the symbol of a quantity whose value follows: "V = 20.78 mL"."""
+    if not _SYMBOL.fullmatch(word) or not _ASSIGNS.match(chars, high):
+        return False
+    return not found or found[-1].kind in _BEFORE_SYMBOL or found[-1].measure is not None
+
+
 def _stands_alone(chars: str, low: int, high: int) -> bool:
     """Whether a hyphen has a space on at least one side: a dash, not part of a word."""
     before = chars[low - 1 : low] if low else " "
     return before.isspace() or chars[high : high + 1].isspace() or high >= len(chars)
 
 
-def _look_up(
-    words: list[tuple[str, int, int]], index: int, table: Spellings
-) -> tuple[str, int]:
+def _look_up(words: list[tuple[str, int, int]], index: int, table: Spellings) -> tuple[str, int]:
     """Terminal of the longest spelling that begins at ``index`` and the number of words it takes."""
     for first in _forms(words[index][0]):
         for rest, kind in table.get(first, ()):

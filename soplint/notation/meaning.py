@@ -9,12 +9,18 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import replace
 
-from soplint.notation.build import Condition, Part, Role
+from soplint.notation.closings import (
+    close,
+    join_equivalent,
+    same_thing,
+    stands_before,
+    without_claims,
+)
+from soplint.notation.parts import Condition, Part, Role
 from soplint.notation.phrases import (
     Claim,
     Command,
     Dose,
-    Equivalent,
     Loose,
     Material,
     Mixture,
@@ -35,7 +41,9 @@ _ROLES = {
     "OF": "of",
     "PER": "per",
 }
-_CLAIMING = ("GIVES", "FINALCONC")
+_CLAIMING = ("GIVES", "FINALCONC", "EQUIVALENT")
+# A clause with one of these commands takes nothing; "then" ends it.
+_ASIDE = ("WASH", "STORE", "FILTER", "REPEAT")
 
 
 class Meaning:
@@ -48,19 +56,23 @@ class Meaning:
         self.claiming: str | None = None
         self.adjusting = False
         self.ph_word = False
+        self.measured = False  # "checked at pH 9.18 and pH 12.45"
         self.between: list[str] = []  # roles since the last phrase
         self.reagents: list[Material] = []  # named with an adjustment before its pH
+        self.part_of = False  # "of which": the next amount is part of what stands before it
+        self.reading = False  # after a burette reading: nameless volumes are readings too
 
     def read(self) -> list[Phrase]:
         """The typed phrases of the sentence."""
         index = 0
         while index < len(self.found):
             index += self._step(index)
+        self._flush_reagents()
         self._mark_unsaid()
-        return self.phrases
+        return close(self.phrases)
 
     def _mark_unsaid(self) -> None:
-        """"make up with assay buffer": to the mark of the flask, though no mark is named."""
+        """ "make up with assay buffer": to the mark of the flask, though no mark is named."""
         if any(isinstance(phrase, ToVolume) for phrase in self.phrases):
             return
         for index, phrase in enumerate(self.phrases[:-1]):
@@ -92,6 +104,9 @@ class Meaning:
             self.phrases.append(replace(part, role=self._last_role()))
         elif isinstance(part, Loose):
             self._loose(part, index)
+        elif isinstance(part, Claim):
+            self.phrases.append(part)
+            self.reading = part.kind == "titre"
         self.between = []
         return used
 
@@ -103,24 +118,57 @@ class Meaning:
 
     def _role(self, role: Role) -> None:
         self.between.append(role.kind)
+        last = self.phrases[-1] if self.phrases else None
+        if role.kind in ("EQUIVALENT", "EACHML"):
+            self.phrases.append(Command(role.start, role.end, role.kind))
         if role.kind in _CLAIMING:
             self.claiming = role.kind
-        elif role.kind == "EQUALS" and self.phrases and isinstance(
-            self.phrases[-1], (Dose, ToVolume, Claim)
+        elif role.kind == "LPAR" and isinstance(last, (ToVolume, Command)):
+            self.claiming = role.kind  # "bring to 35 mL (0.5 M)": what comes out of it
+        elif role.kind == "RPAR" and self.claiming == "LPAR":
+            self.claiming = None
+        elif role.kind == "OFIT":
+            self._part_of(last)
+        elif role.kind == "FINAL" and isinstance(last, (Material, Dose)):
+            self._said_final(last)
+        elif (
+            role.kind == "EQUALS"
+            and self.phrases
+            and isinstance(self.phrases[-1], (Dose, ToVolume, Claim))
         ):
             self.claiming = role.kind
-        elif role.kind in ("EQUIVALENT", "EACHML"):
-            self.phrases.append(Command(role.start, role.end, role.kind))
         elif role.kind == "PHWORD":
             self.ph_word = True
         elif role.kind == "THEN":
             self.claiming = None
             self.adjusting = False
+            if self.command in _ASIDE:
+                self._command(Command(role.start, role.end, "THEN"))
         elif role.kind == "OPTIONAL":
             self.phrases.append(Command(role.start, role.end, "OPTIONAL"))
 
+    def _said_final(self, last: Material | Dose) -> None:
+        """ "EDTA 5 mM final": the strengths beside the name are those of the mixture."""
+        material = last.material if isinstance(last, Dose) else last
+        if material is None or not material.words or not material.strengths:
+            return
+        if self.between != ["FINAL"] or material.strengths[-1].start < material.start + 1:
+            return
+        moved = replace(material, strengths=(), finals=material.finals + material.strengths)
+        self.phrases[-1] = replace(last, material=moved) if isinstance(last, Dose) else moved
+
+    def _flush_reagents(self) -> None:
+        """ "Adjust with 2 N NaOH.": the pH is not said."""
+        if self.reagents:
+            first, last = self.reagents[0], self.reagents[-1]
+            self.phrases.append(SetPH(first.start, last.end, None, None, tuple(self.reagents)))
+            self.reagents = []
+
     def _command(self, command: Command) -> None:
+        if command.kind != "VERIFY":
+            self._flush_reagents()
         self.phrases.append(command)
+        self.reading = False
         self.command = command.kind
         self.claiming = None
         if command.kind == "ADJUST":
@@ -137,7 +185,9 @@ class Meaning:
             material = after[0]
             assert isinstance(material, Material) and part.volume is not None
             self.phrases.append(
-                Dose(part.start, material.end, part.volume, material, role="to", command=self.command)
+                Dose(
+                    part.start, material.end, part.volume, material, role="to", command=self.command
+                )
             )
             return 2
         poured = (
@@ -151,37 +201,90 @@ class Meaning:
             material = after[1]
             assert isinstance(material, Material)
             self.phrases.append(
-                Dose(part.start, material.end, part.volume, material, role="to", command=self.command)
+                Dose(
+                    part.start, material.end, part.volume, material, role="to", command=self.command
+                )
             )
             return 3
         diluent: Material | None = None
         last = self.phrases[-1] if self.phrases else None
+        if (
+            after
+            and isinstance(after[0], Material)
+            and (after[0].is_water or after[0].solution)
+            and self.command in ("MAKE_UP", "DILUTE", None)
+            and not isinstance(last, Material)
+        ):
+            # "make up to 500 mL water"
+            self._made_to(part, after[0])
+            return 2
         beside = not self.between or self.between == ["COMMA"]
         if isinstance(last, Material) and beside:
             if last.match is not None or last.solution or self.command in ("MAKE_UP", "ADD"):
                 diluent = last
                 self.phrases.pop()
-            elif self.command is None and not part.said_final and part.volume is not None:
+            elif self.command is None and not (part.said_final or self._filled(after)):
                 # "read to 0.02 mL": no liquid and no command to make up
-                self.phrases.append(Loose(part.start, part.end, part.volume))
-                return 1
-        self.phrases.append(replace(part, command=self.command, diluent=diluent))
-        self.adjusting = False
+                if part.volume is not None:
+                    self.phrases.append(Loose(part.start, part.end, part.volume))
+                    return 1
+        self._made_to(part, diluent)
         return 1
 
+    @staticmethod
+    def _filled(after: Sequence[Part]) -> bool:
+        """Whether "with" something follows: "ingredients up to 70 mL with water"."""
+        return (
+            len(after) == 2
+            and isinstance(after[0], Role)
+            and after[0].kind == "WITH"
+            and isinstance(after[1], Material)
+        )
+
+    def _made_to(self, part: ToVolume, diluent: Material | None) -> None:
+        """A make-up; a strength in brackets behind its water is that of the whole."""
+        strengths: tuple[Measure, ...] = ()
+        if diluent is not None:
+            diluent, strengths = without_claims(diluent)
+        self.phrases.append(replace(part, command=self.command, diluent=diluent))
+        for strength in strengths:
+            self._claim(None, strength)
+        self.adjusting = False
+
     def _pours(self, part: ToVolume, after: Sequence[Part]) -> bool:
-        """"Add 10 µL to 90 µL medium": something is added to a volume of something else."""
+        """ "Add 10 µL to 90 µL medium": something is added to a volume of something else."""
         if part.volume is None or part.said_final or self.command not in ("ADD", "POUR"):
             return False
-        added = any(isinstance(phrase, Dose) for phrase in self.phrases)
-        return added and bool(after) and isinstance(after[0], Material) and bool(after[0].words)
+        last = self.phrases[-1] if self.phrases else None
+        if not after or not isinstance(last, (Dose, Material)):
+            return False
+        into = after[0]
+        if isinstance(last, Material) and (last.is_water or not last.words):
+            return False  # "water to 500 mL"
+        known = isinstance(into, Material) and (
+            into.match is not None or into.solution or bool(into.strengths)
+        )
+        return known or (isinstance(last, Dose) and isinstance(into, Material) and bool(into.words))
 
     # --- doses -----------------------------------------------------------------------------------
 
     def _dose(self, dose: Dose) -> None:
         dose = replace(dose, role=self._last_role(), command=self.command)
         last = self.phrases[-1] if self.phrases else None
+        if self._is_reading(dose):
+            self.phrases.append(Claim(dose.start, dose.end, dose.amount, kind="titre"))
+            return
+        if dose.role == "into" and self.command == "MAKE_UP" and isinstance(last, Material):
+            if dose.material is None and dose.amount.dimension == "volume":
+                # "fill water into 580 mL"
+                self.phrases.pop()
+                self._made_to(ToVolume(dose.start, dose.end, dose.amount), last)
+                return
+        if self.part_of:
+            dose = replace(dose, material=dose.material or stands_before(self.phrases))
+            self.part_of = False
         if isinstance(last, Dose) and self.between and self.between[-1] == "OR":
+            dose = same_thing(last, dose)
             self.phrases[-1] = replace(last, alternatives=(*last.alternatives, dose), end=dose.end)
             return
         if isinstance(last, SetPH) and dose.role == "with":
@@ -189,29 +292,21 @@ class Meaning:
             self.phrases[-1] = replace(last, doses=(*last.doses, dose), reagents=reagents)
             return
         self.phrases.append(dose)
-        self._equivalent()
+        join_equivalent(self.phrases)
 
-    def _equivalent(self) -> None:
-        """Join "each mL of TITRANT is equivalent to MASS of ANALYTE" into one phrase."""
-        phrases = self.phrases
-        if len(phrases) < 3:
+    def _is_reading(self, dose: Dose) -> bool:
+        if not self.reading or dose.amount.dimension != "volume":
+            return False
+        material = dose.material
+        return material is None or not (material.match or material.strengths or material.solution)
+
+    def _part_of(self, last: Phrase | None) -> None:
+        """ "(50 mL of it ice cold)" states a part; ", of which 5 mL" takes one."""
+        if not (isinstance(last, Dose) and last.material is None and self.between == ["OFIT"]):
+            self.part_of = True
             return
-        mass, middle, left = phrases[-1], phrases[-2], phrases[-3]
-        if not (isinstance(mass, Dose) and isinstance(middle, Command)):
-            return
-        if middle.kind != "EQUIVALENT" or mass.amount.dimension not in ("mass", "amount"):
-            return
-        titrant = left.material if isinstance(left, Dose) else left
-        if not isinstance(titrant, Material):
-            return
-        volume = left.amount if isinstance(left, Dose) else None
-        first = len(phrases) - 3
-        if first and isinstance(phrases[first - 1], Command):
-            before = phrases[first - 1]
-            if isinstance(before, Command) and before.kind == "EACHML":
-                first -= 1
-        start = phrases[first].start
-        phrases[first:] = [Equivalent(start, mass.end, titrant, volume, mass)]
+        before = stands_before(self.phrases[:-1])
+        self.phrases[-1] = Claim(last.start, last.end, last.amount, before, "part")
 
     # --- materials -------------------------------------------------------------------------------
 
@@ -223,8 +318,11 @@ class Meaning:
             self._set_ph(material)
         elif material.ph is not None and not material.words and self._with_follows(index):
             self._set_ph(material)
-        elif material.ph is not None and not material.words and role == "to" and (
-            isinstance(last, Material) and last.match is not None and not last.is_water
+        elif (
+            material.ph is not None
+            and not material.words
+            and role == "to"
+            and (isinstance(last, Material) and last.match is not None and not last.is_water)
         ):
             self.phrases.pop()  # "KOH to pH 6.8"
             self.reagents = [last]
@@ -243,14 +341,16 @@ class Meaning:
         elif self.adjusting and self.reagents and self.between[-1:] == ["OR"]:
             self.reagents.append(material)
         elif isinstance(last, ToVolume) and last.diluent is None and role in ("with", "of"):
-            self.phrases[-1] = replace(last, diluent=material)
+            self.phrases.pop()
+            self._made_to(last, material)
         elif isinstance(last, ToVolume) and self.between == ["COMMA"] and material.is_water:
-            self.phrases[-1] = replace(last, diluent=material)
+            self.phrases.pop()
+            self._made_to(last, material)
         else:
             self.phrases.append(material)
 
     def _with_follows(self, index: int) -> bool:
-        """"pH 6.0 with NaOH": a list line that sets the pH."""
+        """ "pH 6.0 with NaOH": a list line that sets the pH."""
         after = self.found[index + 1 : index + 3]
         return (
             len(after) == 2
@@ -265,7 +365,11 @@ class Meaning:
         if material.words and not self.adjusting:
             return False
         if self.adjusting:
-            return not material.words or material.ph is not None and material.start == material.ph.start
+            return (
+                not material.words
+                or material.ph is not None
+                and material.start == material.ph.start
+            )
         return role == "to" and self.ph_word and not material.words and self.claiming is None
 
     def _set_ph(self, material: Material) -> None:
@@ -281,7 +385,9 @@ class Meaning:
     def _nameless(self, material: Material, role: str | None) -> None:
         if material.ph is not None and not material.strengths:
             said = self.ph_word or "IS" in self.between or "GIVES" in self.between
-            if "AT" in self.between or self.command == "CALIBRATE":
+            if "AT" in self.between:
+                self.measured = True
+            if self.measured or self.command == "CALIBRATE":
                 said = False  # "electrode checked at pH 9.18"
             elif self.command == "VERIFY":
                 said = True
@@ -323,11 +429,24 @@ class Meaning:
                 del self.phrases[len(self.phrases) - len(materials) :]
                 self.phrases.append(Mixture(start, part.end, part.measure, tuple(materials)))
                 return
+            self.phrases.append(self._ratio(part, materials[-1:], index))
+            return
         if part.measure.dimension == "temperature" and isinstance(last, SetPH):
             if last.temperature is None:
                 self.phrases[-1] = replace(last, temperature=part.measure)
                 return
         self.phrases.append(part)
+
+    def _ratio(self, part: Loose, before: list[Material], index: int) -> Claim:
+        """ "serum 1:400", "1:50 dilution of the extract": one thing in so many parts."""
+        material = before[0] if before else None
+        if material is None:
+            for after in self.found[index + 1 : index + 4]:
+                if isinstance(after, Material) and after.words:
+                    material = after
+                if not (isinstance(after, Role) or isinstance(after, Command)):
+                    break
+        return Claim(part.start, part.end, part.measure, material, "dilution")
 
     def _trailing_materials(self) -> list[Material]:
         found: list[Material] = []

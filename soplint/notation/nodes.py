@@ -30,6 +30,17 @@ class Remarks:
     molar_mass: Measure | None = None
     density: Measure | None = None
     contents: list[Material] = field(default_factory=list)
+    each: bool = False
+
+
+def is_recipe(bracket: Tree[Token]) -> bool:
+    """Whether a bracket lists doses by name: "(10 g tryptone, 5 g yeast extract per litre)"."""
+    doses = 0
+    for child in bracket.children:
+        if isinstance(child, Tree) and child.data == "dose":
+            last = child.children[-1]
+            doses += isinstance(last, Tree) and last.data == "material"
+    return doses > 1
 
 
 class Reader:
@@ -62,17 +73,18 @@ class Reader:
 
     def material(self, tree: Tree[Token]) -> Material:
         """A material with its strengths and the remarks in its brackets."""
-        words, match, solution = "", None, False
+        words, match, solution, each = "", None, False, False
         before: list[Measure] = []
         remarks = Remarks()
         for child in tree.children:
-            assert isinstance(child, Tree)
+            if isinstance(child, Token):
+                continue  # "of" between a strength and its name
             if child.data == "head":
                 words, match, solution = self._head(child)
             elif child.data == "strengths":
-                before = [m for m in (t.measure for t in self.tokens(child)) if m is not None]
+                each = self._strengths(child, before, remarks) or each
             else:
-                self._tail(child, before, remarks)
+                self._tail(child, before, remarks, unknown=match is None)
         start, end = self.bounds(tree)
         ph = next((m for m in before if m.dimension == "pH"), None) or remarks.ph
         return Material(
@@ -89,13 +101,28 @@ class Reader:
             molar_mass=remarks.molar_mass,
             density=remarks.density,
             contents=tuple(remarks.contents),
+            each=each or remarks.each,
         )
+
+    def _strengths(self, tree: Tree[Token], before: list[Measure], remarks: Remarks) -> bool:
+        """Add strengths before a name to ``before``; whether "each" was said."""
+        each = False
+        for child in tree.children:
+            if isinstance(child, Token):
+                each = True
+            elif child.data == "strengths":
+                each = self._strengths(child, before, remarks) or each
+            elif child.data == "bracket":
+                self.remarks(child, remarks)
+            else:
+                before.extend(m for m in (t.measure for t in self.tokens(child)) if m is not None)
+        return each
 
     def _head(self, tree: Tree[Token]) -> tuple[str, Match | None, bool]:
         found = list(self.tokens(tree))
         matches = [t.match for t in found if t.match is not None]
         solution = any(t.kind == "SOLUTION" for t in found)
-        words = self.chars[found[0].start : found[-1].end]
+        words = self.chars[found[0].start : found[-1].end].strip(" .,;:")
         distinct = {m.substances[0].family for m in matches if m.substances}
         match = matches[0] if len(distinct) == 1 else None
         if match is not None and self._belongs_to_longer_name(found):
@@ -112,10 +139,12 @@ class Reader:
                 return True
         return False
 
-    def _tail(self, tree: Tree[Token], before: list[Measure], remarks: Remarks) -> None:
+    def _tail(
+        self, tree: Tree[Token], before: list[Measure], remarks: Remarks, unknown: bool
+    ) -> None:
         for child in tree.children:
             if isinstance(child, Tree) and child.data == "bracket":
-                self.remarks(child, remarks)
+                self.remarks(child, remarks, unknown)
             else:
                 for terminal in self.tokens(child):
                     if terminal.kind == "MOLARMASS":
@@ -133,21 +162,28 @@ class Reader:
             if isinstance(child, Tree) and child.data == "material"
         ]
         named = [m for m in named if m.words and m.strengths]
-        return named if len(named) > 1 else []
+        return named
 
-    def remarks(self, bracket: Tree[Token], into: Remarks) -> Remarks:
+    def remarks(self, bracket: Tree[Token], into: Remarks, unknown: bool = False) -> Remarks:
         """What the bracket says, added to ``into``."""
+        if is_recipe(bracket):
+            return into
         named = self._contents(bracket)
-        if named:
+        if len(named) > 1 or (named and unknown):
             into.contents.extend(named)
             return into
         found = list(self.tokens(bracket))
         final = any(t.kind in ("FINAL", "FINALCONC") for t in found)
         solvent = False
-        for terminal in found:
+        for index, terminal in enumerate(found):
             measure = terminal.measure
             if terminal.kind == "IN":
-                solvent = True  # "(10 g/L in ethanol 96 % v/v)": what follows is the solvent's
+                # "(10 g/L in ethanol 96 % v/v)": what follows is the solvent's; "(20X in 500 mL)"
+                # says for which volume
+                after = [t.kind for t in found[index + 1 : index + 3]]
+                solvent = after[:1] != ["VOLUME"] or after[1:] not in (["COMMA"], ["RPAR"])
+            if terminal.kind == "EACH":
+                into.each = True
             if measure is None or solvent:
                 continue
             if terminal.kind in ("STRENGTH", "PERCENT", "FOLD"):

@@ -30,7 +30,10 @@ class Material:
     molar_mass: Measure | None = None
     density: Measure | None = None
     role: str | None = None  # the role word before it: "in", "with", "into", "from", "of"
-    contents: tuple[Material, ...] = ()  # named strengths in its brackets: "(0.15 M NaCl, 10 mM Tris)"
+    contents: tuple[
+        Material, ...
+    ] = ()  # named strengths in its brackets: "(0.15 M NaCl, 10 mM Tris)"
+    each: bool = False  # the strengths are those of every material that follows: "10 mM each of"
 
     @property
     def is_water(self) -> bool:
@@ -86,7 +89,20 @@ class Claim:
     end: int
     measure: Measure
     material: Material | None = None  # the thing whose strength is claimed
-    kind: str = "strength"  # strength, pH, volume, fold
+    # strength, pH, volume, fold; dilution (a ratio), share (of a whole), part ("5 mL of it"),
+    # titre (a burette reading), worked (a figure of an arithmetic), value (of a symbol)
+    kind: str = "strength"
+
+
+@dataclass(frozen=True, slots=True)
+class Assigned(Claim):
+    """The value of a symbol: "m = 0.2513 g", "c(NaOH) = 0.1 mol/L", "factor f = 1.004".
+
+    A claim that no preparation makes true; ``kind`` is "value", ``material`` what stands in the
+    brackets of the symbol.
+    """
+
+    symbol: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -139,9 +155,7 @@ class Command:
     kind: str
 
 
-Phrase = (
-    Material | Dose | ToVolume | SetPH | Claim | Equivalent | Mixture | Loose | Ware | Command
-)
+Phrase = Material | Dose | ToVolume | SetPH | Claim | Equivalent | Mixture | Loose | Ware | Command
 
 
 @dataclass(frozen=True, slots=True)

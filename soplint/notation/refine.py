@@ -10,14 +10,33 @@ import re
 from collections.abc import Sequence
 from dataclasses import replace
 
+from soplint.notation.arithmetic import arithmetic
+from soplint.notation.asides import asides
 from soplint.notation.terminals import Terminal
 
 # Words that may stand between a size and its vessel: "50 mL class A conical flask".
 _ADJECTIVES = {
     *("volumetric", "conical", "class", "a", "as", "b", "glass", "plastic", "polyethylene", "pp"),
     *("pe", "hdpe", "ldpe", "ptfe", "sterile", "clean", "dry", "graduated", "measuring", "amber"),
-    *("brown", "one-mark", "screw-cap", "screw-capped", "centrifuge", "erlenmeyer", "polypropylene"),
-    *("tall", "tall-form", "borosilicate", "wide-neck", "wide-mouth", "falcon", "stoppered", "capped"),
+    *(
+        "brown",
+        "one-mark",
+        "screw-cap",
+        "screw-capped",
+        "centrifuge",
+        "erlenmeyer",
+        "polypropylene",
+    ),
+    *(
+        "tall",
+        "tall-form",
+        "borosilicate",
+        "wide-neck",
+        "wide-mouth",
+        "falcon",
+        "stoppered",
+        "capped",
+    ),
     *("polystyrene", "quartz", "silica", "teflon", "pyrex", "duran", "schott", "griffin", "round"),
     *("bottom", "flat", "bottomed", "round-bottom", "round-bottomed", "digestion", "kjeldahl"),
     *("serum", "media", "culture", "storage", "sample", "autoclavable", "low-density", "eppendorf"),
@@ -27,8 +46,10 @@ _LINKS = {"COMMA", "AND", "OR", "SLASH", "SEMICOLON"}
 
 
 def refine(chars: str, found: list[Terminal]) -> list[Terminal]:
-    """The terminals with ware sizes and pH values recognised."""
-    found = _adjectives(chars, found)
+    """The terminals with figures of arithmetic, ware sizes and pH values recognised."""
+    if any(terminal.kind in ("TIMES", "EQUALS") for terminal in found):
+        found = _facts_unassigned(arithmetic(chars, found))
+    found = asides(chars, _parts_of_whole(chars, _nouns(chars, _adjectives(chars, found))))
     kinds = {terminal.kind for terminal in found}
     if "WARE" in kinds:
         found = _ware(chars, found)
@@ -39,12 +60,71 @@ def refine(chars: str, found: list[Terminal]) -> list[Terminal]:
     return found
 
 
-_PARTICIPLE = {"MIX", "DILUTE", "FILTER", "HEAT", "COOL", "STORE", "USE", "ADJUST", "WASH", "PREPARE"}
-_ARTICLE = re.compile(r"(?:\b(?:the|a|an|of|this|that|each|with|in|to)|[0-9][^ ]*|\d [^ ]+)\s+$", re.IGNORECASE)
+# Facts about a substance stand beside its name, with or without their symbol: "M = 58.44 g/mol".
+_FACTS = {"MOLARMASS", "DENSITY", "PH"}
+
+
+def _facts_unassigned(found: list[Terminal]) -> list[Terminal]:
+    """The terminals without the symbol and sign before a fact about a substance."""
+    drop: set[int] = set()
+    for index in range(len(found) - 2):
+        if found[index].kind == "SYMBOL" and found[index + 1].kind == "EQUALS":
+            if found[index + 2].kind in _FACTS:
+                drop.update((index, index + 1))
+    return [terminal for index, terminal in enumerate(found) if index not in drop]
+
+
+def _parts_of_whole(chars: str, found: list[Terminal]) -> list[Terminal]:
+    """ "5/6 of the final volume": a fraction of a whole is a share like 83 %."""
+    result = list(found)
+    for index in range(len(found) - 2):
+        terminal = found[index]
+        measure = terminal.measure
+        if measure is None or terminal.kind not in ("NUMBER", "VOLUMES"):
+            continue
+        if found[index + 1].kind == "OF" and found[index + 2].kind == "FINAL":
+            share = replace(measure, dimension="volumes", unit="vol")
+            result[index] = replace(terminal, kind="PERCENT", measure=share)
+    return result
+
+
+# Words that are commands at the head of a clause and things behind a name: "film mix".
+_NOUN = re.compile(r"mix|wash|spike", re.IGNORECASE)
+_NAMED = {"NAME", "OTHER", "SOLUTION", "FOLD", "STRENGTH", "PERCENT"}
+
+
+def _nouns(chars: str, found: list[Terminal]) -> list[Terminal]:
+    """ "film mix, 60 mL": what looks like a command is a thing behind a name."""
+    result = list(found)
+    for index in range(1, len(found)):
+        terminal = found[index]
+        if _NOUN.fullmatch(chars[terminal.start : terminal.end]) and terminal.measure is None:
+            before = found[index - 1]
+            beside = not chars[before.end : terminal.start].strip(" -")
+            if before.kind in _NAMED and beside:
+                result[index] = replace(terminal, kind="SOLUTION")
+    return result
+
+
+_PARTICIPLE = {
+    "MIX",
+    "DILUTE",
+    "FILTER",
+    "HEAT",
+    "COOL",
+    "STORE",
+    "USE",
+    "ADJUST",
+    "WASH",
+    "PREPARE",
+}
+_ARTICLE = re.compile(
+    r"(?:\b(?:the|a|an|of|this|that|each|with|in|to)|[0-9][^ ]*|\d [^ ]+)\s+$", re.IGNORECASE
+)
 
 
 def _adjectives(chars: str, found: list[Terminal]) -> list[Terminal]:
-    """"the mixed intermediate", "of boiled water": a participle before a noun commands nothing."""
+    """ "the mixed intermediate", "of boiled water": a participle before a noun commands nothing."""
     result = list(found)
     for index, terminal in enumerate(found[:-1]):
         if terminal.kind not in _PARTICIPLE or not chars[: terminal.end].endswith("ed"):
@@ -69,17 +149,17 @@ def _ware(chars: str, found: list[Terminal]) -> list[Terminal]:
         if before >= 0 and found[before].kind == "VOLUME":
             result[before] = replace(found[before], kind="WARE")
             before -= 1
-            while before >= 1 and found[before].kind in _LINKS and found[before - 1].kind == "VOLUME":
+            while (
+                before >= 1 and found[before].kind in _LINKS and found[before - 1].kind == "VOLUME"
+            ):
                 result[before - 1] = replace(found[before - 1], kind="WARE")
                 before -= 2
         _sizes_after(chars, found, index, result)
     return result
 
 
-def _sizes_after(
-    chars: str, found: Sequence[Terminal], index: int, result: list[Terminal]
-) -> None:
-    """"Measuring cylinders 50 mL, 100 mL and 1000 mL": sizes listed after the vessel."""
+def _sizes_after(chars: str, found: Sequence[Terminal], index: int, result: list[Terminal]) -> None:
+    """ "Measuring cylinders 50 mL, 100 mL and 1000 mL": sizes listed after the vessel."""
     at = index + 1
     while at < len(found) and (
         found[at].kind in _LINKS or found[at].kind == "OF" or _is_adjective(chars, found[at])
@@ -105,7 +185,7 @@ def _is_adjective(chars: str, terminal: Terminal) -> bool:
 
 
 def _listed_pipettes(found: list[Terminal]) -> list[Terminal]:
-    """"Pipette, 10 mL" in an equipment list names the device; "pipette 10 mL" is a command."""
+    """ "Pipette, 10 mL" in an equipment list names the device; "pipette 10 mL" is a command."""
     if len(found) >= 3 and found[0].kind == "ADD" and found[1].kind == "COMMA":
         return [replace(t, kind="WARE") if t.kind == "VOLUME" else t for t in found]
     return found
@@ -121,9 +201,17 @@ def _ph_numbers(found: list[Terminal]) -> list[Terminal]:
         elif terminal.kind == "NUMBER" and armed and terminal.measure is not None:
             measure = terminal.measure
             previous = found[index - 1].kind if index else ""
-            if previous in ("TO", "IS", "AT", "PHWORD", "OF", "EQUALS", "UPTO", "COLON", "GIVES") and (
-                _PH_LOWEST <= measure.low and measure.high <= _PH_HIGHEST
-            ):
+            if previous in (
+                "TO",
+                "IS",
+                "AT",
+                "PHWORD",
+                "OF",
+                "EQUALS",
+                "UPTO",
+                "COLON",
+                "GIVES",
+            ) and (_PH_LOWEST <= measure.low and measure.high <= _PH_HIGHEST):
                 value = replace(measure, dimension="pH", unit="pH")
                 result[index] = replace(terminal, kind="PH", measure=value)
     return result

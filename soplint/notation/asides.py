@@ -1,0 +1,77 @@
+"""Quantities that no recipe takes: package sizes, speeds of a centrifuge, counts of repeats.
+
+They are left in the sentence as words, so that they can be counted as set aside.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Sequence
+from dataclasses import replace
+
+from soplint.notation.terminals import Terminal
+
+_PACKAGES = {
+    "jar",
+    "pack",
+    "package",
+    "bag",
+    "sachet",
+    "box",
+    "bottle",
+    "tin",
+    "tub",
+    "kit",
+    "vial",
+    "ampoule",
+}
+_REPEATED = {"WASH", "MIX", "REPEAT", "FILTER", "HEAT", "COOL", "CALIBRATE"}
+_THINGS = {"NAME", "WATER", "SOLUTION", "OTHER", "OF", "LPAR"}
+_LOWEST_SPEED = 100  # x g
+# "18,000 g for 15 min", "4500 g, 20 min, 4 °C"
+_SPIN = re.compile(
+    r"\s*(?:,|for|at|/|\()?\s*(?:for\s+)?\d+(?:\s*[-–]\s*\d+)?\s*(?:min|s|sec|h|hours?|°C|C)\b",
+    re.I,
+)
+# Words that only say once more that the quantity before them is a volume: "120 mL volume".
+_VOLUME_WORDS = re.compile(r"(?:liters?|litres?|ml|vol\.?|volume|mark)(?: volume)?", re.I)
+
+
+def asides(chars: str, found: list[Terminal]) -> list[Terminal]:
+    """The terminals with such quantities turned into words."""
+    result: list[Terminal] = []
+    for index, terminal in enumerate(found):
+        if terminal.kind == "MASS" and (
+            _is_package(chars, found, index) or _is_speed(chars, terminal)
+        ):
+            terminal = replace(terminal, kind="WARE")
+        elif terminal.kind == "FOLD" and _is_repeat(found, index):
+            terminal = replace(terminal, kind="WARE")
+        elif terminal.kind == "OTHER" and result and result[-1].kind == "VOLUME":
+            if _VOLUME_WORDS.fullmatch(chars[terminal.start : terminal.end]):
+                continue
+        result.append(terminal)
+    return result
+
+
+def _is_package(chars: str, found: Sequence[Terminal], index: int) -> bool:
+    """ "250 g jar": the word behind the mass is a package."""
+    if index + 1 >= len(found) or found[index + 1].kind not in ("OTHER", "WARE"):
+        return False
+    following = chars[found[index + 1].start : found[index + 1].end].split()
+    return following[0].lower().rstrip(".,s") in _PACKAGES
+
+
+def _is_speed(chars: str, terminal: Terminal) -> bool:
+    """ "18,000 g for 15 min": so many times the acceleration of gravity."""
+    measure = terminal.measure
+    if measure is None or measure.unit != "g" or measure.nominal < _LOWEST_SPEED:
+        return False
+    return _SPIN.match(chars, terminal.end) is not None
+
+
+def _is_repeat(found: Sequence[Terminal], index: int) -> bool:
+    """ "invert 6 x": so many times."""
+    if index == 0 or found[index - 1].kind not in _REPEATED:
+        return False
+    return index + 1 >= len(found) or found[index + 1].kind not in _THINGS
