@@ -1,0 +1,194 @@
+"""Tables in which every row is a preparation of its own.
+
+"Buffer | Tris | NaCl | pH", "Level | Standard 1000 mg/L (mL) | Made up to (mL) | K (mg/L)": the
+headings name what is taken, the cells say how much.  The text of such a row is its cells followed
+by the headings that name a material, so that a strength printed in a heading has its place.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+from soplint.intake.model import Text
+from soplint.notation.cell_facts import facts
+from soplint.notation.cells import Cell, take
+from soplint.notation.columns import Column
+from soplint.notation.headings import TAKEN, Heading
+from soplint.notation.joined import join, sentence_of
+from soplint.notation.layout import Layout
+from soplint.notation.phrases import Claim, Material, Phrase, SetPH, ToVolume
+from soplint.notation.read import Reading
+from soplint.notation.recipe_rows import Builder
+from soplint.notation.row_parts import volume_of_row
+from soplint.notation.rows import Row
+from soplint.notation.shift import match_at, measure_at
+from soplint.quantities.model import Measure
+
+# More headings than this are no composition; they are not repeated in the text of every row.
+_MOST_HEADS = 24
+
+
+@dataclass(frozen=True, slots=True)
+class PreparationBuilder:
+    """Builds the rows of a table whose headings name the materials."""
+
+    found: Layout
+    reading: Reading
+    block: int
+    strict: bool
+
+    def row(self, texts: Sequence[Text], cells: Sequence[Cell]) -> Row:
+        """The row of ``cells``; ``texts`` are their texts."""
+        heads = [c for c in self.found.columns if _names_material(c.heading)][:_MOST_HEADS]
+        text, starts = join([*texts, *(c.heading.text for c in heads)])
+        places = {c.index: starts[len(texts) + at] for at, c in enumerate(heads)}
+        phrases: list[Phrase] = []
+        measures: list[Measure] = []
+        kinds: set[str] = set()
+        label = self._label(cells)
+        for column in self.found.columns:
+            cell = cells[column.index]
+            if cell.shape == "blank" or column.role in ("OTHER", "IGNORE"):
+                continue
+            part, used = self._part(column, cell, places.get(column.index))
+            phrases += part
+            measures += used
+        if any(isinstance(p, ToVolume) for p in phrases):
+            kinds.add("FINAL")
+        sentence = sentence_of(
+            text, tuple(phrases), tuple(measures), frozenset(kinds), self.block, self.strict
+        )
+        return Row(text, "note", label, (), (), sentence)
+
+    def _label(self, cells: Sequence[Cell]) -> Material | None:
+        """The name of the solution that the row prepares."""
+        column = self.found.label
+        if column is None or cells[column.index].shape not in ("words", "phrase"):
+            return None
+        cell = cells[column.index]
+        words = cell.text.chars.strip()
+        return Material(cell.start, cell.start + len(cell.text.chars), words, solution=True)
+
+    def _part(
+        self, column: Column, cell: Cell, place: int | None
+    ) -> tuple[list[Phrase], tuple[Measure, ...]]:
+        heading = column.heading
+        if any(column is group[0] for group in self.found.amounts):
+            return self._amount(column, cell, place)
+        if column in self.found.volumes:
+            volume = volume_of_row(cell, heading.unit)
+            if volume is None:
+                return [], cell.row_measures
+            diluent = _material(heading, place)
+            diluent = diluent if diluent is not None and diluent.is_water else None
+            made = ToVolume(volume.start, volume.end, volume, diluent, "MAKE_UP", said_final=True)
+            return [made], (volume,)
+        if column.role == "PH":
+            return self._ph(column, cell)
+        if column is self.found.label:
+            return self._named_strength(column, cell, place)
+        return self._strength(column, cell, place)
+
+    def _ph(self, column: Column, cell: Cell) -> tuple[list[Phrase], tuple[Measure, ...]]:
+        """The pH that the row is set to; as label of a mixture, the pH that it comes to."""
+        fact = facts(cell, "PH", column.heading.unit)
+        if fact.ph is None:
+            return [], fact.measures
+        start, end = fact.ph.start, fact.ph.end
+        if column is self.found.label and self.found.amounts:
+            return [Claim(start, end, fact.ph, kind="pH")], fact.measures
+        return [SetPH(start, end, fact.ph)], fact.measures
+
+    def _amount(
+        self, column: Column, cell: Cell, place: int | None
+    ) -> tuple[list[Phrase], tuple[Measure, ...]]:
+        taken = take(cell, column.heading.unit, self.reading)
+        material = self._taken_material(column, place)
+        phrases: list[Phrase] = list(taken.others)
+        if taken.to_volume is not None:
+            to = taken.to_volume
+            phrases.insert(0, replace(to, diluent=to.diluent or material))
+        if taken.dose is not None:
+            own = taken.dose.material
+            worded = own is not None and own.words
+            phrases.insert(0, taken.dose if worded else replace(taken.dose, material=material))
+        return phrases, taken.measures
+
+    def _taken_material(self, column: Column, place: int | None) -> Material | None:
+        """What the heading names; "96 % (mL)" under "Ethanol" is ethanol of 96 %."""
+        material = _material(column.heading, place)
+        first = self.found.columns[0]
+        if material is not None and not material.words and first.heading.match is not None:
+            match = first.heading.match
+            return replace(material, words=match.written, match=None)
+        return material
+
+    def _named_strength(
+        self, column: Column, cell: Cell, place: int | None
+    ) -> tuple[list[Phrase], tuple[Measure, ...]]:
+        """A label that is the strength wanted: "50 %" under "Ethanol"."""
+        if column.heading.match is None or cell.shape != "quantity":
+            return [], tuple(m for m in cell.row_measures if m.dimension != "number")
+        return self._strength(column, cell, place)
+
+    def _strength(
+        self, column: Column, cell: Cell, place: int | None
+    ) -> tuple[list[Phrase], tuple[Measure, ...]]:
+        fact = facts(cell, "CONC", column.heading.unit)
+        material = _material(column.heading, place)
+        phrases: list[Phrase] = []
+        for strength in fact.strengths:
+            if self.found.amounts or material is None:
+                phrases.append(Claim(strength.start, strength.end, strength, material))
+            else:
+                own = replace(material, start=strength.start, strengths=(strength,), ph=fact.ph)
+                phrases.append(own)
+        return phrases, fact.measures
+
+
+def _names_material(heading: Heading) -> bool:
+    if len(heading.text.chars) > 80:
+        return False
+    worded = bool(heading.words) and heading.role in (None, "LABEL", "STOCK")
+    return worded or heading.match is not None or bool(heading.strengths)
+
+
+def _material(heading: Heading, place: int | None) -> Material | None:
+    """The material that a heading names, counted in the text of the row."""
+    if place is None:
+        return None
+    match = match_at(heading.match, place)
+    words = heading.match.written if heading.match is not None else heading.words
+    at = (match.start, match.end) if match else (place, place + len(heading.text.chars))
+    strengths = tuple(measure_at(m, place) for m in heading.strengths)
+    ph = measure_at(heading.ph, place) if heading.ph else None
+    return Material(at[0], at[1], words, match, bool(heading.strengths), strengths, ph)
+
+
+@dataclass(frozen=True, slots=True)
+class OwnVolumeBuilder:
+    """Rows that name a reagent, its amount and the volume of the preparation it makes."""
+
+    inner: Builder
+
+    def row(self, text: Text, cells: Sequence[Cell]) -> Row:
+        """The row with its make-up volume as last phrase."""
+        row = self.inner.row(text, cells)
+        for column in self.inner.found.volumes[:1]:
+            cell = cells[column.index]
+            unit = column.heading.unit
+            if unit is not None and unit.dimension not in TAKEN:
+                unit = None
+            volume = volume_of_row(cell, unit)
+            if volume is None:
+                continue
+            made = ToVolume(volume.start, volume.end, volume, None, "MAKE_UP", said_final=True)
+            sentence = replace(
+                row.sentence,
+                phrases=(*row.sentence.phrases, made),
+                measures=tuple(sorted((*row.sentence.measures, volume), key=lambda m: m.start)),
+                kinds=row.sentence.kinds | {"FINAL"},
+            )
+            row = replace(row, sentence=sentence)
+        return row
