@@ -152,6 +152,8 @@ class Collector:
         solvent = dose.role == "in" and dose.amount.dimension == "volume"
         if dose.material is None and dose.role == "to":
             return  # "weigh to 1 mg": how exactly, not how much
+        if self._belongs_to_adjustment(dose):
+            return
         dose = self._with_material(dose, solvent)
         taken = Taken(sentence.text, dose, self.step, solvent)
         if not self.closed:
@@ -160,6 +162,17 @@ class Collector:
             self._begin_after_make_up(taken, command)
         else:
             self.pending.append(taken)
+
+    def _belongs_to_adjustment(self, dose: Dose) -> bool:
+        """"About 17 mL is needed": of the acid or base that sets the pH just before."""
+        if dose.material is not None or not self.current.adjusted or self.closed:
+            return False
+        last = self.current.adjusted[-1]
+        if self.step - last.step > 1 or dose.role not in (None, "of"):
+            return False
+        changed = replace(last.set_ph, doses=(*last.set_ph.doses, dose))
+        self.current.adjusted[-1] = replace(last, set_ph=changed)
+        return True
 
     def _with_material(self, dose: Dose, solvent: bool) -> Dose:
         """A dose without a name: of what the line's title names, or of the solution before it."""

@@ -8,7 +8,7 @@ sibling, volumes of headings pass to children.
 from __future__ import annotations
 
 import re
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, field, replace
 
 from soplint.bench.collect import Collector
@@ -16,7 +16,7 @@ from soplint.bench.preparation import Preparation, Stated, Title
 from soplint.bench.title import title_of
 from soplint.intake.model import Block
 from soplint.notation.document import ReadBlock
-from soplint.notation.phrases import Claim, Command, Dose, Loose, Mixture, Equivalent, Material, Sentence, ToVolume
+from soplint.notation.phrases import Claim, Command, Dose, Loose, Mixture, SetPH, Equivalent, Material, Sentence, ToVolume
 from soplint.notation.rows import RecipeTable, Variant
 from soplint.quantities.model import Measure
 
@@ -144,29 +144,20 @@ class _Walker:
     # --- contents --------------------------------------------------------------------------------
 
     def _text(self, read: ReadBlock) -> None:
-        opening = _opening(read)
-        if opening is not None:
-            self._alone(replace(read, sentences=read.sentences[1:]), opening)
-            return
-        labelled = [_divided(replace(read, sentences=(s,))) for s in read.sentences]
-        if len(labelled) > 1 and all(labelled):
-            for one in labelled:
-                assert one is not None
-                self._alone(*one)
-            return
-        divided = _divided(read)
-        if divided is not None:
-            self._alone(*divided)
-            return
-        alone = _one_line(read)
-        if alone is not None:
-            head = read.sentences[0]
-            titled = not _is_mass(head.phrases[0])
-            body = replace(head, phrases=head.phrases[1:]) if titled else head
-            self._alone(replace(read, sentences=(body, *read.sentences[1:])), alone)
-            return
-        for sentence in read.sentences:
-            self.collector.sentence(sentence)
+        """Sentences of a block; one that names a solution and makes it stands alone."""
+        for part in _segments(read):
+            opening = _opening(part)
+            divided = _divided(part)
+            alone = _one_line(part)
+            if opening is not None:
+                self._alone(replace(part, sentences=part.sentences[1:]), opening)
+            elif divided is not None:
+                self._alone(*divided)
+            elif alone is not None:
+                self._alone(*alone)
+            else:
+                for sentence in part.sentences:
+                    self.collector.sentence(sentence)
 
     def _alone(self, read: ReadBlock, title: Title) -> None:
         """A line that names a solution and makes it: its own preparation."""
@@ -284,12 +275,16 @@ def _carries(phrase: object) -> bool:
     )
 
 
+# Commands that a title may hold: "buffer brought to pH 2.5", "diluted acid".
+_AIMING = ("PREPARE", "MAKE_UP", "DILUTE", "ADJUST")
+
+
 def _known(phrase: object) -> bool:
     """Whether a phrase is no run of unknown words ("run in slowly from the dispenser")."""
     if isinstance(phrase, Material):
         return phrase.match is not None or not phrase.words
-    return isinstance(phrase, (Dose, Mixture, ToVolume, Loose)) or (
-        isinstance(phrase, Command) and phrase.kind in ("PREPARE", "DILUTE")
+    return isinstance(phrase, (Dose, Mixture, ToVolume, Loose, SetPH)) or (
+        isinstance(phrase, Command) and phrase.kind in _AIMING
     )
 
 
@@ -303,7 +298,7 @@ def _only_names(phrases: Sequence[object]) -> bool:
             named = named or phrase.material is not None
         elif isinstance(phrase, Material):
             named = True
-        elif isinstance(phrase, Command) and phrase.kind not in ("PREPARE", "MAKE_UP", "DILUTE"):
+        elif isinstance(phrase, Command) and phrase.kind not in _AIMING:
             return False
         elif isinstance(phrase, ToVolume) and not phrase.said_final:
             return False
@@ -337,49 +332,73 @@ def _divided(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
     return replace(read, sentences=rest), title
 
 
-def _one_line(read: ReadBlock) -> Title | None:
-    """The title of a line such as "0.2 mol/L TCEP: 57 mg in 1 mL of ...", else None."""
+def _segments(read: ReadBlock) -> Iterator[ReadBlock]:
+    """The block, cut before every later sentence that names a solution and makes it."""
+    start = 0
+    for index in range(1, len(read.sentences)):
+        single = replace(read, sentences=(read.sentences[index],))
+        if _divided(single) is not None or _one_line(single) is not None:
+            yield replace(read, sentences=read.sentences[start:index])
+            start = index
+    yield replace(read, sentences=read.sentences[start:])
+
+
+def _one_line(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
+    """A line such as "0.2 mol/L TCEP: 57 mg in 1 mL of ..." with its title, else None."""
     if not read.sentences or not read.sentences[0].phrases:
         return None
+    head = read.sentences[0]
+    first = head.phrases[0]
+    rest = replace(head, phrases=head.phrases[1:])
+    body = replace(read, sentences=(rest, *read.sentences[1:]))
+    if isinstance(first, Dose):
+        return _dose_first(read, body, first)
+    if not isinstance(first, Material) or not first.words:
+        return None
     phrases = [phrase for sentence in read.sentences for phrase in sentence.phrases]
-    first = read.sentences[0].phrases[0]
-    head = first.material if isinstance(first, Dose) else first
-    if isinstance(first, Dose) and head is None and first.amount.dimension == "volume":
-        # "- 10 L: 100 mL stock A, ...": the line is a batch size of the section's recipe
-        if first.role is None and _goes_on(read.sentences[0], first) and len(phrases) > 1:
-            return title_of(replace(read.sentences[0], phrases=(first,)), "line")
+    named = bool(first.strengths or first.bracket or first.finals or first.solution)
+    taken = any(isinstance(p, Dose) and p.amount.dimension in ("mass", "volume") for p in phrases)
+    if not (named and taken and (_makes(phrases) or read.block.kind == "item")):
         return None
-    if not isinstance(head, Material) or not head.words:
+    if _facts_only(phrases):
         return None
-    makes = any(isinstance(phrase, ToVolume) for phrase in phrases) or any(
+    title = title_of(replace(head, phrases=(first,)), "line")
+    return body, _named_by(title, first.end)
+
+
+def _dose_first(
+    read: ReadBlock, body: ReadBlock, first: Dose
+) -> tuple[ReadBlock, Title] | None:
+    """"10 L: 100 mL stock A ...", "MES 0.5 mol/L, 1 L: 97.6 g ...", "5 % milk: 2.5 g in 50 mL"."""
+    head, material = read.sentences[0], first.material
+    rest = [phrase for sentence in body.sentences for phrase in sentence.phrases]
+    titled = replace(head, phrases=(first,))
+    if first.amount.dimension == "volume" and first.role is None and _goes_on(head, first):
+        if rest and (material is None or material.start == first.start):
+            return body, _named_by(title_of(titled, "line"), first.end)
+        return None
+    if material is None or material.start != first.start or not material.words:
+        return None
+    aimed = material.finals or (material.strengths and first.amount.dimension == "mass")
+    liquids = any(isinstance(p, Dose) and p.amount.dimension == "volume" for p in rest)
+    if aimed and (_makes(rest) or liquids):
+        # the dose stays: its own strength is what it is tested against
+        name = replace(material, strengths=(), finals=(), bracket=())
+        title = title_of(replace(head, phrases=(name,)), "line")
+        return read, replace(title, words=material.words)
+    return None
+
+
+def _makes(phrases: Sequence[object]) -> bool:
+    """Whether a line says what its volume is."""
+    return any(isinstance(phrase, ToVolume) for phrase in phrases) or any(
         isinstance(phrase, Dose) and phrase.role == "in" for phrase in phrases
     )
-    taken = any(isinstance(p, Dose) and p.amount.dimension in ("mass", "volume") for p in phrases)
-    named = bool(head.strengths or head.bracket or head.finals or head.solution)
-    if isinstance(first, Dose):
-        if head.start != first.start or head.end > first.amount.start > first.end:
-            return None
-        molar = any(m.dimension == "molarity" for m in (*head.strengths, *head.finals))
-        if first.amount.dimension == "volume":
-            if not (named and _goes_on(read.sentences[0], first) and len(phrases) > 1):
-                return None
-            title = title_of(replace(read.sentences[0], phrases=(first,)), "line")
-            return _named_by(title, first.end)
-        if not (first.amount.dimension == "mass" and molar and makes):
-            return None
-    elif not (named and taken and (makes or read.block.kind == "item") and not _facts_only(phrases)):
-        return None
-    sentence = replace(read.sentences[0], phrases=(head,))
-    return _named_by(title_of(sentence, "line"), head.end)
 
 
 def _named_by(title: Title, end: int) -> Title:
     """The title with only the words up to ``end``, where its recipe begins."""
     return replace(title, words=title.text.chars[:end].strip())
-
-
-def _is_mass(phrase: object) -> bool:
-    return isinstance(phrase, Dose) and phrase.amount.dimension == "mass"
 
 
 def _goes_on(sentence: Sentence, first: Dose) -> bool:

@@ -30,7 +30,7 @@ def _solution(preparation: Preparation, order: int, facts: Facts) -> Solution | 
     return Solution(
         title.words,
         tokens(title.words),
-        (*_labels(title), *_claims(preparation)),
+        (*_labels(title), *_claims(preparation), *_aims(preparation)),
         title.fold.measure if title.fold else None,
         ph,
         tuple(_components(preparation, order, facts)),
@@ -49,6 +49,15 @@ def _claims(preparation: Preparation) -> Iterator[tuple[Measure, Material | None
     for claimed in preparation.claimed:
         if claimed.claim.kind == "strength":
             yield claimed.claim.measure, claimed.claim.material
+
+
+def _aims(preparation: Preparation) -> Iterator[tuple[Measure, Material | None]]:
+    """"5 % milk: 2.5 g in 50 mL": the strength aimed at in a line of its own."""
+    if preparation.kind == "line":
+        for taken in preparation.taken[:1]:
+            material = taken.dose.material
+            for measure in material.finals if material is not None else ():
+                yield measure, material
 
 
 def _components(preparation: Preparation, order: int, facts: Facts) -> Iterator[Component]:
