@@ -17,6 +17,7 @@ if TYPE_CHECKING:
     from soplint.substances import Substance
 
 _DATA = Path(__file__).parent / "data"
+_LONGEST = 200  # characters, above any name or formula of the tables
 _SPACES = re.compile(r"[\s_]+")
 _STRENGTH = re.compile(r"\s*,?\s*\(?(?:about )?\d[\d.,-]*\s*%.*$")
 _WATER = re.compile(
@@ -208,6 +209,9 @@ def dissociation(substance: str) -> Dissociation:
     >>> dissociation("Na2HPO4·7H2O").systems, dissociation("Na2HPO4").ions
     ((('phosphate', 1.0),), (('Na+', 2.0),))
     """
+    if not isinstance(substance, str) or len(substance) > _LONGEST:
+        shown = str(substance)[:60]
+        raise UnknownSubstanceError(f"{shown!r} is no name of a substance", shown)
     found = _by_name(substance) or _by_formula(substance) or _by_catalogue(substance)
     if found is None:
         shown = substance if len(substance) <= 80 else substance[:77] + "..."

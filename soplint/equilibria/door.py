@@ -67,8 +67,8 @@ def resolve(composition: Mapping[str, float]) -> Resolved:
     >>> resolve({"NH4Cl": 0.1}).totals
     {'ammonia': 0.1}
     """
-    if not composition:
-        raise BadAmountError("the composition is empty", "composition")
+    if not composition or not isinstance(composition, Mapping):
+        raise BadAmountError("the composition is empty or no mapping", "composition")
     totals: dict[str, float] = {}
     strong: dict[str, float] = {}
     notes: list[str] = []

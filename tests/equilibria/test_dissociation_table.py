@@ -123,6 +123,12 @@ def test_unknown_substances_are_named(name):
     assert caught.value.culprit[:20] == name[:20]
 
 
+@pytest.mark.parametrize("name", [" " * 10**6, "9" * 10**6, "(" * 10**6, "C9" * 10**5, 5, None])
+def test_hostile_names_are_refused_at_once(name):
+    with pytest.raises(UnknownSubstanceError):
+        solve({name: 0.1})
+
+
 @pytest.mark.parametrize(
     ("formula", "systems", "ions"),
     [

@@ -126,9 +126,10 @@ def test_a_bad_temperature_is_named(temperature):
 
 
 def test_an_empty_composition_and_a_bad_basis_are_named():
-    with pytest.raises(BadAmountError) as caught:
-        solve({})
-    assert caught.value.culprit == "composition"
+    for nothing in ({}, None, ["NaCl"]):
+        with pytest.raises(BadAmountError) as caught:
+            solve(nothing)
+        assert caught.value.culprit == "composition"
     with pytest.raises(BadAmountError) as caught:
         solve({"NaCl": 0.1}, basis="g/L")
     assert caught.value.culprit == "basis"
