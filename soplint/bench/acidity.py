@@ -358,7 +358,26 @@ def _called_buffer(preparation: Preparation) -> bool:
     if title is None:
         return False
     words = f"{title.words} {' '.join(m.words for m in title.materials)}".lower()
-    return "buffer" in words or any(m.match and m.match.generic for m in title.materials)
+    if any(word in words for word in ("buffer", "eluent", "mobile phase")):
+        return True
+    return any(m.match and m.match.generic for m in title.materials) or _set_by_partner(preparation)
+
+
+def _set_by_partner(preparation: Preparation) -> bool:
+    """Whether a salt is set with the acid of its own system: sodium formate with formic acid."""
+    own = {
+        s.acid_system
+        for t in preparation.taken
+        if t.dose.material is not None
+        for s in candidates(t.dose.material)
+        if s.acid_system
+    }
+    return any(
+        s.acid_system in own
+        for adjusted in preparation.adjusted
+        for reagent in adjusted.set_ph.reagents
+        for s in candidates(reagent)
+    )
 
 
 def _systems_present(preparation: Preparation, facts: Facts, order: int) -> frozenset[str] | None:

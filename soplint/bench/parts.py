@@ -117,6 +117,18 @@ def sum_relations(preparation: Preparation) -> Iterator[Relation]:
         yield _total(preparation, volume, poured, total, slack)
     elif total > volume.litres * (1 + CONTRACTION) + slack:
         yield _too_much(preparation, volume, poured, total, slack)
+    elif _complete_line(preparation) and total < volume.litres * (1 - CONTRACTION) - slack:
+        yield _too_much(preparation, volume, poured, total, slack)
+
+
+def _complete_line(preparation: Preparation) -> bool:
+    """"X, 50 mL: 5 mL of A and 45 mL of water": a line that lists all of its parts."""
+    if preparation.kind != "line" or preparation.made or preparation.adjusted:
+        return False
+    liquids = [t for t in preparation.taken if t.dose.amount.dimension == "volume"]
+    return len(liquids) == len(preparation.taken) and any(
+        t.dose.material is not None and t.dose.material.is_water and not t.solvent for t in liquids
+    )
 
 
 def _total(

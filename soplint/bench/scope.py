@@ -17,7 +17,7 @@ from soplint.bench.title import title_of
 from soplint.intake.model import Block
 from soplint.notation.document import ReadBlock
 from soplint.notation.phrases import Claim, Command, Dose, Loose, Mixture, SetPH, Equivalent, Material, Sentence, ToVolume
-from soplint.notation.rows import RecipeTable, Variant
+from soplint.notation.rows import RecipeTable, Row, Variant
 from soplint.quantities.model import Measure
 
 # Sections whose quantities describe equipment, dates or limits, not a recipe.
@@ -173,7 +173,10 @@ class _Walker:
     def _table(self, table: RecipeTable) -> None:
         if table.kind == "list":
             for row in table.rows:
-                self.collector.sentence(row.sentence)
+                if _is_preparation(row):
+                    self._row(row, table.head[0].chars if table.head else "")
+                else:
+                    self.collector.sentence(row.sentence)
             return
         if table.kind != "recipe":
             return
@@ -191,6 +194,16 @@ class _Walker:
         self.scope.tables.append((table, made))
         self.scope.preparations.extend(made)
         self._open()
+
+    def _row(self, row: Row, head: str) -> None:
+        """A row that is a preparation: "Level 2 | 5.0 mL | 100 mL | 10 mg/L"."""
+        above, parents = self._title()
+        words = f"{head} {row.text.chars.split(' | ')[0]}".strip()
+        title = Title(row.text, words, (), (), volume=above.volume if above else None, source="line")
+        collector = Collector(self.scope.reagents, self.scope.equivalents)
+        collector.open(title, parents, self.section, kind="row")
+        collector.sentence(row.sentence)
+        self.scope.preparations.extend(collector.close())
 
     @staticmethod
     def _has_head(variant: Variant) -> bool:
@@ -228,6 +241,13 @@ def inherit(chain: Sequence[Title]) -> Title:
         if title.volume is None and above.volume is not None:
             title = replace(title, volume=above.volume)
     return title
+
+
+def _is_preparation(row: Row) -> bool:
+    """Whether a row takes something and says what comes of it."""
+    phrases = row.sentence.phrases
+    taken = any(isinstance(phrase, Dose) for phrase in phrases)
+    return taken and any(isinstance(phrase, (Claim, ToVolume)) for phrase in phrases)
 
 
 def _variant_title(variant: Variant, title: Title | None) -> Title:

@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 
 from soplint.bench.preparation import Mixed, Stated, Target, Title
-from soplint.notation.phrases import Claim, Dose, Loose, Material, Mixture, Sentence, SetPH, ToVolume
+from soplint.notation.phrases import Claim, Dose, Loose, Material, Mixture, Sentence, SetPH, ToVolume, Ware
 from soplint.notation.phrases import Phrase
 from soplint.quantities.model import Measure
 
@@ -35,6 +35,8 @@ class _Title:
         self.temperature: Measure | None = None
         self.volume: Stated | None = None
         self.mixtures: list[Mixed] = []
+        self.ware: Stated | None = None
+        self.marked = False
 
     def take(self, phrase: Phrase) -> None:
         if isinstance(phrase, Material):
@@ -45,8 +47,10 @@ class _Title:
                 self.volume = self._stated(phrase.amount)
             if phrase.material is not None:
                 self._material(phrase.material)
-        elif isinstance(phrase, ToVolume) and phrase.volume is not None:
-            self.volume = self.volume or self._stated(phrase.volume)
+        elif isinstance(phrase, ToVolume):
+            self._to_volume(phrase)
+        elif isinstance(phrase, Ware):
+            self.ware = self.ware or self._stated(phrase.measure)
         elif isinstance(phrase, SetPH) and phrase.ph is not None:
             self.ph = self.ph or self._stated(phrase.ph)
             self.temperature = self.temperature or phrase.temperature
@@ -62,6 +66,12 @@ class _Title:
             self.mixtures.append(Mixed(self.sentence.text, phrase, 0))
         elif isinstance(phrase, Loose) and phrase.measure.dimension == "temperature":
             self.temperature = self.temperature or phrase.measure
+
+    def _to_volume(self, phrase: ToVolume) -> None:
+        if phrase.volume is not None:
+            self.volume = self.volume or self._stated(phrase.volume)
+        else:
+            self.marked = True  # "50 mL flasks, diluent to the mark"
 
     def _material(self, material: Material) -> None:
         if material.words and (material.match is not None or material.solution or material.strengths):
@@ -97,7 +107,7 @@ class _Title:
             self.fold,
             self.ph,
             self.temperature,
-            self.volume,
+            self.volume or (self.ware if self.marked else None),
             self.source,
             tuple(self.mixtures),
         )
