@@ -100,7 +100,7 @@ _PER_LITRE = re.compile(
     re.IGNORECASE,
 )
 _POWER_LITRE = re.compile(
-    r"(?<![\d.,] )(?<![\w.,])(?P<unit>[^\W\d_]{1,6})\s*[·*.]?\s*(?P<volume>[Ll])\s*\^?\s*(?:[-−–]1|⁻¹)"
+    r"(?<![\d.,] )(?<![\w.,])(?P<unit>[^\W\d_]{1,6})(?:\s+|\s*[·*.]\s*)(?P<volume>[Ll])\s*\^?\s*(?:[-−–]1|⁻¹)"
 )
 
 
@@ -114,9 +114,12 @@ def _per_litre(chars: str, style: NumberStyle) -> tuple[Measure | None, Measure,
         return None
     if unit is not None and unit.dimension in ("amount", "count"):
         return None  # "mmol/L" is a concentration
-    if unit is None and found.group("unit") and found.group("volume") in ("l", "L", "л"):
-        if found.group(0).find("/") >= 0:
-            return None
+    if (
+        unit is None
+        and found.group("unit")
+        and not found.group(0)[len(found.group("unit"))].isspace()
+    ):
+        return None  # "foo/L"; "Amount per litre" is one
     start, end = found.span("volume")
     return unit, Measure(start, end, "volume", 1.0, 1.0, 1.0, "L", 1.0, 1), found.group(0)
 

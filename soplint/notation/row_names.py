@@ -9,7 +9,7 @@ from soplint.notation.cells import TO_WORDS, Cell
 from soplint.notation.headings import TAKEN
 from soplint.notation.phrases import Command, Dose, Material, Phrase, SetPH, ToVolume
 from soplint.notation.read import Reading, read_sentence
-from soplint.notation.shift import measure_at, phrase_at
+from soplint.notation.shift import material_at, measure_at, phrase_at
 from soplint.quantities.model import Measure
 
 
@@ -122,6 +122,10 @@ def _complement(cell: Cell, chars: str, reading: Reading) -> Named | None:
 
 
 def _component(cell: Cell, reading: Reading) -> Named:
+    if cell.shape == "words":
+        plain = _plain_name(cell, reading)
+        if plain is not None:
+            return plain
     sentence = read_sentence(cell.text, reading, always=True)
     phrases = sentence.phrases
     measures = tuple(
@@ -141,6 +145,17 @@ def _component(cell: Cell, reading: Reading) -> Named:
     if material is not None and _ORDER.search(material.words):
         material = replace(material, words=_ORDER.sub("", material.words))
     return Named("component", material, None, dose, (), measures, sentence.kinds)
+
+
+def _plain_name(cell: Cell, reading: Reading) -> Named | None:
+    """A cell that is the name of a substance and nothing else: most of them, read without parsing."""
+    chars = cell.text.chars
+    found = reading.names.find(chars)
+    if len(found) != 1 or found[0].start or found[0].end != len(chars) or not found[0].substances:
+        return None
+    water = found[0].substances[0].name == "water"
+    material = material_at(Material(0, len(chars), chars, found[0]), cell.start)
+    return Named("component", material, kinds=frozenset({"WATER" if water else "NAME"}))
 
 
 def _material(cell: Cell, moved: tuple[Phrase, ...]) -> Material | None:
