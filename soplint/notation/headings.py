@@ -75,6 +75,10 @@ def read_heading(text: Text, reading: Reading) -> Heading:
     if unit is not None and (whole_unit or alone):
         words, role = "", None
     words = _LAST_JOINT.sub("", words)
+    if unit is not None and words:
+        pieces = _SPLIT.split(words)
+        if len(pieces) > 1 and _is_unit(pieces[-1], reading.style):
+            words = words[: words.rindex(pieces[-1])].rstrip(_EDGES)  # "Intermediate, mL"
     if _is_unit(words, reading.style):
         words = ""  # "mg in 250 mL"
     names = reading.names.find(chars) if role in (None, "LABEL", "MAKEUP") else ()

@@ -266,6 +266,8 @@ def _preparations(columns: list[Column], heads: Sequence[Column]) -> Layout:
     taken = [c for c in columns[1:] if _gives_amounts(c, heads)]
     found.amounts = [[c] for c in taken]
     found.finals = [c for c in columns[1:] if c.role in ("CONC", "FINAL", "PH") and c not in taken]
+    if columns[0].role in ("CONC", "FINAL"):
+        found.finals.insert(0, columns[0])  # "Standard, mg/L | Intermediate, mL"
     phrases = any(c.stats.phrases and c.stats.mostly(c.stats.phrases) for c in taken)
     composed = [c for c in found.finals if c.heading.match is not None]
     if taken and (found.volumes or found.finals or len(taken) >= 2 or phrases):

@@ -86,7 +86,7 @@ class PreparationBuilder:
             return [made], (volume,)
         if column.role == "PH":
             return self._ph(column, cell)
-        if column is self.found.label:
+        if column is self.found.label and column not in self.found.finals:
             return self._named_strength(column, cell, place)
         return self._strength(column, cell, place)
 
