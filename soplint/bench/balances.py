@@ -94,7 +94,9 @@ def targets_of(preparation: Preparation) -> Iterator[Target]:
         if not _claim_counts(claimed):
             continue
         if claim.kind == "strength" and claim.measure.dimension in _STRENGTHS:
-            yield Target(Stated(claimed.text, claim.measure), claim.material, "claim")
+            yield Target(
+                Stated(claimed.text, claim.measure), claim.material, "claim", claimed.fold
+            )
 
 
 # Sentences whose results come from a measurement, not from the recipe before them.
@@ -107,7 +109,9 @@ _MEASURED = re.compile(
 
 def _claim_counts(claimed: Claimed) -> bool:
     """Whether a claim speaks of the preparation as made (not of a result or another fold)."""
-    return claimed.claim.material is not None or not _MEASURED.search(claimed.text.chars)
+    if claimed.claim.material is not None or claimed.fold is not None:
+        return True
+    return not _MEASURED.search(claimed.text.chars)
 
 
 def _title_counts(preparation: Preparation) -> bool:
@@ -119,6 +123,8 @@ def _title_counts(preparation: Preparation) -> bool:
 def _finals(taken: Taken) -> Iterator[Target]:
     for measure in final_strengths(taken.dose):
         yield Target(Stated(taken.text, measure), taken.dose.material, "bracket")
+    for measure in _either(taken.dose):
+        yield Target(Stated(taken.text, measure), taken.dose.material, "maybe")
 
 
 def final_strengths(dose: Dose) -> tuple[Measure, ...]:
@@ -141,6 +147,16 @@ def final_strengths(dose: Dose) -> tuple[Measure, ...]:
     return tuple(finals)
 
 
+def _either(dose: Dose) -> tuple[Measure, ...]:
+    """Strengths behind a volume that may be the stock's or the mixture's: "50 mL acid (10 % v/v)"."""
+    material = dose.material
+    if material is None or dose.amount.dimension != "volume":
+        return ()
+    beside = [m for m in material.strengths if m.dimension in _STRENGTHS]
+    bracket = [m for m in material.bracket if m.dimension in _STRENGTHS]
+    return tuple(bracket if not beside else ())
+
+
 # --- testing --------------------------------------------------------------------------------------
 
 
@@ -152,9 +168,20 @@ def balance_relations(
     targets = list(targets_of(preparation))
     for scale in _best_scale(preparation, targets, volume, facts, order):
         for target in targets:
-            relation = _test(preparation, target, volume, facts, order, scale)
+            own = _own_scale(preparation, target, scale)
+            if own is None:
+                continue
+            relation = _test(preparation, target, volume, facts, order, own)
             if relation is not None:
                 yield relation
+
+
+def _own_scale(preparation: Preparation, target: Target, scale: float) -> float | None:
+    """The scale of a claim at another fold than the preparation's; None where that is not known."""
+    if target.fold is None or not target.fold.base:
+        return scale
+    fold = preparation.title.fold if preparation.title is not None else None
+    return fold.measure.base / target.fold.base if fold is not None else None
 
 
 def _best_scale(
@@ -202,6 +229,8 @@ def _test(
                 return _relation(preparation, candidate, ways)
             first = first or candidate
         ways, sure = ways + 1, sure and group.sure and not _many(group)
+    if target.source == "maybe":
+        return None
     return _relation(preparation, first, ways) if first is not None and sure else None
 
 
@@ -216,11 +245,14 @@ def _many(group: Bearers) -> bool:
 def _groups(
     preparation: Preparation, target: Target, facts: Facts, order: int
 ) -> Iterator[Bearers]:
-    if target.source == "bracket":
+    if target.source in ("bracket", "maybe"):
         for taken in preparation.taken:
             for dose in (taken.dose, *taken.dose.alternatives):
                 if dose.material is target.material:
-                    found = shares(replace(taken, dose=dose), target.stated.measure, facts)
+                    bare = dose
+                    if target.source == "maybe" and dose.material is not None:
+                        bare = replace(dose, material=replace(dose.material, bracket=()))
+                    found = shares(replace(taken, dose=bare), target.stated.measure, facts)
                     if found:
                         yield Bearers("substance", (tuple(found),))
                     return

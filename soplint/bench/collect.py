@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import replace
 
 from soplint.bench.preparation import (
@@ -30,11 +31,44 @@ from soplint.notation.phrases import (
     Ware,
 )
 from soplint.notation.rows import RecipeTable
+from soplint.quantities.model import Measure
 
 # A clause with one of these commands says nothing about the composition of the preparation.
 _NOISE = {"WASH", "STORE", "CALIBRATE", "FILTER", "REPEAT", "TITRATE"}
 _STARTS = {"WEIGH", "DISSOLVE", "DILUTE", "PREPARE"}
 _TWO_STAGE = 1.45  # a later make-up of up to this many times the earlier finishes the same recipe
+
+
+def _fold_of(sentence: Sentence, claim: Claim) -> Measure | None:
+    """The fold that a claim holds at: "1x is 30 mM Tris", "(1 mM at 1x)"."""
+    chars = sentence.text.chars
+    found: Measure | None = None
+    for measure in sentence.measures:
+        if measure.dimension != "fold":
+            continue
+        if measure.end <= claim.measure.start:
+            between = chars[measure.end : claim.measure.start]
+            if not _CLAUSE.search(between):
+                found = measure
+        elif _AT.match(chars[claim.measure.end : measure.start]):
+            return measure
+    return found
+
+
+_CLAUSE = re.compile(r"[;:(]|\.\s")
+_AT = re.compile(r"\W*(?:at|in|for|@)\s+(?:the\s+)?$", re.IGNORECASE)
+
+
+def _bracketed_dose(material: Material, command: str | None) -> Dose | None:
+    """"Tris base (3.03 g) was dissolved": the amount stands in brackets behind the name."""
+    amounts = [m for m in material.bracket if m.dimension in ("mass", "volume")]
+    if len(amounts) != 1 or not material.words or command in ("ADJUST", "PREPARE"):
+        return None
+    others = tuple(m for m in material.bracket if m is not amounts[0] and m.dimension != "ratio")
+    rest = replace(material, bracket=others)
+    return Dose(
+        material.start, material.end, amounts[0], rest, role=material.role, command=command
+    )
 
 
 class Collector:
@@ -55,6 +89,7 @@ class Collector:
         self.kind = "steps"
         self.closed = False
         self.step = 0
+        self.mentioned: Material | None = None  # "Dry potassium nitrate ...": weighed next
         self.pending: list[Taken] = []  # added after the make-up
         self.waiting: list[tuple[Stated, str]] = []  # flasks named after the make-up
 
@@ -66,6 +101,7 @@ class Collector:
         self.current = Preparation(title, parents, section=section, kind=kind)
         self.closed = False
         self.pending = []
+        self.mentioned = None
 
     def close(self) -> list[Preparation]:
         """End the scope; its preparations in order."""
@@ -111,7 +147,8 @@ class Collector:
         elif isinstance(phrase, SetPH):
             self.current.adjusted.append(Adjusted(text, phrase, self.step, self.closed))
         elif isinstance(phrase, Claim):
-            self.current.claimed.append(Claimed(text, phrase, self.step))
+            fold = _fold_of(sentence, phrase)
+            self.current.claimed.append(Claimed(text, phrase, self.step, fold))
         elif isinstance(phrase, Mixture):
             self.current.mixed.append(Mixed(text, phrase, self.step))
         elif isinstance(phrase, Ware):
@@ -121,7 +158,11 @@ class Collector:
         elif isinstance(phrase, Equivalent):
             self.equivalents.append((sentence, phrase))
         elif isinstance(phrase, Material):
-            if command == "PREPARE" and (phrase.strengths or phrase.ph or phrase.solution):
+            self._mention(phrase)
+            bracketed = _bracketed_dose(phrase, command)
+            if bracketed is not None:
+                self._dose(sentence, bracketed, command)
+            elif command == "PREPARE" and (phrase.strengths or phrase.ph or phrase.solution):
                 self._inline_title(sentence, phrase)
             else:
                 self.reagents.append((sentence, phrase))
@@ -163,6 +204,11 @@ class Collector:
         else:
             self.pending.append(taken)
 
+    def _mention(self, material: Material) -> None:
+        if material.match is not None and not material.is_water and not material.solution:
+            if not material.match.generic:
+                self.mentioned = material
+
     def _belongs_to_adjustment(self, dose: Dose) -> bool:
         """"About 17 mL is needed": of the acid or base that sets the pH just before."""
         if dose.material is not None or not self.current.adjusted or self.closed:
@@ -186,6 +232,11 @@ class Collector:
         if anonymous and (self.closed or self.done):
             # "pipette 1.00 mL of it": of the solution made just before
             return replace(dose, material=Material(dose.start, dose.end, "", solution=True))
+        if dose.amount.dimension == "mass" and material is None:
+            thing = self.mentioned or (named[0] if len(named) == 1 and named[0].match else None)
+            if thing is not None:
+                base = replace(thing, strengths=(), finals=(), bracket=(), ph=None, solution=False)
+                return replace(dose, material=base)
         if self.kind == "line" and len(named) == 1 and not self.closed:
             base = replace(named[0], strengths=(), finals=(), bracket=(), ph=None, solution=False)
             if material is not None:

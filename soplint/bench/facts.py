@@ -85,10 +85,11 @@ class Facts:
         """
         wanted = tokens(material.words)
         named = [s for s in self.solutions if s.order != order and _fits(s, material, wanted)]
+        said = _KINDS & set(_TOKEN.findall(material.words.lower()))
         if wanted:
             exact = [s for s in named if s.tokens == wanted] or named
-            return tuple(sorted(exact, key=lambda s: _distance(s, order))[:1])
-        said = _KINDS & set(_TOKEN.findall(material.words.lower()))
+            alike = [s for s in exact if said & set(_TOKEN.findall(s.words.lower()))] or exact
+            return tuple(sorted(alike, key=lambda s: _distance(s, order))[:1])
         before = [s for s in named if s.order < order]
         telling = [s for s in before if said & set(_TOKEN.findall(s.words.lower()))]
         near = [s for s in before if s.section == section]

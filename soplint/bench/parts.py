@@ -201,7 +201,19 @@ def ratio_relations(preparation: Preparation) -> Iterator[Relation]:
         found = [d for d in doses if d is not None]
         if len({id(d) for d in found}) != len(found):
             continue
+        if ratio.unit in (":", "in") and not mixed.mixture.materials[-1].words:
+            parts = _nearer_convention(parts, [t.dose.amount.base for t in found])
         yield from _parts_of(preparation, Stated(mixed.text, ratio), parts, found)
+
+
+def _nearer_convention(parts: Sequence[float], amounts: Sequence[float]) -> tuple[float, ...]:
+    """1:4 as 1 + 4 or as 1 in 4: the convention that the volumes follow."""
+    one, many = parts[0], parts[-1]
+    if many <= one or amounts[-1] <= 0:
+        return tuple(parts)
+    given = amounts[0] / amounts[-1]
+    plus, within = one / many, one / (many - one)
+    return (one, many - one) if abs(given - within) < abs(given - plus) else (one, many)
 
 
 def _parts_of(
@@ -236,6 +248,15 @@ def _parts_of(
 
 
 def _dose_of(preparation: Preparation, material: Material) -> Taken | None:
+    if not material.words:
+        waters = [
+            t
+            for t in preparation.taken
+            if t.dose.amount.dimension == "volume"
+            and t.dose.material is not None
+            and (t.dose.material.is_water or t.dose.material.words.lower() == "diluent")
+        ]
+        return waters[0] if len(waters) == 1 else None
     wanted = tokens(material.words)
     found = [
         t

@@ -34,7 +34,8 @@ class Target:
 
     stated: Stated
     material: Material | None  # None: the strength of the preparation as such
-    source: str  # title, bracket, claim, document
+    source: str  # title, bracket, claim, document, maybe (only agreement counts)
+    fold: Measure | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -111,6 +112,7 @@ class Claimed:
     text: Text
     claim: Claim
     step: int
+    fold: Measure | None = None  # "1x is 30 mM Tris": the claim holds at this fold
 
 
 @dataclass(frozen=True, slots=True)

@@ -163,7 +163,7 @@ class _Walker:
         """A line that names a solution and makes it: its own preparation."""
         collector = Collector(self.scope.reagents, self.scope.equivalents)
         above, parents = self._title()
-        if title.bare and title.volume is not None and above is not None:
+        if above is not None and (title.bare and title.volume or _without_volume(read, title)):
             title = inherit([title, above])
         collector.open(title, parents, self.section, kind="line")
         for sentence in read.sentences:
@@ -241,6 +241,14 @@ def inherit(chain: Sequence[Title]) -> Title:
         if title.volume is None and above.volume is not None:
             title = replace(title, volume=above.volume)
     return title
+
+
+def _without_volume(read: ReadBlock, title: Title) -> bool:
+    """Whether a line states no volume of its own, so that the heading's counts."""
+    phrases = [phrase for sentence in read.sentences for phrase in sentence.phrases]
+    liquids = [p for p in phrases if isinstance(p, Dose) and p.amount.dimension == "volume"]
+    own = _makes(phrases) or len(liquids) > 1
+    return title.volume is None and not own and not title.bare
 
 
 def _is_preparation(row: Row) -> bool:

@@ -55,7 +55,14 @@ def bearers(
         return
     fragment = _fragment(material)
     if fragment is not None:
-        parts = tuple(tuple(s) for t in doses if (s := _of_part(t, fragment, strength, facts)))
+        parts = tuple(
+            tuple(s)
+            for t in doses
+            if (
+                s := _of_part(t, fragment, strength, facts)
+                or _part_by_label(t, fragment, strength, facts, order, preparation)
+            )
+        )
         if parts:
             yield Bearers("part", parts)
         if strength.dimension != "molarity":
@@ -66,7 +73,18 @@ def bearers(
             return
         if material.match is not None and material.match.generic and not _counts(strength):
             return
-    yield from _unnamed(doses, material, strength, facts, order, preparation)
+    unnamed = list(_unnamed(doses, material, strength, facts, order, preparation))
+    yield from unnamed
+    if material is not None and material.match is None and not unnamed:
+        yield from _any_dose(doses, strength, facts)
+
+
+def _any_dose(doses: list[Taken], strength: Measure, facts: Facts) -> Iterator[Bearers]:
+    """A name that says nothing ("acid alcohol, 1 %"): any dose may bear it, none has to."""
+    for taken in doses:
+        found = shares(taken, strength, facts)
+        if found:
+            yield Bearers("any", (tuple(found),), sure=False)
 
 
 def _fragment(material: Material | None) -> str | None:
@@ -98,6 +116,23 @@ def _of_part(taken: Taken, fragment: str, strength: Measure, facts: Facts) -> li
             changed = replace(portion, grams=portion.grams * share, reading=reading)
             found.extend(_as_shares(taken, changed, strength))
     return found
+
+
+def _part_by_label(
+    taken: Taken,
+    fragment: str,
+    strength: Measure,
+    facts: Facts,
+    order: int,
+    preparation: Preparation,
+) -> list[Share]:
+    """Diluted from a solution of this document whose label speaks of the same part."""
+    return [
+        _diluted(taken, label)
+        for solution in _shelf(taken, facts, order, preparation)
+        for label, of in solution.strengths
+        if label.dimension == strength.dimension and (of is None or _fragment(of) == fragment)
+    ][:1]
 
 
 def _counts(strength: Measure) -> bool:
@@ -257,7 +292,8 @@ def _by_label(
     dose = taken.dose
     if dose.material is None or dose.amount.dimension != "volume":
         return []
-    if any(m.dimension == strength.dimension for m in dose.material.strengths):
+    printed = (*dose.material.strengths, *dose.material.bracket)
+    if any(m.dimension == strength.dimension for m in printed):
         return shares(taken, strength, facts)
     found: list[Share] = []
     for solution in _shelf(taken, facts, order, preparation):
@@ -354,8 +390,9 @@ def _base_unit(strength: Measure) -> str:
 def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
     """What a dose brings in the unit of ``strength``, under each reasonable reading."""
     material = taken.dose.material
-    if material is None:
-        return []
+    counted = _counted(taken, strength)
+    if material is None or counted:
+        return counted
     found: list[Share] = []
     if taken.dose.amount.dimension == "volume":
         labels = [m for m in material.strengths if m.dimension == strength.dimension]
@@ -380,6 +417,15 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
     if not found and strength.dimension in ("mass-concentration", "ppm", "fraction"):
         found.extend(_by_mass(taken, strength))
     return found
+
+
+def _counted(taken: Taken, strength: Measure) -> list[Share]:
+    """An amount given in mol or in enzyme units: no molar mass is needed."""
+    amount = taken.dose.amount
+    pairs = {("amount", "molarity"), ("activity", "activity-concentration")}
+    if (amount.dimension, strength.dimension) not in pairs:
+        return []
+    return [Share(taken, amount.base, relative(amount, ALIQUOT), shown(amount), "amount")]
 
 
 def _by_mass(taken: Taken, strength: Measure) -> Iterator[Share]:

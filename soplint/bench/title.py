@@ -16,6 +16,10 @@ _STRENGTHS = {
 _NUMBER = re.compile(r"^\s*(?:\d+(?:\.\d+)*|[a-zA-Z])[.)]\s+")
 
 
+# The diluent that a ratio behind a single name leaves unsaid: "nitric acid (1 + 3)".
+WATER = Material(0, 0, "")
+
+
 def title_of(sentence: Sentence, source: str = "title") -> Title:
     """The title that a heading or lead-in sentence makes."""
     reader = _Title(sentence, source)
@@ -79,6 +83,10 @@ class _Title:
         if material.ph is not None and self.ph is None:
             self.ph = self._stated(material.ph)
         self.temperature = self.temperature or material.temperature
+        for measure in material.bracket:
+            if measure.dimension == "ratio" and len(measure.parts) == 2:
+                mixture = Mixture(material.start, material.end, measure, (material, WATER))
+                self.mixtures.append(Mixed(self.sentence.text, mixture, 0))
         for part in material.contents:
             for strength in part.strengths:
                 self._strength(strength, part)

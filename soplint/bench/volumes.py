@@ -89,7 +89,10 @@ def _sum(preparation: Preparation) -> FinalVolume | None:
 def _weak(preparation: Preparation) -> FinalVolume | None:
     """"Dissolve in 100 mL of water": used as if it were the final volume, one class milder."""
     liquids = [t for t in preparation.taken if t.dose.amount.dimension == "volume"]
-    if len(liquids) != 1 or not (liquids[0].solvent or _is_water(liquids[0].dose.material)):
+    if len(liquids) != 1:
+        return None
+    poured = liquids[0].solvent or liquids[0].dose.role == "to"
+    if not poured and not _is_water(liquids[0].dose.material):
         return None
     measure = liquids[0].dose.amount
     return FinalVolume(measure.base, relative(measure, ALIQUOT), "weak", liquids[0].stated)

@@ -9,23 +9,53 @@ from __future__ import annotations
 from dataclasses import replace
 
 from soplint.notation.parts import Condition, Part, Role, kind_of
-from soplint.notation.phrases import Dose, Loose, Material
+from soplint.notation.phrases import Dose, Loose, Material, Mixture
 
 # Terminals that may stand between a name and its amount or strength: "Bicine, 8.2 g".
 _LINKS = frozenset({"COMMA", "DASH", "COLON", "EQUALS", "SEMICOLON"})
 _LISTED = frozenset({"COMMA", "AND", "SEMICOLON"})
+_JOINED = frozenset({"PLUS", "COLON", "AND", "SLASH", "DASH"})
 _OPPOSITE = {("mass", "amount"), ("amount", "mass"), ("mass", "volume"), ("amount", "volume")}
 
 
 def join(found: list[Part]) -> list[Part]:
     """The parts of a sentence with neighbours joined."""
+    found = _numbered(found)
     found = _strength_of(found)
     found = _shift_strengths(found)
     found = _late_strengths(found)
     found = _name_first(found)
     found = _named_behind(found)
-    found = _per_volume(found)
+    found = _alternatives(_mixtures(_per_volume(found)))
     return _same_amount(_each_before(_each_behind(found)))
+
+
+def _numbered(found: list[Part]) -> list[Part]:
+    """ "100 µL of level 4", "tube 2": a small number directly behind a name belongs to it."""
+    result: list[Part] = []
+    for part in found:
+        last = result[-1] if result else None
+        material = last.material if isinstance(last, Dose) else last
+        if (
+            isinstance(part, Loose)
+            and part.measure.dimension == "number"
+            and isinstance(material, Material)
+            and material.words
+            and material.match is None
+            and part.measure.value is not None
+            and 0 <= part.measure.value < 100
+            and part.measure.places == 0
+            and 0 <= part.start - material.end <= 1
+        ):
+            named = replace(
+                material, words=f"{material.words} {part.measure.value:g}", end=part.end
+            )
+            result[-1] = (
+                replace(last, material=named, end=part.end) if isinstance(last, Dose) else named
+            )
+            continue
+        result.append(part)
+    return result
 
 
 def _strength_of(found: list[Part]) -> list[Part]:
@@ -78,8 +108,22 @@ def _late_strengths(found: list[Part]) -> list[Part]:
                 del result[target + 1 :]
                 result[target] = merged
                 continue
+            shared = _shared(result[target], part)
+            if shared is not None:
+                result[target], part = shared
         result.append(part)
     return result
+
+
+def _shared(target: Part, part: Part) -> tuple[Material, Material] | None:
+    """ "mixed stock, 100 mg/L each of Cd and Cu": the strength of the stock, name by name."""
+    if not (isinstance(part, Material) and part.each and part.strengths and part.words):
+        return None
+    if not isinstance(target, Material) or not target.words or target.strengths:
+        return None
+    stock = replace(target, strengths=part.strengths, end=part.strengths[-1].end)
+    start = part.strengths[-1].end
+    return stock, replace(part, strengths=(), each=False, start=max(part.start, start))
 
 
 def _behind_link(result: list[Part]) -> int | None:
@@ -125,7 +169,10 @@ def _with_fact(target: Part, part: Part) -> Part | None:
             end=part.end,
         )
     elif isinstance(part, Material) and not part.words and (part.strengths or part.ph):
-        if isinstance(target, Dose) and part.strengths:
+        stock = isinstance(target, Dose) and target.amount.dimension == "volume"
+        if stock and part.strengths and not material.strengths:
+            changed = replace(material, strengths=part.strengths, ph=part.ph, end=part.end)
+        elif isinstance(target, Dose) and part.strengths:
             changed = replace(material, finals=material.finals + part.strengths, end=part.end)
         else:
             changed = replace(
@@ -179,9 +226,7 @@ def _named(dose: Dose, material: Material, titled: bool) -> Dose:
     own = bool(behind is not None and behind.strengths)
     if material.strengths and (own or (titled and dose.amount.dimension in ("mass", "amount"))):
         stock = behind.strengths if behind is not None else ()
-        material = replace(
-            material, finals=material.finals + material.strengths, strengths=stock
-        )
+        material = replace(material, finals=material.finals + material.strengths, strengths=stock)
     if behind is not None:
         material = replace(
             material,
@@ -190,6 +235,74 @@ def _named(dose: Dose, material: Material, titled: bool) -> Dose:
             molar_mass=material.molar_mass or behind.molar_mass,
         )
     return replace(dose, material=material, start=material.start)
+
+
+# --- several quantities for one name ------------------------------------------------------------
+
+
+def _alternatives(found: list[Part]) -> list[Part]:
+    """ "1, 2 and 5 mL of the standard": one of them each time."""
+    result: list[Part] = []
+    for part in found:
+        if isinstance(part, Dose) and part.material is not None and part.material.words:
+            others: list[Dose] = []
+            at = len(result)
+            while at >= 2 and kind_of(result[at - 1]) in ("COMMA", "AND", "OR"):
+                before = result[at - 2]
+                if not isinstance(before, Dose) or before.material is not None or before.each:
+                    break
+                if before.amount.dimension != part.amount.dimension:
+                    break
+                others.insert(0, replace(before, material=replace(part.material, finals=())))
+                at -= 2
+            if others:
+                del result[at:]
+                start = others[0].start
+                part = replace(part, start=start, alternatives=(*others, *part.alternatives))
+        result.append(part)
+    return result
+
+
+def _mixtures(found: list[Part]) -> list[Part]:
+    """ "acetonitrile + water (60 + 40)": a ratio in brackets of all things that are joined."""
+    result: list[Part] = []
+    for part in found:
+        result.append(part)
+        _ratio_before(result)
+        if not isinstance(part, Material):
+            continue
+        ratio = next((m for m in part.bracket if m.dimension == "ratio"), None)
+        if ratio is None or len(ratio.parts) < 2:
+            continue
+        count = 2 * len(ratio.parts) - 1
+        joined = result[-count:]
+        if len(joined) < count or not all(kind_of(p) in _JOINED for p in joined[1::2]):
+            continue
+        things = [p for p in joined[::2] if isinstance(p, Material) and p.words]
+        if len(things) == len(ratio.parts):
+            rest = tuple(m for m in part.bracket if m is not ratio)
+            things[-1] = replace(things[-1], bracket=rest)
+            result[-count:] = [Mixture(things[0].start, part.end, ratio, tuple(things))]
+    return result
+
+
+def _ratio_before(result: list[Part]) -> None:
+    """ "7:3 methanol:water", "7:3 mixture of methanol and water": the ratio stands first."""
+    at = len(result) - 1
+    things: list[Material] = []
+    while at >= 1:
+        part, joint = result[at], result[at - 1]
+        if not isinstance(part, Material) or not part.words or part.strengths:
+            return
+        things.insert(0, part)
+        if isinstance(joint, Loose):
+            ratio = joint.measure
+            if ratio.dimension == "ratio" and len(ratio.parts) == len(things) > 1:
+                result[at - 1 :] = [Mixture(joint.start, things[-1].end, ratio, tuple(things))]
+            return
+        if kind_of(joint) not in _JOINED:
+            return
+        at -= 2
 
 
 # --- one quantity for several names ------------------------------------------------------------

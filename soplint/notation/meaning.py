@@ -59,7 +59,7 @@ class Meaning:
         self.measured = False  # "checked at pH 9.18 and pH 12.45"
         self.between: list[str] = []  # roles since the last phrase
         self.reagents: list[Material] = []  # named with an adjustment before its pH
-        self.part_of = False  # "of which": the next amount is part of what stands before it
+        self.bracket = 0  # depth of brackets
         self.reading = False  # after a burette reading: nameless volumes are readings too
 
     def read(self) -> list[Phrase]:
@@ -95,7 +95,7 @@ class Meaning:
         elif isinstance(part, ToVolume):
             used = self._to_volume(part, index)
         elif isinstance(part, Dose):
-            self._dose(part)
+            self._dose(part, index)
         elif isinstance(part, Material):
             self._material(part, index)
         elif isinstance(part, Condition):
@@ -104,6 +104,8 @@ class Meaning:
             self.phrases.append(replace(part, role=self._last_role()))
         elif isinstance(part, Loose):
             self._loose(part, index)
+        elif isinstance(part, Mixture):
+            self.phrases.append(part)
         elif isinstance(part, Claim):
             self.phrases.append(part)
             self.reading = part.kind == "titre"
@@ -119,6 +121,7 @@ class Meaning:
     def _role(self, role: Role) -> None:
         self.between.append(role.kind)
         last = self.phrases[-1] if self.phrases else None
+        self.bracket += (role.kind == "LPAR") - (role.kind == "RPAR")
         if role.kind in ("EQUIVALENT", "EACHML"):
             self.phrases.append(Command(role.start, role.end, role.kind))
         if role.kind in _CLAIMING:
@@ -158,11 +161,13 @@ class Meaning:
         self.phrases[-1] = replace(last, material=moved) if isinstance(last, Dose) else moved
 
     def _flush_reagents(self) -> None:
-        """ "Adjust with 2 N NaOH.": the pH is not said."""
-        if self.reagents:
+        """ "Adjust the pH with 2 N NaOH.": the value is not said."""
+        if self.reagents and self.ph_word:
             first, last = self.reagents[0], self.reagents[-1]
             self.phrases.append(SetPH(first.start, last.end, None, None, tuple(self.reagents)))
-            self.reagents = []
+        else:
+            self.phrases.extend(self.reagents)
+        self.reagents = []
 
     def _command(self, command: Command) -> None:
         if command.kind != "VERIFY":
@@ -268,7 +273,7 @@ class Meaning:
 
     # --- doses -----------------------------------------------------------------------------------
 
-    def _dose(self, dose: Dose) -> None:
+    def _dose(self, dose: Dose, index: int) -> None:
         dose = replace(dose, role=self._last_role(), command=self.command)
         last = self.phrases[-1] if self.phrases else None
         if self._is_reading(dose):
@@ -280,9 +285,9 @@ class Meaning:
                 self.phrases.pop()
                 self._made_to(ToVolume(dose.start, dose.end, dose.amount), last)
                 return
-        if self.part_of:
-            dose = replace(dose, material=dose.material or stands_before(self.phrases))
-            self.part_of = False
+        if self._leads(dose, index):
+            self._made_to(ToVolume(dose.start, dose.end, dose.amount, said_final=True), None)
+            return
         if isinstance(last, Dose) and self.between and self.between[-1] == "OR":
             dose = same_thing(last, dose)
             self.phrases[-1] = replace(last, alternatives=(*last.alternatives, dose), end=dose.end)
@@ -291,8 +296,29 @@ class Meaning:
             reagents = last.reagents + ((dose.material,) if dose.material else ())
             self.phrases[-1] = replace(last, doses=(*last.doses, dose), reagents=reagents)
             return
+        claims: tuple[Measure, ...] = ()
+        if dose.material is not None and self.phrases:
+            # "250 µL of stock + 500 µL water (30 µg/mL)": the strength is that of the mixture
+            water, claims = without_claims(dose.material)
+            dose = replace(dose, material=water)
         self.phrases.append(dose)
         join_equivalent(self.phrases)
+        for strength in claims:
+            self._claim(None, strength)
+
+    def _leads(self, dose: Dose, index: int) -> bool:
+        """ "1 L: 5 g NaCl, 10 g peptone": the volume that the recipe behind the colon is for."""
+        if dose.material is not None or dose.amount.dimension != "volume" or dose.role:
+            return False
+        first = all(isinstance(p, Command) and p.kind == "PREPARE" for p in self.phrases)
+        after = self.found[index + 1 : index + 3]
+        return (
+            first
+            and len(after) == 2
+            and isinstance(after[0], Role)
+            and after[0].kind == "COLON"
+            and isinstance(after[1], Dose)
+        )
 
     def _is_reading(self, dose: Dose) -> bool:
         if not self.reading or dose.amount.dimension != "volume":
@@ -301,12 +327,14 @@ class Meaning:
         return material is None or not (material.match or material.strengths or material.solution)
 
     def _part_of(self, last: Phrase | None) -> None:
-        """ "(50 mL of it ice cold)" states a part; ", of which 5 mL" takes one."""
+        """ "water to 55 mL (50 mL of it ice cold)" states a part; elsewhere "it" is taken."""
         if not (isinstance(last, Dose) and last.material is None and self.between == ["OFIT"]):
-            self.part_of = True
             return
-        before = stands_before(self.phrases[:-1])
-        self.phrases[-1] = Claim(last.start, last.end, last.amount, before, "part")
+        if self.bracket:
+            before = stands_before(self.phrases[:-1])
+            self.phrases[-1] = Claim(last.start, last.end, last.amount, before, "part")
+        else:
+            self.phrases[-1] = replace(last, role="of")
 
     # --- materials -------------------------------------------------------------------------------
 
@@ -328,8 +356,8 @@ class Meaning:
             self.reagents = [last]
             self._set_ph(material)
         elif not material.words:
-            self._nameless(material, role)
-        elif self.claiming and (material.strengths or material.finals):
+            self._nameless(material, role, index)
+        elif (material.strengths or material.finals) and (self.claiming or self._is_said()):
             for strength in material.strengths or material.finals:
                 self._claim(material, strength)
         elif isinstance(last, SetPH) and (
@@ -348,6 +376,13 @@ class Meaning:
             self._made_to(last, material)
         else:
             self.phrases.append(material)
+
+    def _is_said(self) -> bool:
+        """ "The bath is 0.9 mol/L sulfuric acid", "1X is 30 mM Tris, 15 mM acetate"."""
+        if self.between[-1:] == ["IS"] and self.command is None:
+            self.claiming = "IS"
+            return True
+        return False
 
     def _with_follows(self, index: int) -> bool:
         """ "pH 6.0 with NaOH": a list line that sets the pH."""
@@ -382,7 +417,7 @@ class Meaning:
         )
         self.reagents = []
 
-    def _nameless(self, material: Material, role: str | None) -> None:
+    def _nameless(self, material: Material, role: str | None, index: int) -> None:
         if material.ph is not None and not material.strengths:
             said = self.ph_word or "IS" in self.between or "GIVES" in self.between
             if "AT" in self.between:
@@ -399,15 +434,28 @@ class Meaning:
             isinstance(last, Dose) and last.material is not None and last.material.is_water
         )
         if self.claiming or mixed or (self.command == "DILUTE" and role == "to"):
+            # "the final concentration of KCl is 5 mM"
+            named = last if self.claiming == "FINALCONC" and isinstance(last, Material) else None
+            kind = "diluted" if self._at_fold(index) else None
             for strength in material.strengths:
-                self._claim(None, strength)
+                self._claim(named, strength, kind)
             return
         self.phrases.append(material)
 
-    def _claim(self, material: Material | None, strength: Measure) -> None:
+    def _at_fold(self, index: int) -> bool:
+        """ "(1 mM at 1X)": the strength after a dilution."""
+        at, fold = (*self.found[index + 1 : index + 3], None, None)[:2]
+        return (
+            isinstance(at, Role)
+            and at.kind == "AT"
+            and isinstance(fold, Material)
+            and any(m.dimension == "fold" for m in fold.strengths)
+        )
+
+    def _claim(self, material: Material | None, strength: Measure, kind: str | None = None) -> None:
         start = min(strength.start, material.start) if material else strength.start
         end = max(strength.end, material.end) if material else strength.end
-        kind = "fold" if strength.dimension == "fold" else "strength"
+        kind = kind or ("fold" if strength.dimension == "fold" else "strength")
         self.phrases.append(Claim(start, end, strength, material, kind))
 
     # --- loose quantities ----------------------------------------------------------------------------
@@ -444,7 +492,7 @@ class Meaning:
             for after in self.found[index + 1 : index + 4]:
                 if isinstance(after, Material) and after.words:
                     material = after
-                if not (isinstance(after, Role) or isinstance(after, Command)):
+                if not isinstance(after, (Role, Command)) or after.kind == "WITH":
                     break
         return Claim(part.start, part.end, part.measure, material, "dilution")
 

@@ -49,6 +49,8 @@ def refine(chars: str, found: list[Terminal]) -> list[Terminal]:
     """The terminals with figures of arithmetic, ware sizes and pH values recognised."""
     if any(terminal.kind in ("TIMES", "EQUALS") for terminal in found):
         found = _facts_unassigned(arithmetic(chars, found))
+    if sum(terminal.kind == "NUMBER" for terminal in found) > 0:
+        found = _series(found)
     found = asides(chars, _parts_of_whole(chars, _nouns(chars, _adjectives(chars, found))))
     kinds = {terminal.kind for terminal in found}
     if "WARE" in kinds:
@@ -72,6 +74,41 @@ def _facts_unassigned(found: list[Terminal]) -> list[Terminal]:
             if found[index + 2].kind in _FACTS:
                 drop.update((index, index + 1))
     return [terminal for index, terminal in enumerate(found) if index not in drop]
+
+
+_SERIES = {"MASS", "VOLUME", "STRENGTH", "PERCENT", "AMOUNT"}
+
+
+def _series(found: list[Terminal]) -> list[Terminal]:
+    """ "1, 2 and 5 mL": bare numbers in a series take the unit at its end."""
+    result = list(found)
+    for index, terminal in enumerate(found):
+        if terminal.kind not in _SERIES or terminal.measure is None:
+            continue
+        at, links = index - 1, set()
+        while (
+            at >= 1 and found[at].kind in ("COMMA", "AND", "OR") and found[at - 1].kind == "NUMBER"
+        ):
+            links.add(found[at].kind)
+            at -= 2
+        if at == index - 1 or links == {"COMMA"} and at > index - 5:
+            continue  # "in step 2, 5 mL": one number and a comma make no series
+        for other in range(at + 1, index, 2):
+            bare = result[other].measure
+            if bare is not None:
+                result[other] = replace(
+                    terminal,
+                    start=bare.start,
+                    end=bare.end,
+                    measure=replace(
+                        bare,
+                        dimension=terminal.measure.dimension,
+                        unit=terminal.measure.unit,
+                        factor=terminal.measure.factor,
+                        basis=terminal.measure.basis,
+                    ),
+                )
+    return result
 
 
 def _parts_of_whole(chars: str, found: list[Terminal]) -> list[Terminal]:
@@ -130,8 +167,9 @@ def _adjectives(chars: str, found: list[Terminal]) -> list[Terminal]:
         if terminal.kind not in _PARTICIPLE or not chars[: terminal.end].endswith("ed"):
             continue
         following = found[index + 1].kind
-        if following in ("NAME", "WATER", "SOLUTION", "OTHER") and _ARTICLE.search(
-            chars[: terminal.start]
+        opens = not chars[: terminal.start].strip()
+        if following in ("NAME", "WATER", "SOLUTION", "OTHER") and (
+            opens or _ARTICLE.search(chars[: terminal.start])
         ):
             result[index] = replace(terminal, kind="OTHER")
     return result
