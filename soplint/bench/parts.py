@@ -117,8 +117,17 @@ def sum_relations(preparation: Preparation) -> Iterator[Relation]:
         yield _total(preparation, volume, poured, total, slack)
     elif total > volume.litres * (1 + CONTRACTION) + slack:
         yield _too_much(preparation, volume, poured, total, slack)
+    elif _all_poured(preparation) and abs(total / volume.litres - 1) <= 0.01:
+        yield _total(preparation, volume, poured, total, slack + 0.01 * volume.litres)
     elif _complete_line(preparation) and total < volume.litres * (1 - CONTRACTION) - slack:
         yield _too_much(preparation, volume, poured, total, slack)
+
+
+def _all_poured(preparation: Preparation) -> bool:
+    """Whether every part is a volume and water is one of them: the sum is the volume."""
+    return not preparation.made and any(
+        t.dose.material is not None and t.dose.material.is_water for t in preparation.taken
+    ) and all(t.dose.amount.dimension == "volume" for t in preparation.taken)
 
 
 def _complete_line(preparation: Preparation) -> bool:

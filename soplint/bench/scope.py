@@ -73,7 +73,8 @@ class _Walker:
                 self._leave_lead(read)
                 self._text(read)
         self._flush()
-        self.scope.preparations = [p for p in self.scope.preparations if _holds(p)]
+        kept = [p for p in self.scope.preparations if _holds(p)]
+        self.scope.preparations = sorted(kept, key=_first_line)
         return self.scope
 
     # --- scopes --------------------------------------------------------------------------------
@@ -181,6 +182,11 @@ class _Walker:
         if table.kind != "recipe":
             return
         title, parents = self._title()
+        own = [r for r in table.rows if r.kind != "total" and _own_volume(r)]
+        if len(own) > 1:
+            for row in table.rows:
+                self._row(row, table.head[0].chars if table.head else "")
+            return
         if len(table.variants) == 1 and not self._has_head(table.variants[0]):
             self.collector.rows(table, 0)
             return
@@ -199,7 +205,13 @@ class _Walker:
         """A row that is a preparation: "Level 2 | 5.0 mL | 100 mL | 10 mg/L"."""
         above, parents = self._title()
         words = f"{head} {row.text.chars.split(' | ')[0]}".strip()
-        title = Title(row.text, words, (), (), volume=above.volume if above else None, source="line")
+        volume = above.volume if above is not None else None
+        title = Title(row.text, words, (), (), volume=volume, source="line")
+        first = row.sentence.phrases[0]
+        label = row.material or (first if isinstance(first, Material) else None)
+        if label is not None and (label.strengths or label.ph):
+            told = title_of(replace(row.sentence, phrases=(label,)), "line")
+            title = replace(told, words=label.words or words, volume=told.volume or volume)
         collector = Collector(self.scope.reagents, self.scope.equivalents)
         collector.open(title, parents, self.section, kind="row")
         collector.sentence(row.sentence)
@@ -249,6 +261,16 @@ def _without_volume(read: ReadBlock, title: Title) -> bool:
     liquids = [p for p in phrases if isinstance(p, Dose) and p.amount.dimension == "volume"]
     own = _makes(phrases) or len(liquids) > 1
     return title.volume is None and not own and not title.bare
+
+
+def _own_volume(row: Row) -> bool:
+    """Whether a row takes something and is made up to a volume by itself."""
+    taken = any(isinstance(phrase, Dose) for phrase in row.sentence.phrases)
+    made = any(
+        isinstance(phrase, ToVolume) and phrase.volume is not None
+        for phrase in row.sentence.phrases
+    )
+    return taken and made
 
 
 def _is_preparation(row: Row) -> bool:
@@ -384,7 +406,9 @@ def _one_line(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
     if not isinstance(first, Material) or not first.words:
         return None
     phrases = [phrase for sentence in read.sentences for phrase in sentence.phrases]
-    named = bool(first.strengths or first.bracket or first.finals or first.solution)
+    named = bool(first.strengths or first.finals or first.solution or first.contents) or any(
+        m.dimension not in ("mass", "volume", "amount", "ratio") for m in first.bracket
+    )
     taken = any(isinstance(p, Dose) and p.amount.dimension in ("mass", "volume") for p in phrases)
     if not (named and taken and (_makes(phrases) or read.block.kind == "item")):
         return None
@@ -456,6 +480,14 @@ def _is_recipe(phrase: object) -> bool:
 
 def _commands(phrases: Sequence[object]) -> bool:
     return any(isinstance(p, Command) and p.kind not in ("PREPARE", "MAKE_UP") for p in phrases)
+
+
+def _first_line(preparation: Preparation) -> int:
+    """Line on which a preparation begins, so that stocks come before what is made of them."""
+    texts = [item.text for item in (*preparation.taken, *preparation.made)]
+    if not texts and preparation.title is not None:
+        texts = [preparation.title.text]
+    return min((text.line for text in texts), default=0)
 
 
 def _holds(preparation: Preparation) -> bool:

@@ -65,11 +65,15 @@ def bearers(
         )
         if parts:
             yield Bearers("part", parts)
+        elif len(doses) == 1 and (found := _printed_label(doses[0], strength)):
+            yield Bearers("stock", (tuple(found),))
         if strength.dimension != "molarity":
             return
     if material is not None and (material.match is not None or tokens(material.words)):
         yield from _named(doses, material, strength, facts, order, preparation)
         if material.match is not None and not material.solution and not material.match.generic:
+            if _extra_words(material):
+                yield from _any_dose(doses, strength, facts)
             return
         if material.match is not None and material.match.generic and not _counts(strength):
             return
@@ -116,6 +120,15 @@ def _of_part(taken: Taken, fragment: str, strength: Measure, facts: Facts) -> li
             changed = replace(portion, grams=portion.grams * share, reading=reading)
             found.extend(_as_shares(taken, changed, strength))
     return found
+
+
+def _printed_label(taken: Taken, strength: Measure) -> list[Share]:
+    """ "2.5 mL of the single standard 1000 mg/L": the label of the only thing taken."""
+    material = taken.dose.material
+    if material is None or material.match is not None or taken.dose.amount.dimension != "volume":
+        return []
+    labels = [m for m in material.strengths if m.dimension == strength.dimension]
+    return [_diluted(taken, labels[0])] if len(labels) == 1 else []
 
 
 def _part_by_label(

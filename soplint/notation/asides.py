@@ -1,4 +1,5 @@
-"""Quantities that no recipe takes: package sizes, speeds of a centrifuge, counts of repeats.
+"""Quantities that no recipe takes: package sizes, fineness of devices, speeds of a centrifuge,
+counts of repeats.
 
 They are left in the sentence as words, so that they can be counted as set aside.
 """
@@ -33,6 +34,12 @@ _SPIN = re.compile(
     r"\s*(?:,|for|at|/|\()?\s*(?:for\s+)?\d+(?:\s*[-–]\s*\d+)?\s*(?:min|s|sec|h|hours?|°C|C)\b",
     re.I,
 )
+# "to the nearest 0.1 mg", "read to 0.02 mL": how fine a device reads.
+_FINENESS = re.compile(
+    r"\b(?:nearest|readability|accura(?:te|cy)|resolution|precision|divisions?|graduat(?:ed|ion)s?"
+    r"|read|rounded|tolerance|capacity|readable)(?: (?:to|of|in|within))?:? $",
+    re.I,
+)
 # Words that only say once more that the quantity before them is a volume: "120 mL volume".
 _VOLUME_WORDS = re.compile(r"(?:liters?|litres?|ml|vol\.?|volume|mark)(?: volume)?", re.I)
 
@@ -45,6 +52,10 @@ def asides(chars: str, found: list[Terminal]) -> list[Terminal]:
             _is_package(chars, found, index) or _is_speed(chars, terminal)
         ):
             terminal = replace(terminal, kind="WARE")
+        elif terminal.kind in ("MASS", "VOLUME") and _FINENESS.search(chars, 0, terminal.start):
+            terminal = replace(terminal, kind="WARE")
+        elif terminal.kind == "WARE" and _is_content(found, index):
+            terminal = replace(terminal, kind="OTHER")
         elif terminal.kind == "FOLD" and _is_repeat(found, index):
             terminal = replace(terminal, kind="WARE")
         elif terminal.kind == "OTHER" and result and result[-1].kind == "VOLUME":
@@ -60,6 +71,13 @@ def _is_package(chars: str, found: Sequence[Terminal], index: int) -> bool:
         return False
     following = chars[found[index + 1].start : found[index + 1].end].split()
     return following[0].lower().rstrip(".,s") in _PACKAGES
+
+
+def _is_content(found: Sequence[Terminal], index: int) -> bool:
+    """ "250 µL of tube 1": a vessel stands for what is in it."""
+    if found[index].measure is not None or index < 2 or found[index - 1].kind != "OF":
+        return False
+    return found[index - 2].kind in ("VOLUME", "MASS", "COUNT")
 
 
 def _is_speed(chars: str, terminal: Terminal) -> bool:

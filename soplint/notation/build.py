@@ -13,7 +13,7 @@ from lark import Token, Tree
 
 from soplint.notation.closed import closed
 from soplint.notation.joins import join
-from soplint.notation.nodes import Reader, is_recipe
+from soplint.notation.nodes import Reader, opens
 from soplint.notation.parts import Condition, Part, Role
 from soplint.notation.phrases import Command, Loose, ToVolume, Ware
 from soplint.notation.terminals import Terminal
@@ -36,12 +36,12 @@ def _part(reader: Reader, tree: Tree[Token], found: list[Part]) -> None:
         for kind in ("OF", "OFIT"):
             if _ends_in(tree, kind):
                 found.append(Role(end, end, kind))
-        _recipes(reader, tree, found)
+        _opened(reader, tree, found)
     elif tree.data == "material":
         found.append(reader.material(tree))
         if _ends_in(tree, "OF"):
             found.append(Role(end, end, "OF"))
-        _recipes(reader, tree, found)
+        _opened(reader, tree, found)
     elif tree.data in ("share", "titre", "assigned", "worked"):
         found.extend(closed(reader, tree))
     elif tree.data == "to_volume":
@@ -66,10 +66,10 @@ def _ends_in(tree: Tree[Token], kind: str) -> bool:
     return isinstance(last, Token) and last.type == kind
 
 
-def _recipes(reader: Reader, tree: Tree[Token], found: list[Part]) -> None:
-    """Open the brackets of a thing that list what it is made of."""
+def _opened(reader: Reader, tree: Tree[Token], found: list[Part]) -> None:
+    """Go on into the brackets of a thing that say more than remarks."""
     for bracket in tree.find_data("bracket"):
-        if is_recipe(bracket):
+        if opens(bracket):
             _open(reader, bracket, found)
 
 

@@ -18,7 +18,10 @@ from soplint.places import folder
 from soplint.quantities.model import Measure
 from soplint.substances.model import Match
 
-_WORD = re.compile(r"[^\W\d_](?:[\w'’]|\.(?=\w))*\.?|->|-->|=>|→|\S")
+_WORD = re.compile(
+    r"[wvmWVM]\s?/\s?[wvmWVM](?:\s?/\s?[wvmWVM])*(?![\w/])|[wvmWVM]/[wvmWVM]\b|[^\W\d_](?:[\w'’]|\.(?=\w))*(?:\([IV]+\))?\.?|->|-->|=>|→|\S"
+)
+_BASIS = re.compile(r"[wvm]\s?/", re.IGNORECASE)  # "w/v"; settled by refine
 _SEPARATORS = {
     ",": "COMMA",
     ";": "SEMICOLON",
@@ -131,7 +134,7 @@ def _words(chars: str, start: int, end: int, found: list[Terminal]) -> None:
             found.append(Terminal("SYMBOL", low, high))
             index += 1
             continue
-        separator = _SEPARATORS.get(word)
+        separator = "BASIS" if _BASIS.match(word) else _SEPARATORS.get(word)
         if separator:
             if word != "-" or _stands_alone(chars, low, high):
                 found.append(Terminal(separator, low, high))
@@ -141,7 +144,9 @@ def _words(chars: str, start: int, end: int, found: list[Terminal]) -> None:
         high = words[index + used - 1][2]
         index += used
         if kind == "SKIP":
-            continue
+            if not (used == 1 and word == "A" and low):
+                continue
+            kind = "OTHER"  # "buffer A", not the article
         if kind == "OTHER" and not word[0].isalpha():
             continue  # quotation marks, bullets and other debris
         last = found[-1] if found else None

@@ -33,9 +33,16 @@ class Remarks:
     each: bool = False
 
 
-def is_recipe(bracket: Tree[Token]) -> bool:
-    """Whether a bracket lists doses by name: "(10 g tryptone, 5 g yeast extract per litre)"."""
+def opens(bracket: Tree[Token]) -> bool:
+    """Whether a bracket is no remark about the thing before it, but goes on with the sentence.
+
+    It lists doses by name ("(10 g tryptone, 5 g yeast extract per litre)") or says with what
+    something was done ("pH 7.4 (with 2 M KOH)").
+    """
     doses = 0
+    first = next(iter(bracket.scan_values(lambda token: token.type not in ("LPAR", "RPAR"))), None)
+    if first is not None and first.type == "WITH":
+        return True
     for child in bracket.children:
         if isinstance(child, Tree) and child.data == "dose":
             last = child.children[-1]
@@ -166,14 +173,14 @@ class Reader:
 
     def remarks(self, bracket: Tree[Token], into: Remarks, unknown: bool = False) -> Remarks:
         """What the bracket says, added to ``into``."""
-        if is_recipe(bracket):
-            return into
-        named = self._contents(bracket)
-        if len(named) > 1 or (named and unknown):
-            into.contents.extend(named)
+        if opens(bracket):
             return into
         found = list(self.tokens(bracket))
         final = any(t.kind in ("FINAL", "FINALCONC") for t in found)
+        named = self._contents(bracket)
+        listed = len(named) > 1 or bool(named and unknown and not final)
+        if listed:
+            into.contents.extend(named)
         solvent = False
         for index, terminal in enumerate(found):
             measure = terminal.measure
@@ -185,6 +192,8 @@ class Reader:
             if terminal.kind == "EACH":
                 into.each = True
             if measure is None or solvent:
+                continue
+            if listed and terminal.kind in ("STRENGTH", "PERCENT", "FOLD"):
                 continue
             if terminal.kind in ("STRENGTH", "PERCENT", "FOLD"):
                 (into.finals if final else into.strengths).append(measure)

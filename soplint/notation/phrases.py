@@ -90,7 +90,7 @@ class Claim:
     measure: Measure
     material: Material | None = None  # the thing whose strength is claimed
     # strength, pH, volume, fold; dilution (a ratio), share (of a whole), part ("5 mL of it"),
-    # titre (a burette reading), worked (a figure of an arithmetic), value (of a symbol)
+    # diluted ("1 mM at 1X"), titre (a burette reading), worked (a figure of an arithmetic), value (of a symbol)
     kind: str = "strength"
 
 

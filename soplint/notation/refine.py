@@ -49,7 +49,10 @@ def refine(chars: str, found: list[Terminal]) -> list[Terminal]:
     """The terminals with figures of arithmetic, ware sizes and pH values recognised."""
     if any(terminal.kind in ("TIMES", "EQUALS") for terminal in found):
         found = _facts_unassigned(arithmetic(chars, found))
-    if sum(terminal.kind == "NUMBER" for terminal in found) > 0:
+    kinds = {terminal.kind for terminal in found}
+    if "BASIS" in kinds:
+        found = _bases(chars, found)
+    if "NUMBER" in kinds:
         found = _series(found)
     found = asides(chars, _parts_of_whole(chars, _nouns(chars, _adjectives(chars, found))))
     kinds = {terminal.kind for terminal in found}
@@ -74,6 +77,37 @@ def _facts_unassigned(found: list[Terminal]) -> list[Terminal]:
             if found[index + 2].kind in _FACTS:
                 drop.update((index, index + 1))
     return [terminal for index, terminal in enumerate(found) if index not in drop]
+
+
+def _bases(chars: str, found: list[Terminal]) -> list[Terminal]:
+    """ "10 % CHAPS w/v": a basis apart from its percentage, given back to it."""
+    result: list[Terminal] = []
+    for terminal in found:
+        if terminal.kind != "BASIS":
+            result.append(terminal)
+            continue
+        basis = chars[terminal.start : terminal.end].lower().replace(" ", "").replace("m", "w")
+        for index in range(len(result) - 1, -1, -1):
+            measure = result[index].measure
+            if result[index].kind == "COMMA":
+                break
+            if result[index].kind == "PERCENT" and measure is not None:
+                if measure.basis is None and basis in ("w/v", "v/v", "w/w", "v/w"):
+                    result[index] = replace(result[index], measure=replace(measure, basis=basis))
+                break
+    return [
+        terminal
+        for index, terminal in enumerate(result)
+        # brackets that held nothing but a basis
+        if not (
+            (terminal.kind == "LPAR" and _kind_at(result, index + 1) == "RPAR")
+            or (terminal.kind == "RPAR" and _kind_at(result, index - 1) == "LPAR")
+        )
+    ]
+
+
+def _kind_at(found: list[Terminal], index: int) -> str:
+    return found[index].kind if 0 <= index < len(found) else ""
 
 
 _SERIES = {"MASS", "VOLUME", "STRENGTH", "PERCENT", "AMOUNT"}

@@ -1,0 +1,60 @@
+"""Read a whole document: every block becomes sentences or a recipe table."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from soplint.intake import sentences
+from soplint.intake.model import Block, Document, Text
+from soplint.notation.phrases import Sentence
+from soplint.notation.read import Reading, read_sentence
+from soplint.notation.rows import RecipeTable
+from soplint.notation.tables import read_table
+from soplint.quantities import number_style
+from soplint.substances import NameIndex
+
+
+@dataclass(frozen=True, slots=True)
+class ReadBlock:
+    """A block with what was read in it."""
+
+    block: Block
+    sentences: tuple[Sentence, ...] = ()
+    table: RecipeTable | None = None
+
+
+def read_document(document: Document) -> tuple[ReadBlock, ...]:
+    """Every block of the document, read in order."""
+    reading = Reading(number_style(_texts(document)), NameIndex())
+    context: list[Text] = []
+    result: list[ReadBlock] = []
+    for index, block in enumerate(document.blocks):
+        strict = block.strict or document.strict
+        if block.table is not None:
+            table = read_table(block.table, reading, index, strict, context[-2:])
+            result.append(ReadBlock(block, tuple(row.sentence for row in table.rows), table))
+            continue
+        heading = block.kind == "heading"
+        pieces = [block.text] if heading else sentences(block.text)
+        result.append(
+            ReadBlock(
+                block,
+                tuple(
+                    read_sentence(piece, reading, index, strict, always=heading or number == 0)
+                    for number, piece in enumerate(pieces)
+                ),
+            )
+        )
+        context.append(block.text)
+    return tuple(result)
+
+
+def _texts(document: Document) -> Iterator[str]:
+    for block in document.blocks:
+        if block.table is None:
+            yield block.text.chars
+            continue
+        for row in block.table.rows:
+            for cell in row:
+                yield cell.chars
