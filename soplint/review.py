@@ -12,7 +12,10 @@ from soplint.notation.document import read_document
 from soplint.settings import Settings
 
 
-def review_bytes(data: bytes, path: str, settings: Settings = Settings()) -> Review:
+DEFAULT = Settings()
+
+
+def review_bytes(data: bytes, path: str, settings: Settings = DEFAULT) -> Review:
     """Review a procedure.
 
     Parameters: data, the file as it is; path, as given, its ending decides how it is read;
@@ -48,7 +51,9 @@ def _judge(bench: Bench, settings: Settings) -> tuple[list[Finding], list[Findin
     shown: list[Finding] = []
     withheld: list[Finding] = []
     for number, judgement in enumerate(judgements):
-        disproved = [d for d in judgement.disproved if owner.setdefault(d.stated.key, number) == number]
+        disproved = [
+            d for d in judgement.disproved if owner.setdefault(d.stated.key, number) == number
+        ]
         if judgement.disproved and not disproved:
             continue  # the same quantity is already disproved by another finding
         finding = _own(judgement, owner, number)
@@ -59,9 +64,7 @@ def _judge(bench: Bench, settings: Settings) -> tuple[list[Finding], list[Findin
     return shown, withheld
 
 
-def _own(
-    judgement: Judgement, owner: dict[tuple[int, int, int, int], int], number: int
-) -> Finding:
+def _own(judgement: Judgement, owner: dict[tuple[int, int, int, int], int], number: int) -> Finding:
     """The finding without related places that are disproved by another finding."""
 
     def free(related: Related) -> bool:

@@ -384,8 +384,8 @@ def _systems_present(preparation: Preparation, facts: Facts, order: int) -> froz
     """Buffer systems of the title and the doses; None when an unknown solution may bring more."""
     systems: set[str] = set()
     title = preparation.title
-    for material in title.materials if title else ():
-        systems.update(s.acid_system for s in candidates(material) if s.acid_system)
+    for named in title.materials if title else ():
+        systems.update(s.acid_system for s in candidates(named) if s.acid_system)
     for taken in preparation.taken:
         material = taken.dose.material
         if material is None or material.is_water:

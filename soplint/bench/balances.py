@@ -94,9 +94,7 @@ def targets_of(preparation: Preparation) -> Iterator[Target]:
         if not _claim_counts(claimed):
             continue
         if claim.kind == "strength" and claim.measure.dimension in _STRENGTHS:
-            yield Target(
-                Stated(claimed.text, claim.measure), claim.material, "claim", claimed.fold
-            )
+            yield Target(Stated(claimed.text, claim.measure), claim.material, "claim", claimed.fold)
 
 
 # Sentences whose results come from a measurement, not from the recipe before them.
@@ -160,9 +158,7 @@ def _either(dose: Dose) -> tuple[Measure, ...]:
 # --- testing --------------------------------------------------------------------------------------
 
 
-def balance_relations(
-    preparation: Preparation, facts: Facts, order: int
-) -> Iterator[Relation]:
+def balance_relations(preparation: Preparation, facts: Facts, order: int) -> Iterator[Relation]:
     """Every strength of the preparation, tested."""
     volume = preparation.volume or final_volume(preparation)
     targets = list(targets_of(preparation))
@@ -227,8 +223,11 @@ def _test(
         for candidate in _balances(preparation, target, group, volume, scale):
             if candidate.closes:
                 return _relation(preparation, candidate, ways)
-            first = first or candidate
-        ways, sure = ways + 1, sure and group.sure and not _many(group)
+            if group.how != "any":
+                first = first or candidate
+        ways += 1
+        if group.how != "any":
+            sure = sure and group.sure and not _many(group)
     if target.source == "maybe":
         return None
     return _relation(preparation, first, ways) if first is not None and sure else None
@@ -319,7 +318,9 @@ def _total_mass(preparation: Preparation) -> float | None:
     """kg of everything, where the solvent is weighed: per cent by mass refers to it."""
     amounts = [t.dose.amount for t in preparation.taken]
     weighed = any(
-        t.dose.amount.dimension == "mass" and t.dose.material is not None and t.dose.material.is_water
+        t.dose.amount.dimension == "mass"
+        and t.dose.material is not None
+        and t.dose.material.is_water
         for t in preparation.taken
     )
     if not weighed or any(a.dimension != "mass" for a in amounts):

@@ -60,15 +60,20 @@ _AT = re.compile(r"\W*(?:at|in|for|@)\s+(?:the\s+)?$", re.IGNORECASE)
 
 
 def _bracketed_dose(material: Material, command: str | None) -> Dose | None:
-    """"Tris base (3.03 g) was dissolved": the amount stands in brackets behind the name."""
+    """ "Tris base (3.03 g) was dissolved": the amount stands in brackets behind the name."""
     amounts = [m for m in material.bracket if m.dimension in ("mass", "volume")]
     if len(amounts) != 1 or not material.words or command in ("ADJUST", "PREPARE"):
         return None
     others = tuple(m for m in material.bracket if m is not amounts[0] and m.dimension != "ratio")
     rest = replace(material, bracket=others)
-    return Dose(
-        material.start, material.end, amounts[0], rest, role=material.role, command=command
-    )
+    return Dose(material.start, material.end, amounts[0], rest, role=material.role, command=command)
+
+
+def _thing_titled(named: list[Material]) -> Material | None:
+    """The one reagent that a title names; a whole acid system ("citrate") is none."""
+    if len(named) != 1 or named[0].match is None or named[0].match.generic:
+        return None
+    return named[0]
 
 
 class Collector:
@@ -168,7 +173,7 @@ class Collector:
                 self.reagents.append((sentence, phrase))
 
     def _inline_title(self, sentence: Sentence, phrase: Phrase) -> None:
-        """"To prepare 0.05 mol/L buffer from the stock, dilute ...": a title within a sentence."""
+        """ "To prepare 0.05 mol/L buffer from the stock, dilute ...": a title within a sentence."""
         title = title_of(replace(sentence, phrases=(phrase,)), "inline")
         if self.closed or self.current.taken:
             self._settle_pending()
@@ -210,7 +215,7 @@ class Collector:
                 self.mentioned = material
 
     def _belongs_to_adjustment(self, dose: Dose) -> bool:
-        """"About 17 mL is needed": of the acid or base that sets the pH just before."""
+        """ "About 17 mL is needed": of the acid or base that sets the pH just before."""
         if dose.material is not None or not self.current.adjusted or self.closed:
             return False
         last = self.current.adjusted[-1]
@@ -233,7 +238,7 @@ class Collector:
             # "pipette 1.00 mL of it": of the solution made just before
             return replace(dose, material=Material(dose.start, dose.end, "", solution=True))
         if dose.amount.dimension == "mass" and material is None:
-            thing = self.mentioned or (named[0] if len(named) == 1 and named[0].match else None)
+            thing = self.mentioned or _thing_titled(named)
             if thing is not None:
                 base = replace(thing, strengths=(), finals=(), bracket=(), ph=None, solution=False)
                 return replace(dose, material=base)
@@ -285,9 +290,7 @@ class Collector:
                 if row.kind == "total" and to.volume is not None:
                     self.current.total = Stated(row.text, to.volume)
                 else:
-                    self.current.made.append(
-                        Made(row.text, to, self.step, len(self.current.taken))
-                    )
+                    self.current.made.append(Made(row.text, to, self.step, len(self.current.taken)))
                     self.closed = True
             if dose is None and to is None:
                 for phrase in row.sentence.phrases:

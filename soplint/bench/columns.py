@@ -15,9 +15,7 @@ _GOOD = ("made-up", "mark", "total", "column", "heading")
 _LEAST = 0.02  # cells rounded to one or two figures scale this well at best
 
 
-def column_relations(
-    table: RecipeTable, preparations: Sequence[Preparation]
-) -> Iterator[Relation]:
+def column_relations(table: RecipeTable, preparations: Sequence[Preparation]) -> Iterator[Relation]:
     """Each cell against the others of its row, per litre of its column."""
     volumes = [
         p.volume.litres if p.volume is not None and p.volume.provenance in _GOOD else None

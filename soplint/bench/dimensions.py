@@ -47,7 +47,7 @@ def _of_material(sentence: Sentence, material: Material) -> Iterator[Relation]:
 
 
 def _of_dose(sentence: Sentence, dose: Dose) -> Iterator[Relation]:
-    """"Weigh 7.46 mL of potassium chloride": a solid by volume."""
+    """ "Weigh 7.46 mL of potassium chloride": a solid by volume."""
     material = dose.material
     if material is None or dose.command != "WEIGH" or dose.amount.dimension != "volume":
         return

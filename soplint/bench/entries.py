@@ -37,7 +37,6 @@ class Reading:
     """What was read of the sentences that hold a quantity."""
 
     with_quantities: int = 0
-    read: int = 0
     unread: list[tuple[int, str, Sentence]] = field(default_factory=list)
     set_aside: Counter[str] = field(default_factory=Counter)
 
@@ -45,10 +44,16 @@ class Reading:
 def enter_all(ledger: Ledger, blocks: Sequence[ReadBlock], scope: Scope) -> Reading:
     """List every quantity of a solution, recipe or titration; count what is set aside."""
     reading = Reading()
+    named = {
+        taken.stated.key
+        for preparation in scope.preparations
+        for taken in preparation.taken
+        if taken.dose.material is not None
+    }
     for index, block in enumerate(blocks):
         aside = index in scope.aside
         for sentence in block.sentences:
-            _sentence(ledger, sentence, aside, reading)
+            _sentence(ledger, sentence, aside, reading, named)
         if block.table is not None and block.table.kind != "other":
             for variant in block.table.variants:
                 for measure in (variant.volume, variant.fold, variant.ph):
@@ -57,28 +62,32 @@ def enter_all(ledger: Ledger, blocks: Sequence[ReadBlock], scope: Scope) -> Read
     return reading
 
 
-def _sentence(ledger: Ledger, sentence: Sentence, aside: bool, reading: Reading) -> None:
+def _sentence(
+    ledger: Ledger,
+    sentence: Sentence,
+    aside: bool,
+    reading: Reading,
+    named: set[tuple[int, int, int, int]],
+) -> None:
     bound = {} if aside else dict(_bound(sentence))
-    counts = False
+    loose = [] if aside else _unbound(sentence)
+    for measure in loose:
+        if Stated(sentence.text, measure).key in named:
+            bound[(measure.start, measure.end)] = (None, "given")
+    loose = [m for m in loose if (m.start, m.end) not in bound]
     for measure in sentence.measures:
         key = (measure.start, measure.end)
         if key in bound:
             of, reason = bound[key]
             ledger.enter(Stated(sentence.text, measure), of, reason)
-            counts = True
-        elif measure.dimension not in _UNIT_FREE:
+        elif measure not in loose and measure.dimension not in _UNIT_FREE:
             reading.set_aside["ware" if aside else measure.dimension] += 1
-    if counts:
-        reading.with_quantities += 1
-        if any(reason != "unread" for _, reason in bound.values()):
-            reading.read += 1
-    loose = [] if aside else _unbound(sentence)
-    if loose and not counts:
-        reading.with_quantities += 1
-        line = sentence.text.place(loose[0].start)[0]
-        reading.unread.append((line, sentence.text.chars.strip(), sentence))
     for measure in loose:
         ledger.enter(Stated(sentence.text, measure), None, "not-recomputable")
+    reading.with_quantities += bool(bound or loose)
+    if loose and not bound:
+        line = sentence.text.place(loose[0].start)[0]
+        reading.unread.append((line, sentence.text.chars.strip(), sentence))
 
 
 def _bound(sentence: Sentence) -> Iterator[tuple[tuple[int, int], tuple[str | None, str]]]:

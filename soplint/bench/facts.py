@@ -62,7 +62,9 @@ class Facts:
         for other in self.listed:
             if same_substance(material, other):
                 found.extend(
-                    m for m in other.strengths if m.dimension in ("molarity", "fraction", "mass-concentration")
+                    m
+                    for m in other.strengths
+                    if m.dimension in ("molarity", "fraction", "mass-concentration")
                 )
         distinct = {(m.dimension, round(m.base, 9)) for m in found}
         return found[0] if len(distinct) == 1 else None

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
-
 from soplint.bench.numbers import shown
 from soplint.bench.preparation import Stated
 from soplint.bench.relation import Relation

@@ -63,7 +63,11 @@ class Ledger:
             line.of = of
 
     def agree(
-        self, stated: Stated, computed: Interval | None, working: str | None, rule: str | None = None
+        self,
+        stated: Stated,
+        computed: Interval | None,
+        working: str | None,
+        rule: str | None = None,
     ) -> None:
         """The quantity agrees; a disagreement that another relation found is kept."""
         line = self._line(stated)
@@ -117,4 +121,3 @@ def interval(measure: Measure) -> Interval:
     """A stated quantity as an interval of the record."""
     unit = measure.unit or ("ratio" if measure.parts else "1")
     return Interval(measure.value, unit, measure.low, measure.high)
-

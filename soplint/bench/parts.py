@@ -32,9 +32,7 @@ def fold_relations(preparation: Preparation, facts: Facts, order: int) -> Iterat
         yield _fold(preparation, taken, stock, aim, volume)
 
 
-def _stock_fold(
-    taken: Taken, facts: Facts, order: int, preparation: Preparation
-) -> Measure | None:
+def _stock_fold(taken: Taken, facts: Facts, order: int, preparation: Preparation) -> Measure | None:
     material = taken.dose.material
     if material is None:
         return None
@@ -125,13 +123,15 @@ def sum_relations(preparation: Preparation) -> Iterator[Relation]:
 
 def _all_poured(preparation: Preparation) -> bool:
     """Whether every part is a volume and water is one of them: the sum is the volume."""
-    return not preparation.made and any(
-        t.dose.material is not None and t.dose.material.is_water for t in preparation.taken
-    ) and all(t.dose.amount.dimension == "volume" for t in preparation.taken)
+    return (
+        not preparation.made
+        and any(t.dose.material is not None and t.dose.material.is_water for t in preparation.taken)
+        and all(t.dose.amount.dimension == "volume" for t in preparation.taken)
+    )
 
 
 def _complete_line(preparation: Preparation) -> bool:
-    """"X, 50 mL: 5 mL of A and 45 mL of water": a line that lists all of its parts."""
+    """ "X, 50 mL: 5 mL of A and 45 mL of water": a line that lists all of its parts."""
     if preparation.kind != "line" or preparation.made or preparation.adjusted:
         return False
     liquids = [t for t in preparation.taken if t.dose.amount.dimension == "volume"]
@@ -239,7 +239,9 @@ def _parts_of(
         deviation = measure.nominal / value - 1 if value else 0.0
         spread = relative(measure, ALIQUOT) + EXACT
         scale = amount / part if part else 0.0
-        alike = all(isclose(a / p, scale, rel_tol=0.01) for a, p in zip(amounts, parts, strict=True) if p)
+        alike = all(
+            isclose(a / p, scale, rel_tol=0.01) for a, p in zip(amounts, parts, strict=True) if p
+        )
         yield Relation(
             "ratio",
             dose.stated,

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from soplint.bench.preparation import Preparation, Stated
+from soplint.bench.preparation import Stated
 from soplint.intake.model import Text
 from soplint.notation.phrases import Command, Dose, Loose, Material, Phrase, Sentence, ToVolume
 from soplint.substances.model import Substance
@@ -56,8 +56,14 @@ def strong_acid(material: Material | None) -> tuple[Substance, float] | None:
     ]
     if percents:
         percent = max(percents)
-    elif any(m.dimension in ("molarity", "normality") for m in (*material.strengths, *material.bracket)):
-        molar = max(m.base for m in (*material.strengths, *material.bracket) if m.dimension in ("molarity", "normality"))
+    elif any(
+        m.dimension in ("molarity", "normality") for m in (*material.strengths, *material.bracket)
+    ):
+        molar = max(
+            m.base
+            for m in (*material.strengths, *material.bracket)
+            if m.dimension in ("molarity", "normality")
+        )
         percent = _percent(substance, molar)
     elif "dilute" in material.words.lower() or not _concentrated(material, substance):
         return None
@@ -139,7 +145,7 @@ _VESSEL_VERBS = ("place", "put", "measure", "take", "fill", "charge")
 
 
 def _new_vessel(sentence: Sentence, phrase: Phrase) -> bool:
-    """"Place 60 mL of water in the receiver": the water is there before anything else."""
+    """ "Place 60 mL of water in the receiver": the water is there before anything else."""
     verbs = [p for p in sentence.phrases if isinstance(p, Command) and p.end <= phrase.start]
     if not verbs:
         return False
@@ -170,4 +176,3 @@ def _make_up(sentence: Sentence, phrase: ToVolume, vessel: _Vessel) -> Iterator[
         diluted = phrase.command == "DILUTE"
         yield Pouring(*vessel.acid, sentence.text, phrase.start, phrase.end, False, diluted)
     vessel.acid, vessel.wet = None, False
-

@@ -16,7 +16,18 @@ from soplint.bench.preparation import Preparation, Stated, Title
 from soplint.bench.title import title_of
 from soplint.intake.model import Block
 from soplint.notation.document import ReadBlock
-from soplint.notation.phrases import Claim, Command, Dose, Loose, Mixture, SetPH, Equivalent, Material, Sentence, ToVolume
+from soplint.notation.phrases import (
+    Claim,
+    Command,
+    Dose,
+    Equivalent,
+    Loose,
+    Material,
+    Mixture,
+    Sentence,
+    SetPH,
+    ToVolume,
+)
 from soplint.notation.rows import RecipeTable, Row, Variant
 from soplint.quantities.model import Measure
 
@@ -232,7 +243,9 @@ def _cover(blocks: Sequence[ReadBlock]) -> Block | None:
     return first if below or _DOCUMENT.search(first.text.chars) else None
 
 
-_DOCUMENT = re.compile(r"\b[A-Z]{2,5}-(?:[A-Z]{2,5}-)?\d{2,5}\b|\bprocedure\b|\bSOP\b", re.IGNORECASE)
+_DOCUMENT = re.compile(
+    r"\b[A-Z]{2,5}-(?:[A-Z]{2,5}-)?\d{2,5}\b|\bprocedure\b|\bSOP\b", re.IGNORECASE
+)
 
 
 def inherit(chain: Sequence[Title]) -> Title:
@@ -359,7 +372,7 @@ _COLON = re.compile(r":(?=\s)|\s[-–—]\s")
 
 
 def _divided(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
-    """"25 mmol/L MES with 0.1 mol/L NaCl, 1 L: 250 mL of ...": title and body at the first colon."""
+    """ "25 mmol/L MES with 0.1 mol/L NaCl, 1 L: 250 mL of ...": title and body at the first colon."""
     if not read.sentences:
         return None
     first = read.sentences[0]
@@ -418,10 +431,8 @@ def _one_line(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
     return body, _named_by(title, first.end)
 
 
-def _dose_first(
-    read: ReadBlock, body: ReadBlock, first: Dose
-) -> tuple[ReadBlock, Title] | None:
-    """"10 L: 100 mL stock A ...", "MES 0.5 mol/L, 1 L: 97.6 g ...", "5 % milk: 2.5 g in 50 mL"."""
+def _dose_first(read: ReadBlock, body: ReadBlock, first: Dose) -> tuple[ReadBlock, Title] | None:
+    """ "10 L: 100 mL stock A ...", "MES 0.5 mol/L, 1 L: 97.6 g ...", "5 % milk: 2.5 g in 50 mL"."""
     head, material = read.sentences[0], first.material
     rest = [phrase for sentence in body.sentences for phrase in sentence.phrases]
     titled = replace(head, phrases=(first,))
@@ -484,7 +495,8 @@ def _commands(phrases: Sequence[object]) -> bool:
 
 def _first_line(preparation: Preparation) -> int:
     """Line on which a preparation begins, so that stocks come before what is made of them."""
-    texts = [item.text for item in (*preparation.taken, *preparation.made)]
+    texts = [taken.text for taken in preparation.taken]
+    texts += [made.text for made in preparation.made]
     if not texts and preparation.title is not None:
         texts = [preparation.title.text]
     return min((text.line for text in texts), default=0)

@@ -45,14 +45,14 @@ def _labels(title: Title) -> Iterator[tuple[Measure, Material | None]]:
 
 
 def _claims(preparation: Preparation) -> Iterator[tuple[Measure, Material | None]]:
-    """"S2: 100 µL of S1 + 100 µL water = 0.5 mg/mL": the claim is the label."""
+    """ "S2: 100 µL of S1 + 100 µL water = 0.5 mg/mL": the claim is the label."""
     for claimed in preparation.claimed:
         if claimed.claim.kind == "strength":
             yield claimed.claim.measure, claimed.claim.material
 
 
 def _aims(preparation: Preparation) -> Iterator[tuple[Measure, Material | None]]:
-    """"5 % milk: 2.5 g in 50 mL": the strength aimed at in a line of its own."""
+    """ "5 % milk: 2.5 g in 50 mL": the strength aimed at in a line of its own."""
     if preparation.kind == "line":
         for taken in preparation.taken[:1]:
             material = taken.dose.material

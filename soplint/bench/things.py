@@ -104,7 +104,7 @@ def _of_part(taken: Taken, fragment: str, strength: Measure, facts: Facts) -> li
     poured = taken.dose.amount.dimension == "volume"
     if material is not None and poured and _fragment(material) == fragment:
         return shares(taken, strength, facts)  # diluted from a stock of the same part
-    found = []
+    found: list[Share] = []
     for portion in portions(taken, facts):
         if portion.substance is None or portion.moles is None or portion.grams is None:
             continue
@@ -420,8 +420,13 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
                 amount = taken.dose.amount
                 found.append(
                     Share(
-                        taken, amount.base, relative(amount, ALIQUOT), shown(amount), "neat",
-                        "v/v of the concentrate", False,
+                        taken,
+                        amount.base,
+                        relative(amount, ALIQUOT),
+                        shown(amount),
+                        "neat",
+                        "v/v of the concentrate",
+                        False,
                     )  # fmt: skip
                 )
     if not found:

@@ -5,8 +5,18 @@ from __future__ import annotations
 import re
 
 from soplint.bench.preparation import Mixed, Stated, Target, Title
-from soplint.notation.phrases import Claim, Dose, Loose, Material, Mixture, Sentence, SetPH, ToVolume, Ware
-from soplint.notation.phrases import Phrase
+from soplint.notation.phrases import (
+    Claim,
+    Dose,
+    Loose,
+    Material,
+    Mixture,
+    Phrase,
+    Sentence,
+    SetPH,
+    ToVolume,
+    Ware,
+)
 from soplint.quantities.model import Measure
 
 _STRENGTHS = {
@@ -78,7 +88,9 @@ class _Title:
             self.marked = True  # "50 mL flasks, diluent to the mark"
 
     def _material(self, material: Material) -> None:
-        if material.words and (material.match is not None or material.solution or material.strengths):
+        if material.words and (
+            material.match is not None or material.solution or material.strengths
+        ):
             self.materials.append(material)
         if material.ph is not None and self.ph is None:
             self.ph = self._stated(material.ph)

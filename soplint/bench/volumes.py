@@ -87,7 +87,7 @@ def _sum(preparation: Preparation) -> FinalVolume | None:
 
 
 def _weak(preparation: Preparation) -> FinalVolume | None:
-    """"Dissolve in 100 mL of water": used as if it were the final volume, one class milder."""
+    """ "Dissolve in 100 mL of water": used as if it were the final volume, one class milder."""
     liquids = [t for t in preparation.taken if t.dose.amount.dimension == "volume"]
     if len(liquids) != 1:
         return None

@@ -19,7 +19,7 @@ from soplint.quantities.model import Measure
 from soplint.substances.model import Match
 
 _WORD = re.compile(
-    r"[wvmWVM]\s?/\s?[wvmWVM](?:\s?/\s?[wvmWVM])*(?![\w/])|[wvmWVM]/[wvmWVM]\b|[^\W\d_](?:[\w'’]|\.(?=\w))*(?:\([IV]+\))?\.?|->|-->|=>|→|\S"
+    r"[wvmWVM]\s?/\s?[wvmWVM](?:\s?/\s?[wvmWVM])*(?![\w/])|[^\W\d_](?:[\w'’]|\.(?=\w))*(?:\([IV]+\))?\.?|->|-->|=>|→|\S"
 )
 _BASIS = re.compile(r"[wvm]\s?/", re.IGNORECASE)  # "w/v"; settled by refine
 _SEPARATORS = {

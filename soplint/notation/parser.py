@@ -23,7 +23,7 @@ class _Ready(Lexer):
     def __init__(self, lexer_conf: object) -> None:
         pass
 
-    def lex(self, data: Any) -> Iterator[Token]:
+    def lex(self, data: Any, parser_state: Any = None) -> Iterator[Token]:
         for index, terminal in enumerate(data):
             yield Token(terminal.kind, "", start_pos=index)
 
@@ -42,7 +42,7 @@ def parse(found: Sequence[Terminal]) -> tuple[Tree[Token], list[Terminal]]:
     for all short sequences.
     """
     kept = _flat(found)
-    return _parser().parse(kept), kept  # type: ignore[arg-type]
+    return _parser().parse(kept), kept
 
 
 def _flat(found: Sequence[Terminal]) -> list[Terminal]:
