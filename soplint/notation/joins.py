@@ -411,6 +411,8 @@ def _per_volume(found: list[Part]) -> list[Part]:
             role = result[index]
             assert isinstance(role, Role)
             result[index] = replace(role, kind="IN")
+            if left.material is None:
+                result[index - 1] = replace(left, material=Material(left.start, left.end, ""))
     return result
 
 

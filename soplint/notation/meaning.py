@@ -130,6 +130,11 @@ class Meaning:
             self.claiming = role.kind  # "bring to 35 mL (0.5 M)": what comes out of it
         elif role.kind == "RPAR" and self.claiming == "LPAR":
             self.claiming = None
+        elif role.kind == "OF" and isinstance(last, Dose) and self.between == ["OF"]:
+            if last.material is None:
+                self.phrases[-1] = replace(last, role="of")  # "5 mL of that"
+        elif role.kind == "PER" and isinstance(last, Dose) and last.material is None:
+            self.phrases[-1] = replace(last, material=Material(last.start, last.end, ""))
         elif role.kind == "OFIT":
             self._part_of(last)
         elif role.kind == "FINAL" and isinstance(last, (Material, Dose)):
@@ -285,6 +290,11 @@ class Meaning:
                 self.phrases.pop()
                 self._made_to(ToVolume(dose.start, dose.end, dose.amount), last)
                 return
+        total = self.claiming == "EQUALS" and isinstance(last, Dose) and dose.material is None
+        if total and dose.amount.dimension == "volume" and "EQUALS" in self.between:
+            # "12 mL extract + 38 mL water = 50 mL"
+            self._made_to(ToVolume(dose.start, dose.end, dose.amount, said_final=True), None)
+            return
         if self._leads(dose, index):
             self._made_to(ToVolume(dose.start, dose.end, dose.amount, said_final=True), None)
             return
