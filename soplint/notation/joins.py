@@ -6,13 +6,16 @@ a mass per volume of solvent.
 
 from __future__ import annotations
 
+import re
 from dataclasses import replace
 
 from soplint.notation.parts import Condition, Part, Role, kind_of
-from soplint.notation.phrases import Dose, Loose, Material, Mixture
+from soplint.notation.phrases import Dose, Loose, Material, Mixture, ToVolume
 
 # Terminals that may stand between a name and its amount or strength: "Bicine, 8.2 g".
 _LINKS = frozenset({"COMMA", "DASH", "COLON", "EQUALS", "SEMICOLON"})
+# "the mixture of 4.0 mL": the volume of the whole.
+_WHOLE = re.compile(r"(?:mixture|mix|solution|batch|preparation|medium|total) of", re.IGNORECASE)
 _LISTED = frozenset({"COMMA", "AND", "SEMICOLON"})
 _JOINED = frozenset({"PLUS", "COLON", "AND", "SLASH", "DASH"})
 _OPPOSITE = {("mass", "amount"), ("amount", "mass"), ("mass", "volume"), ("amount", "volume")}
@@ -202,7 +205,10 @@ def _name_first(found: list[Part]) -> list[Part]:
                 assert isinstance(material, Material)
                 titled = any(kind_of(role) in ("COLON", "DASH") for role in result[target + 1 :])
                 del result[target:]
-                result.append(_named(part, material, titled))
+                if _WHOLE.fullmatch(material.words) and part.amount.dimension == "volume":
+                    result.append(ToVolume(part.start, part.end, part.amount, said_final=True))
+                else:
+                    result.append(_named(part, material, titled))
                 continue
         result.append(part)
     return result
