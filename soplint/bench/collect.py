@@ -116,6 +116,12 @@ class Collector:
         self.closed = False
         return done
 
+    def fresh(self, always: bool) -> None:
+        """A paragraph of its own takes something: what was finished before is left behind."""
+        if self.closed or (always and self.current.taken):
+            self._settle_pending()
+            self._next()
+
     def _next(self, title: Title | None = None) -> None:
         """End the current preparation and begin another one in the same scope."""
         self.done.append(self.current)

@@ -168,6 +168,8 @@ class _Walker:
             elif alone is not None:
                 self._alone(*alone)
             else:
+                if read.block.kind == "paragraph" and read.block.number is None and _doses(part):
+                    self.collector.fresh(always=_run_in_heading(part))
                 for sentence in part.sentences:
                     self.collector.sentence(sentence)
 
@@ -393,6 +395,24 @@ def _divided(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
     title = replace(title, words=first.text.chars[: colon.start()].strip())
     rest = (replace(first, phrases=after), *read.sentences[1:])
     return replace(read, sentences=rest), title
+
+
+def _run_in_heading(read: ReadBlock) -> bool:
+    """Whether a paragraph opens with a word or two of its own: "Assay. Mix 2.0 mL of ..."."""
+    first = read.sentences[0]
+    chars = first.text.chars.strip()
+    return (
+        len(read.sentences) > 1
+        and len(chars.split()) <= 4
+        and chars.endswith(".")
+        and not first.measures
+        and not any(isinstance(phrase, Command) for phrase in first.phrases)
+    )
+
+
+def _doses(read: ReadBlock) -> bool:
+    """Whether a block takes anything."""
+    return any(isinstance(p, Dose) for sentence in read.sentences for p in sentence.phrases)
 
 
 def _segments(read: ReadBlock) -> Iterator[ReadBlock]:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass
+from functools import lru_cache
 
 from soplint.intake import sentences
 from soplint.intake.model import Block, Document, Text
@@ -26,7 +27,7 @@ class ReadBlock:
 
 def read_document(document: Document) -> tuple[ReadBlock, ...]:
     """Every block of the document, read in order."""
-    reading = Reading(number_style(_texts(document)), NameIndex())
+    reading = Reading(number_style(_texts(document)), _names())
     context: list[Text] = []
     result: list[ReadBlock] = []
     for index, block in enumerate(document.blocks):
@@ -48,6 +49,12 @@ def read_document(document: Document) -> tuple[ReadBlock, ...]:
         )
         context.append(block.text)
     return tuple(result)
+
+
+@lru_cache(maxsize=1)
+def _names() -> NameIndex:
+    """The index of names; it does not change while the program runs."""
+    return NameIndex()
 
 
 def _texts(document: Document) -> Iterator[str]:
