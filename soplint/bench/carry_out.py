@@ -18,10 +18,11 @@ from soplint.bench.preparation import Preparation, Stated
 from soplint.bench.relation import Relation
 from soplint.bench.scope import Scope, scope_of
 from soplint.bench.shelf import stock_shelf
+from soplint.bench.twofold import twofold_relation
 from soplint.bench.volumes import final_volume
 from soplint.findings.model import Interval
 from soplint.notation.document import ReadBlock
-from soplint.notation.phrases import Dose, Material, Sentence
+from soplint.notation.phrases import Claim, Dose, Material, Sentence
 
 
 @dataclass(slots=True)
@@ -81,6 +82,10 @@ def _relations(bench: Bench) -> Iterator[Relation]:
         ):
             if relation is not None:
                 yield relation
+    for sentence, material in _undosed(bench.blocks):
+        twofold = twofold_relation(sentence.text, material)
+        if twofold is not None:
+            yield twofold
     for sentence, equivalent in bench.scope.equivalents:
         relation = equivalent_relation(sentence.text, equivalent)
         if relation is not None:
@@ -94,8 +99,23 @@ def _materials(blocks: Sequence[ReadBlock]) -> Iterator[tuple[Sentence, Material
             for phrase in sentence.phrases:
                 if isinstance(phrase, Material):
                     yield sentence, phrase
+                elif isinstance(phrase, Claim) and phrase.material is not None:
+                    yield sentence, phrase.material
                 elif isinstance(phrase, Dose) and phrase.material is not None:
                     yield sentence, phrase.material
+
+
+def _undosed(blocks: Sequence[ReadBlock]) -> Iterator[tuple[Sentence, Material]]:
+    """Materials and claims that are no doses: brackets behind them say the same strength again."""
+    for block in blocks:
+        for sentence in block.sentences:
+            for phrase in sentence.phrases:
+                material = phrase.material if isinstance(phrase, Claim) else phrase
+                if isinstance(material, Material):
+                    yield sentence, material
+                elif isinstance(phrase, Dose) and phrase.amount.dimension == "volume":
+                    if phrase.material is not None and block.block.kind == "heading":
+                        yield sentence, phrase.material
 
 
 def _close(bench: Bench) -> None:

@@ -60,7 +60,9 @@ def bearers(
             for t in doses
             if (
                 s := _of_part(t, fragment, strength, facts)
-                or _part_by_label(t, fragment, strength, facts, order, preparation)
+                or _part_by_label(
+                    t, fragment, strength, facts, order, preparation, only=len(doses) == 1
+                )
             )
         )
         if parts:
@@ -138,13 +140,21 @@ def _part_by_label(
     facts: Facts,
     order: int,
     preparation: Preparation,
+    only: bool,
 ) -> list[Share]:
-    """Diluted from a solution of this document whose label speaks of the same part."""
+    """Diluted from a solution of this document whose label speaks of the same part.
+
+    The label of the only dose counts as well when it names nothing.
+    """
     return [
         _diluted(taken, label)
         for solution in _shelf(taken, facts, order, preparation)
         for label, of in solution.strengths
-        if label.dimension == strength.dimension and (of is None or _fragment(of) == fragment)
+        if label.dimension == strength.dimension
+        and (
+            (of is not None and _fragment(of) == fragment)
+            or (only and (of is None or (of.match is None and not _fragment(of))))
+        )
     ][:1]
 
 

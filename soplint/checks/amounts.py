@@ -197,7 +197,11 @@ def percent_recomputes(bench: Bench) -> Iterator[Judgement]:
     for relation, cause in _single(bench, "mass", "neat", "concentrate", "sum"):
         if _percent(relation) and not _is_thousand(relation, cause):
             yield from _amount(
-                bench, relation, cause, "amounts.percent-recomputes", "percentage does not recompute"
+                bench,
+                relation,
+                cause,
+                "amounts.percent-recomputes",
+                "percentage does not recompute",
             )
 
 
@@ -218,9 +222,7 @@ def parts_fit_volume(bench: Bench) -> Iterator[Judgement]:
         )
         if relation.kind == "total":
             message += f": {_stated(relation)} stated, {computed_text(relation)} computed"
-        yield judgement(
-            bench, relation, "amounts.parts-fit-volume", grade, message, amend=False
-        )
+        yield judgement(bench, relation, "amounts.parts-fit-volume", grade, message, amend=False)
 
 
 def _explained(bench: Bench, relation: Relation) -> bool:
@@ -250,6 +252,19 @@ def ratio_matches_parts(bench: Bench) -> Iterator[Judgement]:
             likely_cause(worst, bench),
             "amounts.ratio-matches-parts",
             "volume misses the stated ratio",
+        )
+
+
+@rule("amounts.strengths-agree")
+def strengths_agree(bench: Bench) -> Iterator[Judgement]:
+    """A strength printed in two units is one strength."""
+    for relation, cause in _single(bench, "twofold"):
+        yield from _amount(
+            bench,
+            relation,
+            cause,
+            "amounts.strengths-agree",
+            "strength in brackets is another strength",
         )
 
 

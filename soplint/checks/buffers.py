@@ -81,9 +81,7 @@ def pair_ratio_meets_ph(bench: Bench) -> Iterator[Judgement]:
             f"amounts of the pair give pH {value:.2f}, not {relation.tested.measure.nominal:g};"
             " exchanged they fit"
         )
-        cause = Cause(
-            "swapped-pair", "amounts of acid form and base form exchanged", True
-        )
+        cause = Cause("swapped-pair", "amounts of acid form and base form exchanged", True)
         made = judgement(
             bench, relation, "buffers.pair-ratio-meets-ph", _grade(relation), message, cause,
             amend=False,
@@ -124,4 +122,3 @@ def target_near_pka(bench: Bench) -> Iterator[Judgement]:
         )
         interval = Interval(None, "pH", round(low, 3), round(high, 3))
         yield Judgement(finding, (Disagreement(reach.stated, interval, working),))
-

@@ -49,4 +49,3 @@ def one_cause(relation: Relation, bench: Bench) -> tuple[Relation, Cause] | None
         if cause is not None and cause.kind not in ("factor-two", "copied-volume"):
             found.append((single, cause))
     return found[0] if len(found) == 1 else None
-

@@ -10,9 +10,7 @@ from soplint.checks.registry import Judgement, rule
 from soplint.findings.model import Finding, Related
 from soplint.notation.phrases import Sentence
 
-CAUTION = (
-    "Follow the safety data sheet, local rules and licensed practice; this note replaces none of them."
-)
+CAUTION = "Follow the safety data sheet, local rules and licensed practice; this note replaces none of them."
 
 
 @rule("hazards.acid-into-water")
@@ -49,9 +47,7 @@ def _judgement(pouring: Pouring) -> Judgement:
         grade = "major" if pouring.poured else "minor"
     name = pouring.acid.name.split(" %")[0].rstrip("0123456789.- ").rstrip()
     text = pouring.text.chars[pouring.start : pouring.end]
-    places = (
-        (Related(pouring.acid_at.span, "", "the acid"),) if pouring.acid_at is not None else ()
-    )
+    places = (Related(pouring.acid_at.span, "", "the acid"),) if pouring.acid_at is not None else ()
     return Judgement(
         Finding(
             rule="hazards.acid-into-water",

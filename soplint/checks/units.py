@@ -58,5 +58,7 @@ def dimensions_match(bench: Bench) -> Iterator[Judgement]:
     """The unit of an amount can be a unit of that amount."""
     for relation in bench.relations:
         if relation.kind == "dimension" and not relation.agrees:
-            message = f"{_stated(relation)} of {relation.of}: the unit does not fit, the figure does"
+            message = (
+                f"{_stated(relation)} of {relation.of}: the unit does not fit, the figure does"
+            )
             yield judgement(bench, relation, "units.dimensions-match", "major", message)

@@ -446,6 +446,8 @@ class Meaning:
         if self.claiming or mixed or (self.command == "DILUTE" and role == "to"):
             # "the final concentration of KCl is 5 mM"
             named = last if self.claiming == "FINALCONC" and isinstance(last, Material) else None
+            if named is None and material.bracket:
+                named = material  # "0.1 ppm (10 µg/L)": the bracket says it again
             kind = "diluted" if self._at_fold(index) else None
             for strength in material.strengths:
                 self._claim(named, strength, kind)
