@@ -13,7 +13,12 @@ from soplint.bench.entries import Reading, enter_all
 from soplint.bench.facts import Facts
 from soplint.bench.labels import equivalent_relation, label_relation, molar_mass_relation
 from soplint.bench.ledger import Ledger
-from soplint.bench.parts import fold_relations, ratio_relations, sum_relations
+from soplint.bench.parts import (
+    fold_relations,
+    ratio_relations,
+    sum_relations,
+    volume_relations,
+)
 from soplint.bench.preparation import Preparation, Stated
 from soplint.bench.relation import Relation
 from soplint.bench.scope import Scope, scope_of
@@ -68,6 +73,7 @@ def _relations(bench: Bench) -> Iterator[Relation]:
         yield from balance_relations(preparation, bench.facts, order)
         yield from fold_relations(preparation, bench.facts, order)
         yield from sum_relations(preparation)
+        yield from volume_relations(preparation)
         yield from ratio_relations(preparation)
         yield from ph_relations(preparation, bench.facts, order)
     for table, made in bench.scope.tables:

@@ -195,6 +195,32 @@ def _too_much(
     )
 
 
+def volume_relations(preparation: Preparation) -> Iterator[Relation]:
+    """The volume of the title against the volume made up, where they are the same."""
+    title, volume = preparation.title, preparation.volume
+    if title is None or title.volume is None or volume is None or volume.stated is None:
+        return
+    if (
+        volume.provenance not in ("made-up", "mark", "total")
+        or volume.stated.key == title.volume.key
+    ):
+        return
+    measure = title.volume.measure
+    value = volume.litres / measure.factor
+    if abs(measure.nominal / value - 1) <= EXACT:
+        yield Relation(
+            "volume",
+            title.volume,
+            None,
+            Interval(value, measure.unit, value * (1 - EXACT), value * (1 + EXACT)),
+            True,
+            measure.nominal / value - 1,
+            f"made up to {shown(volume.stated.measure)}",
+            preparation=preparation,
+            volume=volume,
+        )
+
+
 # --- ratios ----------------------------------------------------------------------------------------
 
 

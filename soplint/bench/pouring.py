@@ -27,6 +27,7 @@ class Pouring:
     end: int
     poured: bool  # an explicit pour of water, not a bare "make up to"
     diluted: bool = False  # "dilute 50 mL of the acid to 1 L": the order is left open
+    share: float = 1.0  # of the final volume that is acid
 
 
 @dataclass(slots=True)
@@ -171,8 +172,16 @@ def _place(sentence: Sentence, phrase: Dose | Material) -> Stated | None:
     return Stated(sentence.text, phrase.amount) if isinstance(phrase, Dose) else None
 
 
+def _share(acid: Stated, phrase: ToVolume) -> float:
+    """Acid as a share of the volume it is made up to; 1 where no volume is printed."""
+    if phrase.volume is None or phrase.volume.base <= 0:
+        return 1.0
+    return acid.measure.base / phrase.volume.base
+
+
 def _make_up(sentence: Sentence, phrase: ToVolume, vessel: _Vessel) -> Iterator[Pouring]:
     if vessel.acid is not None and not vessel.wet:
         diluted = phrase.command == "DILUTE"
-        yield Pouring(*vessel.acid, sentence.text, phrase.start, phrase.end, False, diluted)
+        share = _share(vessel.acid[2], phrase)
+        yield Pouring(*vessel.acid, sentence.text, phrase.start, phrase.end, False, diluted, share)
     vessel.acid, vessel.wet = None, False

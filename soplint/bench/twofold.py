@@ -46,9 +46,7 @@ def twofold_relation(text: Text, material: Material) -> Relation | None:
     )
 
 
-def _as_second(
-    first: Measure, second: Measure, material: Material
-) -> Iterator[tuple[float, str]]:
+def _as_second(first: Measure, second: Measure, material: Material) -> Iterator[tuple[float, str]]:
     """The first strength in the base unit of the second, under each reading."""
     grams = _grams(first)
     if second.dimension == "mass-concentration" and grams is not None:

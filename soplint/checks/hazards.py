@@ -13,6 +13,9 @@ from soplint.notation.phrases import Sentence
 CAUTION = "Follow the safety data sheet, local rules and licensed practice; this note replaces none of them."
 
 
+_LITTLE = 0.05
+
+
 @rule("hazards.acid-into-water")
 def acid_into_water(bench: Bench) -> Iterator[Judgement]:
     """Concentrated acid is added to water, never water to the acid."""
@@ -41,6 +44,8 @@ def _judgement(pouring: Pouring) -> Judgement:
     sulfuric = pouring.acid.family == "H2SO4"
     if pouring.diluted:
         grade = "minor"
+    elif not sulfuric and not pouring.poured and pouring.share <= _LITTLE:
+        grade = "remark"  # a little acid in much water (common practice, no source)
     elif sulfuric:
         grade = "critical"
     else:

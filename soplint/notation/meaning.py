@@ -130,6 +130,8 @@ class Meaning:
             self.claiming = role.kind  # "bring to 35 mL (0.5 M)": what comes out of it
         elif role.kind == "RPAR" and self.claiming == "LPAR":
             self.claiming = None
+        elif role.kind == "TITRE":
+            self.reading = True  # "titre of the blank, 17.45 mL"
         elif role.kind == "OF" and isinstance(last, Dose) and self.between == ["OF"]:
             if last.material is None:
                 self.phrases[-1] = replace(last, role="of")  # "5 mL of that"
@@ -290,6 +292,10 @@ class Meaning:
                 self.phrases.pop()
                 self._made_to(ToVolume(dose.start, dose.end, dose.amount), last)
                 return
+        if dose.role == "of" and dose.material is None and dose.amount.dimension == "volume":
+            if isinstance(last, Command) and last.kind == "MAKE_UP":
+                self._made_to(ToVolume(dose.start, dose.end, dose.amount), None)
+                return
         total = self.claiming == "EQUALS" and isinstance(last, Dose) and dose.material is None
         if total and dose.amount.dimension == "volume" and "EQUALS" in self.between:
             # "12 mL extract + 38 mL water = 50 mL"
@@ -352,7 +358,11 @@ class Meaning:
         role = self._last_role()
         material = replace(material, role=role)
         last = self.phrases[-1] if self.phrases else None
-        if material.ph is not None and self._sets_ph(material, role):
+        if material.ph is not None and self._says_ph(material):
+            # "the pH is 4.7 without adjustment"
+            bare = replace(material, words="", end=material.ph.end)
+            self._nameless(bare, role, index)
+        elif material.ph is not None and self._sets_ph(material, role):
             self._set_ph(material)
         elif material.ph is not None and not material.words and self._with_follows(index):
             self._set_ph(material)
@@ -386,6 +396,18 @@ class Meaning:
             self._made_to(last, material)
         else:
             self.phrases.append(material)
+
+    def _says_ph(self, material: Material) -> bool:
+        """Whether a pH with unknown words behind it is the pH that "the pH is" speaks of."""
+        return (
+            bool(material.words)
+            and material.match is None
+            and not (material.strengths or material.solution)
+            and material.ph is not None
+            and material.start == material.ph.start
+            and self.ph_word
+            and self.between[-1:] == ["IS"]
+        )
 
     def _is_said(self) -> bool:
         """ "The bath is 0.9 mol/L sulfuric acid", "1X is 30 mM Tris, 15 mM acetate"."""
