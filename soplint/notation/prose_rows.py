@@ -10,7 +10,7 @@ from soplint.intake.model import Text
 from soplint.notation.cells import Cell
 from soplint.notation.joined import sentence_of
 from soplint.notation.layout import Layout
-from soplint.notation.phrases import Material, Phrase
+from soplint.notation.phrases import Dose, Material, Phrase
 from soplint.notation.read import Reading, read_sentence
 from soplint.notation.rows import Row
 from soplint.notation.shift import measure_at, phrase_at
@@ -54,5 +54,11 @@ class ProseBuilder:
         if column is None or cells[column.index].shape not in ("words", "phrase"):
             return None
         cell = cells[column.index]
+        for phrase in read_sentence(cell.text, self.reading, always=True).phrases:
+            named = phrase.material if isinstance(phrase, Dose) else phrase
+            if isinstance(named, Material) and named.words and (named.strengths or named.ph):
+                shifted = phrase_at(named, cell.start)
+                assert isinstance(shifted, Material)
+                return shifted  # "Ammonia 2 mol/L": what the row makes, with its strength
         end = cell.start + len(cell.text.chars)
         return Material(cell.start, end, cell.text.chars.strip(), solution=True)
