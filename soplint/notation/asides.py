@@ -27,6 +27,7 @@ _PACKAGES = {
     "ampoule",
 }
 _REPEATED = {"WASH", "MIX", "REPEAT", "FILTER", "HEAT", "COOL", "CALIBRATE"}
+_TIMES = re.compile(r"(?:[xX×]|times)$")
 _THINGS = {"NAME", "WATER", "SOLUTION", "OTHER", "OF", "LPAR"}
 _LOWEST_SPEED = 100  # x g
 # "18,000 g for 15 min", "4500 g, 20 min, 4 °C"
@@ -56,7 +57,7 @@ def asides(chars: str, found: list[Terminal]) -> list[Terminal]:
             terminal = replace(terminal, kind="WARE")
         elif terminal.kind == "WARE" and _is_content(found, index):
             terminal = replace(terminal, kind="OTHER")
-        elif terminal.kind == "FOLD" and _is_repeat(found, index):
+        elif terminal.kind in ("FOLD", "COUNT") and _is_repeat(chars, found, index):
             terminal = replace(terminal, kind="WARE")
         elif terminal.kind == "OTHER" and result and result[-1].kind == "VOLUME":
             if _VOLUME_WORDS.fullmatch(chars[terminal.start : terminal.end]):
@@ -88,8 +89,10 @@ def _is_speed(chars: str, terminal: Terminal) -> bool:
     return _SPIN.match(chars, terminal.end) is not None
 
 
-def _is_repeat(found: Sequence[Terminal], index: int) -> bool:
+def _is_repeat(chars: str, found: Sequence[Terminal], index: int) -> bool:
     """ "invert 6 x": so many times."""
+    if not _TIMES.search(chars, found[index].start, found[index].end):
+        return False
     if index == 0 or found[index - 1].kind not in _REPEATED:
         return False
     return index + 1 >= len(found) or found[index + 1].kind not in _THINGS

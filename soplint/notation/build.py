@@ -33,16 +33,15 @@ def _part(reader: Reader, tree: Tree[Token], found: list[Part]) -> None:
     start, end = reader.bounds(tree) if tree.children else (0, 0)
     if tree.data == "dose":
         found.append(reader.dose(tree))
-        for kind in ("OF", "OFIT"):
-            if _ends_in(tree, kind):
-                found.append(Role(end, end, kind))
+        if _ends_in(tree, "OF"):
+            found.append(Role(end, end, "OF"))
         _opened(reader, tree, found)
     elif tree.data == "material":
         found.append(reader.material(tree))
         if _ends_in(tree, "OF"):
             found.append(Role(end, end, "OF"))
         _opened(reader, tree, found)
-    elif tree.data in ("share", "titre", "assigned", "worked"):
+    elif tree.data in ("share", "assigned", "worked"):
         found.extend(closed(reader, tree))
     elif tree.data == "to_volume":
         tokens = list(reader.tokens(tree))
@@ -68,9 +67,13 @@ def _ends_in(tree: Tree[Token], kind: str) -> bool:
 
 def _opened(reader: Reader, tree: Tree[Token], found: list[Part]) -> None:
     """Go on into the brackets of a thing that say more than remarks."""
-    for bracket in tree.find_data("bracket"):
-        if opens(bracket):
-            _open(reader, bracket, found)
+    for child in tree.children:
+        if not isinstance(child, Tree):
+            continue
+        if child.data != "bracket":
+            _opened(reader, child, found)
+        elif opens(child):
+            _open(reader, child, found)
 
 
 def _open(reader: Reader, bracket: Tree[Token], found: list[Part]) -> None:

@@ -1,4 +1,4 @@
-"""Closed statements: shares of a whole, burette readings, values of symbols, written-out arithmetic.
+"""Closed statements: shares of a whole, values of symbols, written-out arithmetic.
 
 Their quantities are listed and never dosed.
 """
@@ -16,7 +16,7 @@ from soplint.notation.phrases import Assigned, Claim, Material
 def closed(reader: Reader, tree: Tree[Token]) -> Iterator[Claim]:
     """The claims of a closed statement; none where its value is missing.
 
-    ``tree`` is a node share, titre, assigned or worked of the grammar.
+    ``tree`` is a node share, assigned or worked of the grammar.
     """
     if tree.data == "assigned":
         yield from _assigned(reader, tree)

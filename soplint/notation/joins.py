@@ -24,7 +24,6 @@ _OPPOSITE = {("mass", "amount"), ("amount", "mass"), ("mass", "volume"), ("amoun
 def join(found: list[Part]) -> list[Part]:
     """The parts of a sentence with neighbours joined."""
     found = _numbered(found)
-    found = _strength_of(found)
     found = _shift_strengths(found)
     found = _late_strengths(found)
     found = _name_first(found)
@@ -57,28 +56,6 @@ def _numbered(found: list[Part]) -> list[Part]:
                 replace(last, material=named, end=part.end) if isinstance(last, Dose) else named
             )
             continue
-        result.append(part)
-    return result
-
-
-def _strength_of(found: list[Part]) -> list[Part]:
-    """ "1.000 g/L of chloride": a strength, "of", a name."""
-    result: list[Part] = []
-    for part in found:
-        before = result[-2] if len(result) > 1 else None
-        if (
-            isinstance(part, Material)
-            and part.words
-            and not part.strengths
-            and kind_of(result[-1] if result else None) == "OF"
-            and isinstance(before, Material)
-            and before.strengths
-            and not before.words
-        ):
-            del result[-2:]
-            part = replace(
-                part, strengths=before.strengths, ph=part.ph or before.ph, start=before.start
-            )
         result.append(part)
     return result
 
@@ -218,6 +195,8 @@ def _takes_amount(result: list[Part], index: int) -> bool:
     """Whether the material at ``index`` still waits for its amount."""
     part = result[index]
     if not isinstance(part, Material) or not part.words:
+        return False
+    if part.words.lower().endswith(" of") and not _WHOLE.fullmatch(part.words):
         return False
     before = result[index - 1] if index else None
     return not (isinstance(before, Role) and before.kind in ("IN", "WITH", "INTO", "TO", "FROM"))

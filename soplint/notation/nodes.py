@@ -40,8 +40,10 @@ def opens(bracket: Tree[Token]) -> bool:
     something was done ("pH 7.4 (with 2 M KOH)").
     """
     doses = 0
-    first = next(iter(bracket.scan_values(lambda token: token.type not in ("LPAR", "RPAR"))), None)
-    if first is not None and first.type == "WITH":
+    first: Node = bracket.children[1]
+    while isinstance(first, Tree):
+        first = first.children[0]
+    if first.type == "WITH":
         return True
     for child in bracket.children:
         if isinstance(child, Tree) and child.data == "dose":
@@ -73,8 +75,12 @@ class Reader:
 
     def bounds(self, node: Node) -> tuple[int, int]:
         """First and last offset of a node."""
-        found = list(self.tokens(node))
-        return found[0].start, found[-1].end
+        first = last = node
+        while isinstance(first, Tree):
+            first = first.children[0]
+        while isinstance(last, Tree):
+            last = last.children[-1]
+        return self.terminal(first).start, self.terminal(last).end
 
     # --- materials -----------------------------------------------------------------------------
 

@@ -169,7 +169,7 @@ def _nouns(chars: str, found: list[Terminal]) -> list[Terminal]:
     result = list(found)
     for index in range(1, len(found)):
         terminal = found[index]
-        if _NOUN.fullmatch(chars[terminal.start : terminal.end]) and terminal.measure is None:
+        if _NOUN.fullmatch(chars[terminal.start : terminal.end].rstrip(".")) and terminal.measure is None:
             before = found[index - 1]
             beside = not chars[before.end : terminal.start].strip(" -")
             if before.kind in _NAMED and beside:
