@@ -25,6 +25,7 @@ from soplint.bench.scope import Scope, scope_of
 from soplint.bench.shelf import stock_shelf
 from soplint.bench.twofold import twofold_relation
 from soplint.bench.volumes import final_volume
+from soplint.bench.worked import worked_relations
 from soplint.findings.model import Interval
 from soplint.notation.document import ReadBlock
 from soplint.notation.phrases import Claim, Dose, Material, Sentence
@@ -81,6 +82,7 @@ def _relations(bench: Bench) -> Iterator[Relation]:
     for block in bench.blocks:
         for sentence in block.sentences:
             yield from dimension_relations(sentence)
+            yield from worked_relations(sentence)
     for sentence, material in _materials(bench.blocks):
         for relation in (
             molar_mass_relation(sentence.text, material),

@@ -5,7 +5,9 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from soplint.bench import Bench
+from soplint.causes import likely_cause
 from soplint.checks.registry import Judgement, rule
+from soplint.checks.wording import computed_text, judgement
 from soplint.findings.model import Finding
 
 
@@ -26,3 +28,20 @@ def sentence_readable(bench: Bench) -> Iterator[Judgement]:
                 message="sentence holds a quantity that could not be bound to a substance",
             )
         )
+
+
+_ROUNDING = 0.02  # intermediate results are rounded before they are printed
+
+
+@rule("document.arithmetic-recomputes")
+def arithmetic_recomputes(bench: Bench) -> Iterator[Judgement]:
+    """Arithmetic that is written out gives the printed result."""
+    for relation in bench.relations:
+        if relation.kind != "worked" or relation.agrees:
+            continue
+        grade = "minor" if abs(relation.deviation) < _ROUNDING else "major"
+        measure = relation.tested.measure
+        stated = relation.tested.text.chars[measure.start : measure.end]
+        message = f"arithmetic: {stated} printed, {computed_text(relation)} computed"
+        cause = likely_cause(relation, bench)
+        yield judgement(bench, relation, "document.arithmetic-recomputes", grade, message, cause)
