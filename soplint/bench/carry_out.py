@@ -10,6 +10,7 @@ from soplint.bench.balances import balance_relations
 from soplint.bench.columns import column_relations
 from soplint.bench.dimensions import dimension_relations
 from soplint.bench.entries import Reading, enter_all
+from soplint.bench.examples import example_relations
 from soplint.bench.facts import Facts
 from soplint.bench.labels import equivalent_relation, label_relation, molar_mass_relation
 from soplint.bench.ledger import Ledger
@@ -83,6 +84,7 @@ def _relations(bench: Bench) -> Iterator[Relation]:
         for sentence in block.sentences:
             yield from dimension_relations(sentence)
             yield from worked_relations(sentence)
+    yield from example_relations([s for block in bench.blocks for s in block.sentences])
     for sentence, material in _materials(bench.blocks):
         for relation in (
             molar_mass_relation(sentence.text, material),

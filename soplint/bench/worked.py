@@ -70,9 +70,7 @@ def worked_relations(sentence: Sentence) -> Iterator[Relation]:
 
 
 def _compare(sentence: Sentence, result: Measure, value: _Value, left: str) -> Relation | None:
-    exponents = (
-        (1, -1, 0) if result.dimension == "density" else _EXPONENTS.get(result.dimension)
-    )
+    exponents = (1, -1, 0) if result.dimension == "density" else _EXPONENTS.get(result.dimension)
     factor = result.factor * (_DENSITY if result.dimension == "density" else 1.0)
     same = exponents == value.exponents
     given = value.number / factor

@@ -45,3 +45,21 @@ def arithmetic_recomputes(bench: Bench) -> Iterator[Judgement]:
         message = f"arithmetic: {stated} printed, {computed_text(relation)} computed"
         cause = likely_cause(relation, bench)
         yield judgement(bench, relation, "document.arithmetic-recomputes", grade, message, cause)
+
+
+@rule("document.worked-example-reproduces")
+def worked_example_reproduces(bench: Bench) -> Iterator[Judgement]:
+    """The numbers of a worked example, put into the formula, give the printed result."""
+    for relation in bench.relations:
+        if relation.kind != "example" or relation.agrees:
+            continue
+        measure = relation.tested.measure
+        stated = relation.tested.text.chars[measure.start : measure.end]
+        grade = "minor" if abs(relation.deviation) < _EXAMPLE else "major"
+        message = f"worked example: {stated} printed, {computed_text(relation)} computed"
+        cause = likely_cause(relation, bench)
+        name = "document.worked-example-reproduces"
+        yield judgement(bench, relation, name, grade, message, cause, amend=False)
+
+
+_EXAMPLE = 0.005
