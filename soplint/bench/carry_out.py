@@ -84,7 +84,7 @@ def _relations(bench: Bench) -> Iterator[Relation]:
         for sentence in block.sentences:
             yield from dimension_relations(sentence)
             yield from worked_relations(sentence)
-    yield from example_relations([s for block in bench.blocks for s in block.sentences])
+    yield from example_relations(_sections(bench.blocks))
     for sentence, material in _materials(bench.blocks):
         for relation in (
             molar_mass_relation(sentence.text, material),
@@ -100,6 +100,16 @@ def _relations(bench: Bench) -> Iterator[Relation]:
         relation = equivalent_relation(sentence.text, equivalent)
         if relation is not None:
             yield relation
+
+
+def _sections(blocks: Sequence[ReadBlock]) -> list[list[Sentence]]:
+    """The sentences of the document, heading by heading."""
+    sections: list[list[Sentence]] = [[]]
+    for block in blocks:
+        if block.block.kind == "heading":
+            sections.append([])
+        sections[-1].extend(block.sentences)
+    return sections
 
 
 def _materials(blocks: Sequence[ReadBlock]) -> Iterator[tuple[Sentence, Material]]:

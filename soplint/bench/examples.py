@@ -40,28 +40,33 @@ class Formula:
     name: str | None
     right: str
     symbols: frozenset[str]
-    order: int
+    section: int
 
 
 class _Unclear(Exception):
     """The text is no formula of printed numbers and symbols."""
 
 
-def example_relations(sentences: Sequence[Sentence]) -> Iterator[Relation]:
-    """Every worked example of the document, put into the formula before it."""
+def example_relations(sections: Sequence[Sequence[Sentence]]) -> Iterator[Relation]:
+    """Every worked example of the document, put into the formula before it.
+
+    A formula of another section may have been changed by words ("with 121.14 in place of"): there
+    only agreement counts.
+    """
     formulas: list[Formula] = []
-    for order, sentence in enumerate(sentences):
-        chars = sentence.text.chars
-        if "=" not in chars:
-            continue
-        relation = _example(sentence, formulas)
-        if relation is not None:
-            yield relation
-        else:
-            formulas.extend(_formulas(chars, order))
+    for section, sentences in enumerate(sections):
+        for sentence in sentences:
+            chars = sentence.text.chars
+            if "=" not in chars:
+                continue
+            relation, own = _example(sentence, formulas, section)
+            if relation is None:
+                formulas.extend(_formulas(chars, section))
+            elif own or relation.agrees:
+                yield relation
 
 
-def _formulas(chars: str, order: int) -> Iterator[Formula]:
+def _formulas(chars: str, section: int) -> Iterator[Formula]:
     for found in _FORMULA.finditer(chars):
         right = re.split(r"[,;:]\s|\.\s|\s(?:where|with|in which)\b", found["right"])[0].rstrip(
             " ."
@@ -71,28 +76,33 @@ def _formulas(chars: str, order: int) -> Iterator[Formula]:
         except _Unclear:
             continue
         if reader.symbols and len(reader.tokens) >= 3:
-            yield Formula(found["name"], right, frozenset(reader.symbols), order)
+            yield Formula(found["name"], right, frozenset(reader.symbols), section)
 
 
-def _example(sentence: Sentence, formulas: Sequence[Formula]) -> Relation | None:
+def _example(
+    sentence: Sentence, formulas: Sequence[Formula], section: int
+) -> tuple[Relation | None, bool]:
+    """The relation of an example and whether its formula stands in the same section."""
     chars = sentence.text.chars
     said = _RESULT.search(chars)
     if said is None or not formulas:
-        return None
+        return None, False
     result = next((m for m in sentence.measures if m.start == said.end()), None)
     values = {
         m["name"]: float(m["value"].replace(",", "."))
         for m in _ASSIGNED.finditer(chars[: said.start()])
     }
     if result is None or result.value is None or not result.value or not values:
-        return None
+        return None, False
     fitting = [f for f in formulas if f.symbols <= set(values)]
     named = [f for f in fitting if said["name"] and f.name == said["name"]]
     if not named:  # a result without its symbol: of a formula in words that takes every value
         fitting = [f for f in fitting if f.name is None and f.symbols == set(values)]
-    tried = [_put_in(sentence, f, values, result) for f in reversed(named or fitting)]
-    found = [relation for relation in tried if relation is not None]
-    return next((r for r in found if r.agrees), found[0] if found else None)
+    tried = [(_put_in(sentence, f, values, result), f) for f in reversed(named or fitting)]
+    found = [(r, f.section == section) for r, f in tried if r is not None]
+    agreeing = [pair for pair in found if pair[0].agrees]
+    best = agreeing or found
+    return best[0] if best else (None, False)
 
 
 def _put_in(
