@@ -58,7 +58,7 @@ def fragment_of(words: str) -> str | None:
         if bare in _symbols() and word not in ("I", "In", "As", "At", "No", "He", "Be"):
             return str(bare)
         if word in ("NO3", "NO2", "PO4", "SO4", "NH4", "SiO2"):
-            return word
+            return str(word)
     return None
 
 

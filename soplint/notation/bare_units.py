@@ -140,11 +140,11 @@ def _by_sum(
     if volume is None or volume <= 0:
         return None
     tests = ([total] if total is not None else []) + ([] if open_ended else [numbers])
-    for name, factor in (("µL", 1e-6), ("mL", 1e-3), ("L", 1.0)):
+    for unit, factor in (("µL", 1e-6), ("mL", 1e-3), ("L", 1.0)):
         for number in tests:
             rest = explicit if number is numbers else 0.0
             if number > 0 and abs(number * factor + rest - volume) <= _CLOSE * volume:
-                return name
+                return unit
     return None
 
 
