@@ -21,6 +21,12 @@ _MOST_READINGS = 24
 # Single salts that set a pH by themselves: primary standards (Buck et al. 2002, Pure Appl. Chem. 74, 2169).
 STANDARDS = {"C8H5KO4", "Na2B4O7", "C4H5KO6", "NaHCO3", "K3H3C4O8", "KHC8H4O4", "KHC4H4O6"}
 # Systems that are present for another purpose than to hold the pH.
+# Substances that are dissolved for no other purpose than to hold a pH.
+BUFFER_SUBSTANCES = {
+    *("tris", "hepes", "mes", "mops", "mopso", "pipes", "bes", "tes", "bicine", "tricine", "ches"),
+    *("caps", "capso", "taps", "tapso", "aces", "ada", "bis-tris", "epps", "heppso", "dipso"),
+    *("ampso", "amp", "ampd", "bis-tris propane", "cacodylate", "glycylglycine"),
+}
 NO_BUFFERS = {"edta", "azide", "fluoride", "sulfate", "calcium hydroxide ion pair", "hypochlorite"}
 
 
@@ -360,7 +366,11 @@ def _called_buffer(preparation: Preparation) -> bool:
     words = f"{title.words} {' '.join(m.words for m in title.materials)}".lower()
     if any(word in words for word in ("buffer", "eluent", "mobile phase")):
         return True
-    return any(m.match and m.match.generic for m in title.materials) or _set_by_partner(preparation)
+    if any(m.match and m.match.generic for m in title.materials) or _set_by_partner(preparation):
+        return True
+    return title.ph is not None and any(
+        s.acid_system in BUFFER_SUBSTANCES for m in title.materials for s in candidates(m)
+    )
 
 
 def _set_by_partner(preparation: Preparation) -> bool:

@@ -119,10 +119,17 @@ def _title_counts(preparation: Preparation) -> bool:
 
 
 def _finals(taken: Taken) -> Iterator[Target]:
+    material = taken.dose.material
+    beside = [m for m in (material.bracket if material else ()) if m.dimension == "fold"]
+    fold = beside[0] if len(beside) == 1 and material and not material.strengths else None
     for measure in final_strengths(taken.dose):
-        yield Target(Stated(taken.text, measure), taken.dose.material, "bracket")
+        yield Target(Stated(taken.text, measure), material, "bracket", fold)
     for measure in _either(taken.dose):
         yield Target(Stated(taken.text, measure), taken.dose.material, "maybe")
+
+
+# Strengths beside a mass that cannot be an assay of the thing weighed.
+_NO_ASSAY = ("molarity", "normality", "mass-concentration", "activity-concentration")
 
 
 def final_strengths(dose: Dose) -> tuple[Measure, ...]:
@@ -134,7 +141,7 @@ def final_strengths(dose: Dose) -> tuple[Measure, ...]:
     beside = [m for m in material.strengths if m.dimension in _STRENGTHS]
     bracket = [m for m in material.bracket if m.dimension in _STRENGTHS]
     if dose.amount.dimension in ("mass", "amount"):
-        molar = [m for m in beside if m.dimension in ("molarity", "normality")]
+        molar = [m for m in beside if m.dimension in _NO_ASSAY]
         return tuple([*finals, *molar, *bracket])
     if len(beside) > 1 and len({m.dimension for m in beside}) == 1:
         stock = max(beside, key=lambda m: m.base)
@@ -285,6 +292,7 @@ def _volumes(
             yield FinalVolume(mass, EXACT, "total", None)
             return
     strong = volume is not None and volume.provenance not in ("weak", "sum", "heading")
+    strong = strong and not any(share.taken.late for share in chosen)
     if volume is not None:
         yield volume
         late = sum(
@@ -297,11 +305,22 @@ def _volumes(
     if strong:
         return
     steps = {share.taken.step for share in chosen}
+    if volume is not None and volume.provenance == "sum":
+        so_far = [
+            t.dose.amount.base
+            for t in preparation.taken
+            if t.step <= max(steps) and t.dose.amount.dimension == "volume"
+        ]
+        if len(so_far) > 1:
+            yield replace(volume, litres=sum(so_far))  # at the step itself
     if len(steps) != 1:
         return
     for taken in preparation.taken:
         amount = taken.dose.amount
-        if taken.step in steps and taken.solvent and amount.base > 0:
+        into = taken.solvent or taken.dose.role in ("to", "into")
+        if amount.dimension != "volume" or amount.base <= 0:
+            continue
+        if taken.step in steps and into:
             local = FinalVolume(amount.base, relative(amount, EXACT), "weak", taken.stated)
             if volume is None or abs(local.litres / volume.litres - 1) > 1e-9:
                 yield local

@@ -39,6 +39,27 @@ _STARTS = {"WEIGH", "DISSOLVE", "DILUTE", "PREPARE"}
 _TWO_STAGE = 1.45  # a later make-up of up to this many times the earlier finishes the same recipe
 
 
+_OR_COMMAND = re.compile(r"\bor\s+(?:weigh|add|dissolve|use|dilute|take|mix)\b", re.IGNORECASE)
+
+
+def _finals_to_doses(phrases: tuple[Phrase, ...]) -> list[Phrase]:
+    """"Add 10 mL of 1 M DTT to 990 mL buffer (final 1 mM)": the final is that of the DTT."""
+    result = list(phrases)
+    for index in range(1, len(result)):
+        giver, receiver = result[index - 1], result[index]
+        if not (isinstance(giver, Dose) and isinstance(receiver, Dose)):
+            continue
+        if receiver.role not in ("to", "into", "in") or receiver.material is None:
+            continue
+        own = giver.material
+        finals = receiver.material.finals
+        if own is None or not finals or own.finals or receiver.amount.dimension != "volume":
+            continue
+        result[index - 1] = replace(giver, material=replace(own, finals=finals))
+        result[index] = replace(receiver, material=replace(receiver.material, finals=()))
+    return result
+
+
 def _fold_of(sentence: Sentence, claim: Claim) -> Measure | None:
     """The fold that a claim holds at: "1x is 30 mM Tris", "(1 mM at 1x)"."""
     chars = sentence.text.chars
@@ -66,6 +87,13 @@ def _bracketed_dose(material: Material, command: str | None) -> Dose | None:
         return None
     others = tuple(m for m in material.bracket if m is not amounts[0] and m.dimension != "ratio")
     rest = replace(material, bracket=others)
+    own, stock = material.strengths, others
+    if len(own) == len(stock) == 1 and own[0].dimension == stock[0].dimension:
+        if stock[0].base > own[0].base and amounts[0].dimension == "volume":
+            # "10 mM Tris-HCl (10 mL of 1 M)": aimed at 10 mM, taken from 1 M
+            rest = replace(material, bracket=(), strengths=stock, finals=own)
+    elif own and amounts[0].dimension == "mass" and not stock:
+        rest = replace(material, bracket=(), strengths=(), finals=own)
     return Dose(material.start, material.end, amounts[0], rest, role=material.role, command=command)
 
 
@@ -141,7 +169,10 @@ class Collector:
         """Take up all phrases of a sentence."""
         self.step += 1
         command: str | None = None
-        for index, phrase in enumerate(sentence.phrases):
+        other = _OR_COMMAND.search(sentence.text.chars)
+        for index, phrase in enumerate(_finals_to_doses(sentence.phrases)):
+            if other is not None and phrase.start > other.start():
+                break  # "..., or weigh 75.6 g": one of the two ways is gone
             if isinstance(phrase, Command):
                 command = phrase.kind
                 continue
@@ -157,6 +188,8 @@ class Collector:
             self._to_volume(text, phrase)
         elif isinstance(phrase, SetPH):
             self.current.adjusted.append(Adjusted(text, phrase, self.step, self.closed))
+        elif isinstance(phrase, Claim) and command == "DILUTE" and self.closed:
+            pass  # "for use dilute 1:5 to 50 mM" speaks of another solution
         elif isinstance(phrase, Claim):
             fold = _fold_of(sentence, phrase)
             self.current.claimed.append(Claimed(text, phrase, self.step, fold))
@@ -184,6 +217,8 @@ class Collector:
         if self.closed or self.current.taken:
             self._settle_pending()
             self._next(title)
+        elif title.bare and title.volume is not None and self.current.title is not None:
+            self.current.title = replace(self.current.title, volume=title.volume)
         elif title.bare or self.current.title is None or self.current.title.bare:
             self.current.title = title if not title.bare else self.current.title or title
         elif title.targets or title.ph or title.volume:
@@ -196,18 +231,23 @@ class Collector:
 
     def _dose(self, sentence: Sentence, dose: Dose, command: str | None) -> None:
         material = dose.material
+        if command == "PREPARE" and material is None and dose.role is None:
+            if dose.amount.dimension == "volume":
+                self._inline_title(sentence, dose)  # "For 20 mL take ..."
+                return
         aims = command in ("PREPARE", "MAKE_UP") and dose.amount.dimension == "volume"
         if aims and dose.role is None and material is not None and not material.is_water:
             if material.strengths or material.solution or material.ph:
                 self._inline_title(sentence, dose)
                 return
         solvent = dose.role == "in" and dose.amount.dimension == "volume"
-        if dose.material is None and dose.role == "to":
-            return  # "weigh to 1 mg": how exactly, not how much
+        if dose.role == "per" or (dose.material is None and dose.role == "to"):
+            return  # "1 tablet per 50 mL"; "weigh to 1 mg": how exactly, not how much
         if self._belongs_to_adjustment(dose):
             return
         dose = self._with_material(dose, solvent)
         taken = Taken(sentence.text, dose, self.step, solvent)
+        self._contents(taken)
         if not self.closed:
             self.current.taken.append(taken)
         elif command in _STARTS or solvent or self.pending:
@@ -257,6 +297,17 @@ class Collector:
                 )  # fmt: skip
             return replace(dose, material=base)
         return dose
+
+    def _contents(self, taken: Taken) -> None:
+        """"..., 10 µL water (95 % formamide, 10 mM EDTA)": what the mixture holds."""
+        material = taken.dose.material
+        if material is None or not material.contents:
+            return
+        if material.is_water or (material.match is not None and not material.match.generic):
+            for part in material.contents:
+                for strength in part.strengths:
+                    claim = Claim(strength.start, part.end, strength, part)
+                    self.current.claimed.append(Claimed(taken.text, claim, self.step))
 
     def _begin_after_make_up(self, taken: Taken, command: str | None) -> None:
         if command in _STARTS and not self.pending:

@@ -145,6 +145,8 @@ def _of_material(material: Material) -> Iterator[tuple[Measure, Material | None]
     for measure in (*material.strengths, *material.bracket, *material.finals, *single):
         if measure is not None:
             yield measure, material
+    for part in material.contents:
+        yield from _of_material(part)
 
 
 def _name(material: Material | None) -> str | None:

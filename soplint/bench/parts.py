@@ -61,6 +61,11 @@ def _fold_aim(preparation: Preparation, taken: Taken) -> Stated | None:
         if t is not taken and not (t.dose.material is not None and t.dose.material.is_water)
     ]
     title = preparation.title
+    for target in title.folds if title is not None and title.source != "document" else ():
+        assert target.material is not None
+        shared = tokens(target.material.words) & tokens(material.words)
+        if shared and len(title.folds if title else ()) == 1 and len(title.targets if title else ()) > 0:
+            return target.stated
     if title is not None and title.fold is not None and title.source != "document":
         alike = bool(tokens(title.words) & tokens(material.words))
         if not others and (alike or not tokens(material.words) or title.source == "inline"):
@@ -107,6 +112,8 @@ def sum_relations(preparation: Preparation) -> Iterator[Relation]:
         return
     poured = [t for t in preparation.taken if t.dose.amount.dimension == "volume" and not t.late]
     if len(poured) < 2 or any(t.dose.alternatives or t.dose.each for t in poured):
+        return
+    if any(t.dose.material is None and not t.solvent for t in poured):
         return
     total = sum(t.dose.amount.base for t in poured)
     slack = sum(t.dose.amount.base * relative(t.dose.amount, ALIQUOT) for t in poured)

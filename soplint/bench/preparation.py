@@ -61,6 +61,7 @@ class Title:
     volume: Stated | None = None
     source: str = "title"
     mixtures: tuple[Mixed, ...] = ()
+    folds: tuple[Target, ...] = ()  # of named parts: "2x SSL, 0.1 % SDS"
 
     @property
     def bare(self) -> bool:

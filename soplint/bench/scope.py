@@ -258,6 +258,9 @@ def inherit(chain: Sequence[Title]) -> Title:
     """
     title = chain[0]
     for above in chain[1:]:
+        if title.source == "lead" and title.targets and above.fold is not None:
+            title = _at_its_fold(title, above)
+            break
         if title.bare and not above.bare:
             title = replace(
                 above,
@@ -293,6 +296,23 @@ def _is_preparation(row: Row) -> bool:
     phrases = row.sentence.phrases
     taken = any(isinstance(phrase, Dose) for phrase in phrases)
     return taken and any(isinstance(phrase, (Claim, ToVolume)) for phrase in phrases)
+
+
+_WORKING = re.compile(r"\b(final|working|use|1\s?[x×])\b", re.IGNORECASE)
+
+
+def _at_its_fold(title: Title, above: Title) -> Title:
+    """"1x: 137 mM NaCl, ..." above the list of a 10X stock: strengths at another fold."""
+    own = title.fold.measure if title.fold is not None else None
+    if own is None and _WORKING.search(title.words) and above.fold is not None:
+        own = replace(above.fold.measure, value=1.0, low=1.0, high=1.0)
+    if own is None:
+        return replace(title, volume=title.volume or above.volume)
+    targets = tuple(replace(target, fold=own) for target in title.targets)
+    return replace(
+        above, targets=above.targets + targets, volume=title.volume or above.volume,
+        materials=above.materials or title.materials,
+    )  # fmt: skip
 
 
 def _variant_title(variant: Variant, title: Title | None) -> Title:

@@ -73,6 +73,8 @@ def bearers(
             return
     if material is not None and (material.match is not None or tokens(material.words)):
         yield from _named(doses, material, strength, facts, order, preparation)
+        if any(m.dimension == "ratio" for m in material.bracket):
+            yield from _all_weighed(doses, strength)  # "40 % acrylamide (19:1)"
         if material.match is not None and not material.solution and not material.match.generic:
             if _extra_words(material):
                 yield from _any_dose(doses, strength, facts)
@@ -83,6 +85,15 @@ def bearers(
     yield from unnamed
     if material is not None and material.match is None and not unnamed:
         yield from _any_dose(doses, strength, facts)
+
+
+def _all_weighed(doses: list[Taken], strength: Measure) -> Iterator[Bearers]:
+    """Everything that was weighed, for a percentage of several things together."""
+    if strength.dimension != "fraction":
+        return
+    found = [tuple(_by_mass(t, strength)) for t in doses if t.dose.amount.dimension == "mass"]
+    if len(found) > 1 and all(found):
+        yield Bearers("any", tuple(found), sure=False)
 
 
 def _any_dose(doses: list[Taken], strength: Measure, facts: Facts) -> Iterator[Bearers]:
@@ -424,7 +435,7 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
         label = max(labels, key=lambda m: m.base) if labels else None
         if label is not None and label is not strength:
             found.append(_diluted(taken, label))
-            as_bought = label.basis in (None, "w/w") and strength.basis in (None, "v/v")
+            as_bought = _is_concentrate(material, label) and strength.basis in (None, "v/v")
             if strength.dimension == "fraction" and as_bought:
                 # a percentage of the concentrate as it is bought, by volume
                 amount = taken.dose.amount
@@ -445,6 +456,17 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
     if not found and strength.dimension in ("mass-concentration", "ppm", "fraction"):
         found.extend(_by_mass(taken, strength))
     return found
+
+
+def _is_concentrate(material: Material, label: Measure) -> bool:
+    """Whether a liquid of this per cent is sold: its own volume is often what per cent count."""
+    if label.basis not in (None, "w/w"):
+        return False
+    percent = label.base * 100
+    return any(
+        s.state in ("solution", "liquid") and s.strength and abs(s.strength - percent) < 3
+        for s in candidates(material)
+    )
 
 
 def _counted(taken: Taken, strength: Measure) -> list[Share]:

@@ -30,6 +30,13 @@ _NUMBER = re.compile(r"^\s*(?:\d+(?:\.\d+)*|[a-zA-Z])[.)]\s+")
 WATER = Material(0, 0, "")
 
 
+_PORTIONS = re.compile(
+    r"\b(?:two|three|four|five|six|ten|\d+)\s+(?:[\w.-]+\s+){0,2}"
+    r"(?:gels?|tubes?|plates?|portions?|aliquots?|dishes|bottles|vials)\b",
+    re.IGNORECASE,
+)
+
+
 def title_of(sentence: Sentence, source: str = "title") -> Title:
     """The title that a heading or lead-in sentence makes."""
     reader = _Title(sentence, source)
@@ -49,6 +56,7 @@ class _Title:
         self.temperature: Measure | None = None
         self.volume: Stated | None = None
         self.mixtures: list[Mixed] = []
+        self.folds: list[Target] = []
         self.ware: Stated | None = None
         self.marked = False
 
@@ -57,7 +65,7 @@ class _Title:
             if phrase.role != "from":  # "KOAc 100 mM from 3 M": the stock, not the aim
                 self._material(phrase)
         elif isinstance(phrase, Dose):
-            if phrase.amount.dimension == "volume" and self.volume is None:
+            if phrase.amount.dimension == "volume" and self._is_larger(phrase.amount):
                 self.volume = self._stated(phrase.amount)
             if phrase.material is not None:
                 self._material(phrase.material)
@@ -80,6 +88,12 @@ class _Title:
             self.mixtures.append(Mixed(self.sentence.text, phrase, 0))
         elif isinstance(phrase, Loose) and phrase.measure.dimension == "temperature":
             self.temperature = self.temperature or phrase.measure
+
+    def _is_larger(self, volume: Measure) -> bool:
+        """Whether a volume of the title is the batch; "two gels of 7.5 mL" names portions."""
+        if _PORTIONS.search(self.sentence.text.chars[: volume.start + 1]):
+            return False
+        return self.volume is None or bool(_PORTIONS.search(self.sentence.text.chars))
 
     def _to_volume(self, phrase: ToVolume) -> None:
         if phrase.volume is not None:
@@ -109,6 +123,8 @@ class _Title:
                 self._strength(strength, material if material.words else None)
 
     def _strength(self, strength: Measure, material: Material | None) -> None:
+        if strength.dimension == "fold" and material is not None:
+            self.folds.append(Target(self._stated(strength), material, self.source))
         if strength.dimension == "fold":
             self.fold = self.fold or self._stated(strength)
         elif strength.dimension in _STRENGTHS:
@@ -130,4 +146,5 @@ class _Title:
             self.volume or (self.ware if self.marked else None),
             self.source,
             tuple(self.mixtures),
+            tuple(self.folds),
         )

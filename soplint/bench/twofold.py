@@ -20,9 +20,10 @@ _LEAST = 0.03
 
 def twofold_relation(text: Text, material: Material) -> Relation | None:
     """The strength in brackets against the one before it, where one follows from the other."""
-    if len(material.strengths) != 1 or len(material.bracket) != 1:
+    printed = [m for m in (*material.strengths, *material.bracket) if m.dimension != "fold"]
+    if len(printed) != 2 or not material.strengths:
         return None
-    first, second = material.strengths[0], material.bracket[0]
+    first, second = printed
     if first.dimension == second.dimension:
         return None
     values = [value for value, _ in _as_second(first, second, material)]
@@ -57,6 +58,9 @@ def _as_second(first: Measure, second: Measure, material: Material) -> Iterator[
         if second.dimension == "molarity" and grams is not None and substance.molar_mass:
             if substance.state == "solid":
                 yield grams / substance.molar_mass, f" / {substance.molar_mass:.2f} g/mol"
+        if first.dimension == "molarity" and second.dimension == "mass-concentration":
+            if substance.molar_mass:
+                yield first.base * substance.molar_mass, f" × {substance.molar_mass:.2f} g/mol"
         z = equivalents(substance)
         if first.dimension == "molarity" and second.dimension == "normality" and z > 1:
             yield first.base * z, f" × {z}"

@@ -68,6 +68,8 @@ def _sum(preparation: Preparation) -> FinalVolume | None:
     grams = 0.0
     for taken in preparation.taken:
         amount = taken.dose.amount
+        if amount.dimension == "volume" and taken.dose.material is None and not taken.solvent:
+            return None  # of something that is not named: added or taken out
         if amount.dimension == "volume":
             volumes.append(amount)
         elif amount.dimension == "mass":

@@ -6,6 +6,7 @@ one found.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 
@@ -52,9 +53,22 @@ def related_forms(substance: Substance) -> list[Substance]:
         and (
             other.family == substance.family
             or other.name in names
-            or (other.acid_system is not None and other.acid_system == substance.acid_system)
+            or (
+                other.acid_system is not None
+                and other.acid_system == substance.acid_system
+                and _cations(other) in (_cations(substance), frozenset())
+            )
         )
     ]
+
+
+_CATIONS = ("Na", "K", "Li", "Mg", "Ca", "Sr", "Ba", "Mn", "Zn", "Cu", "Fe", "Co", "Ni", "Ag", "NH4")
+
+
+def _cations(substance: Substance) -> frozenset[str]:
+    """Metals (and ammonium) of a formula; a free acid or base has none."""
+    formula = substance.formula or ""
+    return frozenset(c for c in _CATIONS if re.search(rf"{c}(?![a-z])", formula))
 
 
 def powers_of_ten(case: Case) -> Iterator[Hypothesis]:
@@ -154,7 +168,9 @@ def copied_neighbours(case: Case) -> Iterator[Hypothesis]:
         return
     measure = relation.tested.measure
     for other in preparation.taken:
-        if other is relation.taken or other.dose.material is None or other.dose.material.is_water:
+        if other.dose.material is None or other.dose.material.is_water:
+            continue
+        if other.stated.key == relation.tested.key:
             continue
         same = other.dose.amount
         if same.unit == measure.unit and same.value == measure.value and same.digits > 1:
