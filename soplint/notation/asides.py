@@ -29,6 +29,7 @@ _PACKAGES = {
 _REPEATED = {"WASH", "MIX", "REPEAT", "FILTER", "HEAT", "COOL", "CALIBRATE"}
 _TIMES = re.compile(r"(?:[xX×]|times)$")
 _THINGS = {"NAME", "WATER", "SOLUTION", "OTHER", "OF", "LPAR"}
+_FINEST = 0.01  # g; a balance that reads coarser is named for its capacity
 _LOWEST_SPEED = 100  # x g
 # "18,000 g for 15 min", "4500 g, 20 min, 4 °C"
 _SPIN = re.compile(
@@ -53,6 +54,11 @@ def asides(chars: str, found: list[Terminal]) -> list[Terminal]:
             _is_package(chars, found, index) or _is_speed(chars, terminal)
         ):
             terminal = replace(terminal, kind="WARE")
+        elif terminal.kind == "MASS" and _is_fineness(found, index):
+            terminal = replace(terminal, kind="WARE")
+        elif terminal.kind == "ADD" and _is_device(chars, found, index):
+            terminal = replace(terminal, kind="WARE")
+            result[-1] = replace(result[-1], kind="WARE")
         elif terminal.kind in ("MASS", "VOLUME") and _FINENESS.search(chars, 0, terminal.start):
             terminal = replace(terminal, kind="WARE")
         elif terminal.kind == "WARE" and _is_content(found, index):
@@ -72,6 +78,29 @@ def _is_package(chars: str, found: Sequence[Terminal], index: int) -> bool:
         return False
     following = chars[found[index + 1].start : found[index + 1].end].split()
     return following[0].lower().rstrip(".,s") in _PACKAGES
+
+
+def _is_fineness(found: Sequence[Terminal], index: int) -> bool:
+    """ "Weigh 0.25 g to 0.1 mg", "balance 0.01 g": how fine the balance reads."""
+    measure = found[index].measure
+    if measure is None or not index or measure.base > _FINEST or measure.digits > 1:
+        return False
+    if index + 1 < len(found) and found[index + 1].kind in _THINGS:
+        return False
+    if found[index - 1].kind == "WARE":
+        return found[index - 1].measure is None
+    weighed = any(terminal.kind in ("WEIGH", "WARE") for terminal in found[:index])
+    return weighed and found[index - 1].kind == "TO"
+
+
+def _is_device(chars: str, found: Sequence[Terminal], index: int) -> bool:
+    """ "the 10 mL pipette": the word names the device whose size stands before it."""
+    terminal = found[index]
+    if not index or found[index - 1].kind != "VOLUME":
+        return False
+    if not chars.lower().startswith("pipet", terminal.start):
+        return False
+    return index + 1 >= len(found) or found[index + 1].kind not in ("VOLUME", "NUMBER")
 
 
 def _is_content(found: Sequence[Terminal], index: int) -> bool:

@@ -25,6 +25,7 @@ def close(phrases: list[Phrase]) -> list[Phrase]:
 
     "12 mL of 0.5 M CHES to 150 mL with water (40 mM)" claims the strength of CHES.
     """
+    phrases = series(from_stock(phrases))
     solutes = _solutes(phrases)
     if len(solutes) != 1:
         return phrases
@@ -35,6 +36,54 @@ def close(phrases: list[Phrase]) -> list[Phrase]:
         and not isinstance(phrase, Assigned)
         and phrase.kind == "strength"
         and phrase.material is None
+        else phrase
+        for phrase in phrases
+    ]
+
+
+def series(phrases: list[Phrase]) -> list[Phrase]:
+    """ "the flasks hold 1, 2 and 5 mg/L of calcium": one strength for each of several solutions."""
+    result = list(phrases)
+    end = 0
+    for index, phrase in enumerate(phrases):
+        if index < end or not _is_strength(phrase):
+            continue
+        end = index + 1
+        while end < len(phrases) and _continues(phrases[end - 1], phrases[end]):
+            end += 1
+        run = [p for p in phrases[index:end] if isinstance(p, Claim)]
+        if len({p.measure.nominal for p in run}) > 1:
+            result[index:end] = [replace(p, material=run[-1].material, kind="series") for p in run]
+    return result
+
+
+def _is_strength(phrase: Phrase) -> bool:
+    return isinstance(phrase, Claim) and phrase.kind == "strength"
+
+
+def _continues(first: Phrase, second: Phrase) -> bool:
+    """Whether a second strength follows a nameless one in the same unit."""
+    if not (isinstance(first, Claim) and isinstance(second, Claim) and _is_strength(second)):
+        return False
+    return first.material is None and first.measure.unit == second.measure.unit
+
+
+def from_stock(phrases: list[Phrase]) -> list[Phrase]:
+    """ "From the stock pipette 5 mL", "dilute 25 mL from the stock": the amount is of the stock."""
+    stocks = [p for p in phrases if isinstance(p, Material) and p.role == "from" and p.words]
+    if len(stocks) != 1:
+        return phrases
+    stock = replace(stocks[0], role=None)
+    return [
+        replace(
+            phrase,
+            material=stock,
+            alternatives=tuple(replace(a, material=stock) for a in phrase.alternatives),
+        )
+        if isinstance(phrase, Dose)
+        and phrase.material is None
+        and phrase.role is None
+        and phrase.amount.dimension in ("mass", "volume")
         else phrase
         for phrase in phrases
     ]

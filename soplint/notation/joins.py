@@ -83,6 +83,7 @@ def _late_strengths(found: list[Part]) -> list[Part]:
     for part in found:
         target = _behind_link(result)
         if target is not None:
+            target = _named_before(result, target, part)
             merged = _with_fact(result[target], part)
             if merged is not None:
                 del result[target + 1 :]
@@ -93,6 +94,23 @@ def _late_strengths(found: list[Part]) -> list[Part]:
                 result[target], part = shared
         result.append(part)
     return result
+
+
+def _named_before(result: list[Part], target: int, part: Part) -> int:
+    """ "Calcium carbonate, primary standard, M = 100.09 g/mol": the fact is of the known name."""
+    loose = part.measure.dimension if isinstance(part, Loose) else ""
+    if loose not in ("molar-mass", "density") and not (
+        isinstance(part, Material) and not part.words and (part.molar_mass or part.density)
+    ):
+        return target
+    at = target
+    while at >= 0 and isinstance(found := result[at], Material):
+        if found.match is not None:
+            return at
+        if found.solution or at < 2 or kind_of(result[at - 1]) != "COMMA":
+            break
+        at -= 2
+    return target
 
 
 def _shared(target: Part, part: Part) -> tuple[Material, Material] | None:
@@ -229,7 +247,8 @@ def _alternatives(found: list[Part]) -> list[Part]:
     """ "1, 2 and 5 mL of the standard": one of them each time."""
     result: list[Part] = []
     for part in found:
-        if isinstance(part, Dose) and part.material is not None and part.material.words:
+        named = isinstance(part, Dose) and part.material is not None and bool(part.material.words)
+        if isinstance(part, Dose) and (named or part.material is None):
             others: list[Dose] = []
             at = len(result)
             while at >= 2 and kind_of(result[at - 1]) in ("COMMA", "AND", "OR"):
@@ -238,9 +257,10 @@ def _alternatives(found: list[Part]) -> list[Part]:
                     break
                 if before.amount.dimension != part.amount.dimension:
                     break
-                others.insert(0, replace(before, material=replace(part.material, finals=())))
+                own = replace(part.material, finals=()) if part.material is not None else None
+                others.insert(0, replace(before, material=own))
                 at -= 2
-            if others:
+            if (named and others) or len(others) > 1:
                 del result[at:]
                 start = others[0].start
                 part = replace(part, start=start, alternatives=(*others, *part.alternatives))

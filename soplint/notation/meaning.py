@@ -6,12 +6,11 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import replace
 
-from soplint.notation.closings import (
-    close,
-)
+from soplint.notation.closings import close, stands_before
 from soplint.notation.doses import Doses
 from soplint.notation.parts import Condition, Part, Role
 from soplint.notation.phrases import (
@@ -26,6 +25,8 @@ from soplint.notation.phrases import (
     ToVolume,
     Ware,
 )
+
+_LITRE = re.compile(r"l|litre|liter|ltr", re.IGNORECASE)
 
 
 class Meaning(Doses):
@@ -82,6 +83,8 @@ class Meaning(Doses):
         return used
 
     def _material(self, material: Material, index: int) -> None:
+        if self._per_litre(material):
+            return
         role = self._last_role()
         material = replace(material, role=role)
         last = self.phrases[-1] if self.phrases else None
@@ -175,6 +178,15 @@ class Meaning(Doses):
             SetPH(material.start, material.end, material.ph, material.temperature, reagents)
         )
         self.reagents = []
+
+    def _per_litre(self, material: Material) -> bool:
+        """ "15 g agar per litre (1.5 %)": what the brackets say of the dose before."""
+        if not _LITRE.fullmatch(material.words) or self.between not in (["PER"], ["SLASH"]):
+            return False
+        before = stands_before(self.phrases)
+        for strength in (*material.bracket, *material.finals):
+            self._claim(before, strength, "per litre")
+        return True
 
     def _nameless(self, material: Material, role: str | None, index: int) -> None:
         if material.ph is not None and not material.strengths:

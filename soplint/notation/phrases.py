@@ -90,7 +90,9 @@ class Claim:
     measure: Measure
     material: Material | None = None  # the thing whose strength is claimed
     # strength, pH, volume, fold; dilution (a ratio), share (of a whole), part ("5 mL of it"),
-    # diluted ("1 mM at 1X"), titre (a burette reading), worked (a figure of an arithmetic), value (of a symbol)
+    # series ("the flasks hold 1, 2 and 5 mg/L"), diluted ("1 mM at 1X"), per litre ("15 g agar
+    # per litre (1.5 %)"), titre (a burette reading), worked (a figure of an arithmetic), value
+    # (of a symbol)
     kind: str = "strength"
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 from soplint.intake.model import Text
@@ -12,7 +13,9 @@ from soplint.notation.parser import parse
 from soplint.notation.phrases import Sentence
 from soplint.notation.refine import refine
 from soplint.quantities import NumberStyle, find_measures
+from soplint.quantities.model import Measure
 from soplint.substances import NameIndex
+from soplint.substances.model import Match
 
 
 @dataclass(frozen=True, slots=True)
@@ -34,7 +37,9 @@ def read_sentence(
     measures = find_measures(text.chars, reading.style)
     if not measures and not always and not _may_command(text.chars):
         return Sentence(text, (), (), frozenset(), block, strict)
-    found = terminals(text.chars, measures, reading.names.find(text.chars))
+    names = reading.names.find(text.chars)
+    measures = _apart(text.chars, measures, names, reading.style)
+    found = terminals(text.chars, measures, names)
     found = refine(text.chars, found)
     tree, kept = parse(found)
     phrases = meaning(parts(text.chars, tree, kept))
@@ -44,6 +49,18 @@ def read_sentence(
     rest = tuple(m for m in measures if (m.start, m.end) not in seen)
     whole = tuple(sorted((*refined, *rest), key=lambda m: m.start))
     return Sentence(text, tuple(phrases), whole, kinds, block, strict)
+
+
+def _apart(
+    chars: str, measures: list[Measure], names: Sequence[Match], style: NumberStyle
+) -> list[Measure]:
+    """The quantities, read again where one begins inside a name: "Tween 20 500 µL"."""
+    cut = [
+        name for name in names for m in measures if name.start < m.start < name.end < m.end
+    ]  # fmt: skip
+    for name in cut:
+        chars = chars[: name.start] + "n" * (name.end - name.start) + chars[name.end :]
+    return find_measures(chars, style) if cut else measures
 
 
 _COMMAND_WORDS = (
