@@ -43,7 +43,7 @@ _OR_COMMAND = re.compile(r"\bor\s+(?:weigh|add|dissolve|use|dilute|take|mix)\b",
 
 
 def _finals_to_doses(phrases: tuple[Phrase, ...]) -> list[Phrase]:
-    """"Add 10 mL of 1 M DTT to 990 mL buffer (final 1 mM)": the final is that of the DTT."""
+    """ "Add 10 mL of 1 M DTT to 990 mL buffer (final 1 mM)": the final is that of the DTT."""
     result = list(phrases)
     for index in range(1, len(result)):
         giver, receiver = result[index - 1], result[index]
@@ -299,7 +299,7 @@ class Collector:
         return dose
 
     def _contents(self, taken: Taken) -> None:
-        """"..., 10 µL water (95 % formamide, 10 mM EDTA)": what the mixture holds."""
+        """ "..., 10 µL water (95 % formamide, 10 mM EDTA)": what the mixture holds."""
         material = taken.dose.material
         if material is None or not material.contents:
             return

@@ -53,7 +53,8 @@ def enter_all(ledger: Ledger, blocks: Sequence[ReadBlock], scope: Scope) -> Read
     for index, block in enumerate(blocks):
         aside = index in scope.aside
         for sentence in block.sentences:
-            _sentence(ledger, sentence, aside, reading, named)
+            heading = block.block.kind == "heading"
+            _sentence(ledger, sentence, aside, reading, named, heading)
         if block.table is not None and block.table.kind != "other":
             for variant in block.table.variants:
                 for measure in (variant.volume, variant.fold, variant.ph):
@@ -68,8 +69,9 @@ def _sentence(
     aside: bool,
     reading: Reading,
     named: set[tuple[int, int, int, int]],
+    heading: bool,
 ) -> None:
-    bound = {} if aside else dict(_bound(sentence))
+    bound = {} if aside else dict(_bound(sentence, heading))
     loose = [] if aside else _unbound(sentence)
     for measure in loose:
         if Stated(sentence.text, measure).key in named:
@@ -90,13 +92,18 @@ def _sentence(
         reading.unread.append((line, sentence.text.chars.strip(), sentence))
 
 
-def _bound(sentence: Sentence) -> Iterator[tuple[tuple[int, int], tuple[str | None, str]]]:
-    """Quantities that a phrase took up, with what they are quantities of and a first reason."""
+def _bound(
+    sentence: Sentence, heading: bool
+) -> Iterator[tuple[tuple[int, int], tuple[str | None, str]]]:
+    """Quantities that a phrase took up, with what they are quantities of and a first reason.
+
+    In a heading "rinse" and "wash" are names ("Citrate rinse, 5 mmol/L"), no commands.
+    """
     command: str | None = None
     for phrase in sentence.phrases:
         if isinstance(phrase, Command):
             command = phrase.kind
-        elif command not in _NOISE_COMMANDS:
+        elif heading or command not in _NOISE_COMMANDS:
             for measure, material in _quantities(phrase):
                 if measure.dimension in ROLES:
                     yield (measure.start, measure.end), (_name(material), _reason(material))

@@ -43,6 +43,8 @@ def nominal_relative(measure: Measure) -> float:
 
 def shown(measure: Measure) -> str:
     """A quantity as it goes into a working: value and unit, a range by its ends."""
+    if measure.dimension == "pH" and measure.value is not None:
+        return f"pH {measure.value:g}"
     unit = f" {measure.unit}" if measure.unit else ""
     if measure.value is None:
         return f"{measure.low:g} to {measure.high:g}{unit}"

@@ -64,7 +64,11 @@ def _fold_aim(preparation: Preparation, taken: Taken) -> Stated | None:
     for target in title.folds if title is not None and title.source != "document" else ():
         assert target.material is not None
         shared = tokens(target.material.words) & tokens(material.words)
-        if shared and len(title.folds if title else ()) == 1 and len(title.targets if title else ()) > 0:
+        if (
+            shared
+            and len(title.folds if title else ()) == 1
+            and len(title.targets if title else ()) > 0
+        ):
             return target.stated
     if title is not None and title.fold is not None and title.source != "document":
         alike = bool(tokens(title.words) & tokens(material.words))

@@ -302,7 +302,7 @@ _WORKING = re.compile(r"\b(final|working|use|1\s?[x×])\b", re.IGNORECASE)
 
 
 def _at_its_fold(title: Title, above: Title) -> Title:
-    """"1x: 137 mM NaCl, ..." above the list of a 10X stock: strengths at another fold."""
+    """ "1x: 137 mM NaCl, ..." above the list of a 10X stock: strengths at another fold."""
     own = title.fold.measure if title.fold is not None else None
     if own is None and _WORKING.search(title.words) and above.fold is not None:
         own = replace(above.fold.measure, value=1.0, low=1.0, high=1.0)

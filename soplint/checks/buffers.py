@@ -11,7 +11,7 @@ from soplint.bench.numbers import shown
 from soplint.causes import Cause
 from soplint.checks.registry import Disagreement, Judgement, rule
 from soplint.checks.wording import judgement
-from soplint.findings.model import Finding, Interval
+from soplint.findings.model import Finding, Interval, Related
 
 _MINOR_GAP = 0.3  # beyond the allowance by less than this: minor
 _RANGE = 1.0  # useful range: pKa' ± 1
@@ -58,35 +58,57 @@ def _grade(relation: Relation) -> str:
 @rule("buffers.computed-ph-meets-stated")
 def computed_ph_meets_stated(bench: Bench) -> Iterator[Judgement]:
     """The pH computed from everything in the vessel is the stated one."""
-    for relation, exchanged in _disagreeing(bench):
-        if exchanged:
-            continue
-        value = relation.computed.value
-        message = f"pH {relation.tested.measure.nominal:g} stated, pH {value:.2f} computed"
-        made = judgement(
-            bench, relation, "buffers.computed-ph-meets-stated", _grade(relation), message,
-            amend=False,
-        )  # fmt: skip
-        yield replace(made, finding=replace(made.finding, computed=f"pH {value:.2f}"))
+    for relations in _by_preparation(bench, exchanged=False):
+        worst = max(relations, key=lambda r: abs(r.deviation))
+        value = worst.computed.value
+        message = f"pH {worst.tested.measure.nominal:g} stated, pH {value:.2f} computed"
+        yield _judgement(bench, worst, relations, "buffers.computed-ph-meets-stated", message, None)
 
 
 @rule("buffers.pair-ratio-meets-ph")
 def pair_ratio_meets_ph(bench: Bench) -> Iterator[Judgement]:
     """Acid form and base form stand in the ratio that the pH needs."""
-    for relation, exchanged in _disagreeing(bench):
-        if not exchanged:
-            continue
-        value = relation.computed.value
+    cause = Cause("swapped-pair", "amounts of acid form and base form exchanged", True)
+    for relations in _by_preparation(bench, exchanged=True):
+        worst = max(relations, key=lambda r: abs(r.deviation))
+        value = worst.computed.value
         message = (
-            f"amounts of the pair give pH {value:.2f}, not {relation.tested.measure.nominal:g};"
+            f"amounts of the pair give pH {value:.2f}, not {worst.tested.measure.nominal:g};"
             " exchanged they fit"
         )
-        cause = Cause("swapped-pair", "amounts of acid form and base form exchanged", True)
-        made = judgement(
-            bench, relation, "buffers.pair-ratio-meets-ph", _grade(relation), message, cause,
-            amend=False,
-        )  # fmt: skip
-        yield replace(made, finding=replace(made.finding, computed=f"pH {value:.2f}"))
+        yield _judgement(bench, worst, relations, "buffers.pair-ratio-meets-ph", message, cause)
+
+
+def _by_preparation(bench: Bench, exchanged: bool) -> Iterator[list[Relation]]:
+    """Disagreeing pH statements, together for each preparation: one cause, one finding."""
+    groups: dict[int, list[Relation]] = {}
+    for relation, swapped in _disagreeing(bench):
+        if swapped is exchanged:
+            groups.setdefault(id(relation.preparation), []).append(relation)
+    yield from groups.values()
+
+
+def _judgement(
+    bench: Bench,
+    worst: Relation,
+    relations: list[Relation],
+    name: str,
+    message: str,
+    cause: Cause | None,
+) -> Judgement:
+    made = judgement(bench, worst, name, _grade(worst), message, cause, amend=False)
+    others = [r for r in relations if r is not worst]
+    also = tuple(
+        Related(r.tested.span, shown(r.tested.measure), "the same pH is stated here")
+        for r in others
+    )
+    finding = replace(
+        made.finding,
+        computed=f"pH {worst.computed.value:.2f}",
+        related=also + made.finding.related,
+    )
+    more = tuple(Disagreement(r.tested, r.computed, r.working) for r in others)
+    return Judgement(finding, made.disproved + more)
 
 
 @rule("buffers.target-near-pka")

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from soplint.bench import Bench, Relation, Stated
 from soplint.causes import Cause
 from soplint.checks.registry import Disagreement, Judgement
@@ -51,9 +53,32 @@ def computed_text(relation: Relation) -> str:
     value = relation.computed.value
     if value is None:
         return f"{relation.computed.low:g} to {relation.computed.high:g} {relation.computed.unit}"
-    if relation.tested.measure.value is None:
-        return show(value, relation.tested.measure.unit)
-    return format_like(value, relation.tested.measure)
+    measure = relation.tested.measure
+    if measure.value is None:
+        return show(value, measure.unit)
+    neighbour = _neighbour_unit(measure.unit, value / measure.value if measure.value else 0.0)
+    if neighbour is not None:
+        unit, factor = neighbour
+        return format_like(value * factor, replace(measure, unit=unit))
+    return format_like(value, measure)
+
+
+# Units a thousand times larger, for a slip of the prefix.
+_LARGER = {
+    **{"mg": "g", "µg": "mg", "ng": "µg", "mL": "L", "µL": "mL", "nL": "µL", "g": "kg"},
+    **{"mM": "M", "µM": "mM", "nM": "µM", "mmol/L": "mol/L", "µmol/L": "mmol/L"},
+    **{"mg/L": "g/L", "µg/L": "mg/L", "µg/mL": "mg/mL", "ng/mL": "µg/mL", "ppb": "ppm"},
+}
+_SMALLER = {larger: smaller for smaller, larger in _LARGER.items()}
+
+
+def _neighbour_unit(unit: str, ratio: float) -> tuple[str, float] | None:
+    """The unit that the figure stands in rightly when computed / stated is a thousand or its inverse."""
+    if abs(ratio / 1000 - 1) < 0.02 and unit in _LARGER:
+        return _LARGER[unit], 1e-3
+    if abs(ratio * 1000 - 1) < 0.02 and unit in _SMALLER:
+        return _SMALLER[unit], 1e3
+    return None
 
 
 def amendment(relation: Relation) -> Amendment | None:
@@ -64,8 +89,7 @@ def amendment(relation: Relation) -> Amendment | None:
     volume = relation.volume
     if volume is not None and volume.provenance == "weak":
         return None
-    replacement = format_like(relation.computed.value, measure)
-    return Amendment(relation.tested.span, replacement)
+    return Amendment(relation.tested.span, computed_text(relation))
 
 
 def related(relation: Relation) -> tuple[Related, ...]:
