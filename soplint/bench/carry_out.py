@@ -14,6 +14,7 @@ from soplint.bench.examples import example_relations
 from soplint.bench.facts import Facts
 from soplint.bench.labels import equivalent_relation, label_relation, molar_mass_relation
 from soplint.bench.ledger import Ledger
+from soplint.bench.more import more_relations
 from soplint.bench.parts import (
     fold_relations,
     ratio_relations,
@@ -66,6 +67,7 @@ def carry_out(blocks: Sequence[ReadBlock]) -> Bench:
     bench = Bench(blocks, scope, facts, ledger, enter_all(ledger, blocks, scope))
     for relation in _relations(bench):
         bench.relations.append(relation)
+    bench.relations.extend(more_relations(bench))
     _close(bench)
     return bench
 
