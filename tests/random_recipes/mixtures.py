@@ -113,11 +113,18 @@ def _parts(rng: Random, litres: list[float], *, fold: float = 1.0) -> tuple[list
 # Groups that precipitate with each other: no one would mix them.
 _APART = (("ca", "phosphate sulf po4 so4 carbonate naf"), ("mg", "phosphate po4 naf carbonate"))
 
+# Stocks under the key of the solid that is the same substance (or its base).
+_SAME = {"sodium acetate": "naac", "tris-hcl": "tris"}
+
 
 def _names_clash(parts: list[Part]) -> bool:
     """The same substance twice, or two that precipitate."""
     words = [p.words.lower() for p in parts]
-    if len({w[:4] for w in words}) < len(words):
+    substances = {
+        p.named.reagent.key if p.named else _SAME.get(w, w)
+        for p, w in zip(parts, words, strict=True)
+    }
+    if len(substances) < len(parts):
         return True
     return any(
         one.startswith(metal)

@@ -318,6 +318,8 @@ def folds(rng: Random, recipe: Recipe) -> Slip | None:
     if recipe.extra and rng.random() < 0.5:
         made = _times(recipe.figures["u"], rng.choice((0.5, 2.0)))
         return Slip("fold", "u", frozenset({"factor-two"})) if made else None
+    if len(recipe.parts) < 3:
+        return None  # of two rows at different folds either may be the wrong one
     times = recipe.figures["x"].value
     part = rng.choice(recipe.parts)
     return _factor("fold of one row", rng, recipe, part, 1 / times)
@@ -388,11 +390,14 @@ def other(rng: Random, recipe: Recipe) -> Slip | None:
 
 def strength(rng: Random, recipe: Recipe) -> Slip | None:
     """A final strength or the strength of a stock that the amounts do not give."""
-    pool = [k for p in recipe.parts for k in (p.final, p.stock) if k]
+    pool = [(p, k) for p in recipe.parts for k in (p.final, p.stock) if k]
     if not pool or recipe.kind == "serial":
         return None
-    key = rng.choice(pool)
-    made = _times(recipe.figures[key], rng.choice((0.5, 0.6, 1.5, 2.0, 3.0)))
+    part, key = rng.choice(pool)
+    factor = rng.choice((0.5, 0.6, 1.5, 2.0, 3.0))
+    if _reads_right(recipe, part, 1 / factor):
+        return None
+    made = _times(recipe.figures[key], factor)
     return Slip("strength of a row", key) if made else None
 
 
