@@ -144,6 +144,8 @@ def _close(bench: Bench) -> None:
     """Enter what agrees; what disagrees is left to the checks."""
     broken = {r.tested.key for r in bench.relations if not r.agrees}
     for relation in bench.relations:
+        if relation.target is not None:
+            bench.ledger.enter(relation.target, relation.of)  # a strength without a name of its own
         if relation.agrees:
             bench.ledger.agree(relation.tested, relation.computed, relation.working)
             for stated in relation.inputs:

@@ -105,7 +105,7 @@ def _bound(
             command = phrase.kind
         elif heading or command not in _NOISE_COMMANDS:
             for measure, material in _quantities(phrase):
-                if measure.dimension in ROLES:
+                if measure.dimension in ROLES or measure.unit == "drop":
                     yield (measure.start, measure.end), (_name(material), _reason(material))
 
 

@@ -56,6 +56,8 @@ class Ledger:
     def enter(self, stated: Stated, of: str | None = None, reason: str = "given") -> None:
         """List a stated quantity; it stays not verified until a relation tests it."""
         role = ROLES.get(stated.measure.dimension, "other")
+        if stated.measure.unit == "drop":
+            role = "volume"
         line = self.lines.get(stated.key)
         if line is None:
             self.lines[stated.key] = Line(stated, of, role, reason=reason)

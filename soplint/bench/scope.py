@@ -133,7 +133,7 @@ class _Walker:
         """Whether the block at ``index`` opens a scope: a bold line, "Buffer A:", a nesting item."""
         read = self.blocks[index]
         block = read.block
-        if len(read.sentences) != 1 or not block.text.chars.strip():
+        if len(read.sentences) != 1 or not any(c.isalpha() for c in block.text.chars):
             return False
         phrases = read.sentences[0].phrases
         if any(_is_recipe(phrase) for phrase in phrases):
@@ -270,6 +270,8 @@ def inherit(chain: Sequence[Title]) -> Title:
             break
         if title.volume is None and above.volume is not None:
             title = replace(title, volume=above.volume)
+    if title.bare and title.volume is not None and len(chain) > 1 and chain[0].volume is not None:
+        title = replace(title, words=chain[1].words)  # "Per 30 mL:" names nothing
     return title
 
 
