@@ -19,9 +19,9 @@ from soplint.quantities.model import Measure
 from soplint.substances.model import Match
 
 _WORD = re.compile(
-    r"[wvmWVM]\s?/\s?[wvmWVM](?:\s?/\s?[wvmWVM])*(?![\w/])|[^\W\d_](?:[\w'’]|\.(?=\w))*(?:\([IV]+\))?\.?|->|-->|=>|→|\S"
+    r"[wvmWVM]\s?/\s?[wvmWVM](?:\s?/\s?[wvmWVM])*(?![\w/])|w/(?=\s)|[^\W\d_](?:[\w'’]|\.(?=\w))*(?:\([IV]+\))?\.?|->|-->|=>|→|\S"
 )
-_BASIS = re.compile(r"[wvm]\s?/", re.IGNORECASE)  # "w/v"; settled by refine
+_BASIS = re.compile(r"[wvm]\s?/\s?[wvm]", re.IGNORECASE)  # "w/v"; settled by refine
 _SEPARATORS = {
     ",": "COMMA",
     ";": "SEMICOLON",
@@ -48,7 +48,7 @@ _SEPARATORS = {
 }
 
 # Symbols of quantities, as they stand before "=": "m", "V2", "c(NaOH)", "V_total".
-_SYMBOL = re.compile(r"[mncCVvwWfFtTNQM](?:_\w{1,12}|\d{1,2}|[₀-₉]{1,2})?")
+_SYMBOL = re.compile(r"[A-Za-wyz](?:_\w{1,12}|\d{1,2}|[₀-₉]{1,2})?")
 _ASSIGNS = re.compile(r"\s*(?:\([^()=]{1,40}\))?\s*=")
 # What may stand before a symbol; after a word it is the name of something: "buffer A = ...".
 _BEFORE_SYMBOL = {

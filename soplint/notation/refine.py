@@ -67,16 +67,28 @@ def refine(chars: str, found: list[Terminal]) -> list[Terminal]:
 
 # Facts about a substance stand beside its name, with or without their symbol: "M = 58.44 g/mol".
 _FACTS = {"MOLARMASS", "DENSITY", "PH"}
+_OF_SOMETHING = {"NAME", "WATER", "SOLUTION", "OTHER", "OF"}
 
 
 def _facts_unassigned(found: list[Terminal]) -> list[Terminal]:
-    """The terminals without the symbol and sign before a fact about a substance."""
-    drop: set[int] = set()
-    for index in range(len(found) - 2):
-        if found[index].kind == "SYMBOL" and found[index + 1].kind == "EQUALS":
-            if found[index + 2].kind in _FACTS:
-                drop.update((index, index + 1))
-    return [terminal for index, terminal in enumerate(found) if index not in drop]
+    """The terminals without the symbol and sign before a fact about a substance.
+
+    A letter before the amount of something is no symbol: "A = 5 mL of KBr".
+    """
+    result: list[Terminal] = []
+    drop = 0
+    for index, terminal in enumerate(found):
+        if drop:
+            drop -= 1
+            continue
+        if terminal.kind == "SYMBOL" and _kind_at(found, index + 1) == "EQUALS":
+            if _kind_at(found, index + 2) in _FACTS:
+                drop = 1
+                continue
+            if _kind_at(found, index + 3) in _OF_SOMETHING:
+                terminal = replace(terminal, kind="OTHER")
+        result.append(terminal)
+    return result
 
 
 def _bases(chars: str, found: list[Terminal]) -> list[Terminal]:
@@ -151,7 +163,14 @@ def _parts_of_whole(chars: str, found: list[Terminal]) -> list[Terminal]:
     for index in range(len(found) - 2):
         terminal = found[index]
         measure = terminal.measure
-        if measure is None or terminal.kind not in ("NUMBER", "VOLUMES"):
+        if measure is None or terminal.kind not in ("NUMBER", "VOLUMES", "FOLD"):
+            continue
+        if terminal.kind == "FOLD":
+            if chars[found[index + 1].start :].lower().startswith("vol"):
+                # "3x volume of ethanol"
+                parts = replace(measure, dimension="volumes", unit="vol")
+                result[index] = replace(terminal, kind="VOLUMES", measure=parts)
+                result[index + 1] = replace(found[index + 1], kind="OF")
             continue
         if found[index + 1].kind == "OF" and found[index + 2].kind == "FINAL":
             share = replace(measure, dimension="volumes", unit="vol")
@@ -169,7 +188,10 @@ def _nouns(chars: str, found: list[Terminal]) -> list[Terminal]:
     result = list(found)
     for index in range(1, len(found)):
         terminal = found[index]
-        if _NOUN.fullmatch(chars[terminal.start : terminal.end].rstrip(".")) and terminal.measure is None:
+        if (
+            _NOUN.fullmatch(chars[terminal.start : terminal.end].rstrip("."))
+            and terminal.measure is None
+        ):
             before = found[index - 1]
             beside = not chars[before.end : terminal.start].strip(" -")
             if before.kind in _NAMED and beside:

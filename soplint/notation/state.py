@@ -80,6 +80,8 @@ class State:
             self._part_of(last)
         elif role.kind == "FINAL" and isinstance(last, (Material, Dose)):
             self._said_final(last)
+        elif role.kind == "EQUALS" and self._equates(role):
+            self.phrases.append(Command(role.start, role.end, "EQUIVALENT"))
         elif (
             role.kind == "EQUALS"
             and self.phrases
@@ -95,6 +97,21 @@ class State:
                 self._command(Command(role.start, role.end, "THEN"))
         elif role.kind == "OPTIONAL":
             self.phrases.append(Command(role.start, role.end, "OPTIONAL"))
+
+    def _equates(self, role: Role) -> bool:
+        """ "1 mL of silver nitrate 0.02 mol/L = 0.709 mg chloride": what a titrant stands for."""
+        last = self.phrases[-1] if self.phrases else None
+        after = self.found[self.found.index(role) + 1 :][:1]
+        return (
+            isinstance(last, Dose)
+            and last.amount.dimension == "volume"
+            and last.material is not None
+            and bool(last.material.strengths)
+            and bool(after)
+            and isinstance(after[0], Dose)
+            and after[0].amount.dimension in ("mass", "amount")
+            and after[0].material is not None
+        )
 
     def _said_final(self, last: Material | Dose) -> None:
         """ "EDTA 5 mM final": the strengths beside the name are those of the mixture."""
