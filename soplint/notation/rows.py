@@ -43,4 +43,6 @@ class RecipeTable:
     rows: tuple[Row, ...]
     head: tuple[Text, ...]
     caption: Text | None = None
-    kind: str = "recipe"  # recipe; list (reagents with facts, no amounts); other (nothing to recompute)
+    kind: str = (
+        "recipe"  # recipe; list (reagents with facts, no amounts); other (nothing to recompute)
+    )
