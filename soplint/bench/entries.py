@@ -7,7 +7,7 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, field
 
 from soplint.bench.ledger import ROLES, Ledger
-from soplint.bench.preparation import Stated
+from soplint.bench.preparation import Preparation, Stated
 from soplint.bench.scope import Scope
 from soplint.notation.document import ReadBlock
 from soplint.notation.phrases import (
@@ -60,7 +60,21 @@ def enter_all(ledger: Ledger, blocks: Sequence[ReadBlock], scope: Scope) -> Read
                 for measure in (variant.volume, variant.fold, variant.ph):
                     if measure is not None:
                         ledger.enter(Stated(variant.head, measure))
+    for preparation in scope.preparations:
+        _enter_title(ledger, preparation)
     return reading
+
+
+def _enter_title(ledger: Ledger, preparation: Preparation) -> None:
+    """What a title, a lead-in or the flask in use says, wherever no phrase has listed it."""
+    title, volume = preparation.title, preparation.volume
+    if volume is not None and volume.stated is not None:
+        ledger.enter(volume.stated)
+    if title is None:
+        return
+    for stated in (title.volume, title.ph, title.fold, *(t.stated for t in title.targets)):
+        if stated is not None:
+            ledger.enter(stated)
 
 
 def _sentence(

@@ -132,6 +132,15 @@ def sum_relations(preparation: Preparation) -> Iterator[Relation]:
         yield _too_much(preparation, volume, poured, total, slack)
 
 
+def fills_up(preparation: Preparation) -> bool:
+    """Whether poured parts, water among them, make up the stated volume by themselves."""
+    volume = preparation.volume
+    if volume is None or volume.litres <= 0 or not _all_poured(preparation):
+        return False
+    total = sum(t.dose.amount.base for t in preparation.taken)
+    return abs(total / volume.litres - 1) <= CONTRACTION
+
+
 def _all_poured(preparation: Preparation) -> bool:
     """Whether every part is a volume and water is one of them: the sum is the volume."""
     return (

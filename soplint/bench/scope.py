@@ -268,7 +268,8 @@ def inherit(chain: Sequence[Title]) -> Title:
                 text=title.text if title.volume else above.text,
             )
             break
-        if title.volume is None and above.volume is not None:
+        lends = above.source != "document" or not (above.targets or above.ph)
+        if title.volume is None and above.volume is not None and lends:
             title = replace(title, volume=above.volume)
     if title.bare and title.volume is not None and len(chain) > 1 and chain[0].volume is not None:
         title = replace(title, words=chain[1].words)  # "Per 30 mL:" names nothing

@@ -481,7 +481,7 @@ def _counted(taken: Taken, strength: Measure) -> list[Share]:
 def _by_mass(taken: Taken, strength: Measure) -> Iterator[Share]:
     """A mass (or neat volume) of something without a formula."""
     amount = taken.dose.amount
-    if amount.dimension == "mass":
+    if amount.dimension == "mass" and strength.basis != "v/v":
         scale = 1000.0 if strength.dimension in ("fraction", "ppm") else 1.0
         yield Share(taken, amount.base / scale, relative(amount, 0.05), shown(amount), "mass")
     elif amount.dimension == "volume" and strength.dimension == "fraction":
@@ -516,5 +516,10 @@ def _as_shares(taken: Taken, portion: Portion, strength: Measure) -> Iterator[Sh
                 taken, volume.base, relative(volume, ALIQUOT), shown(volume), "neat",
                 "v/v", True, portion.substance,
             )  # fmt: skip
+        liquid = portion.substance
+        if grams is not None and strength.basis == "v/v" and volume.dimension == "mass":
+            if liquid is not None and liquid.density and liquid.state == "liquid":
+                litres = grams / 1000 / liquid.density
+                yield share(litres, f"{portion.working} / {liquid.density:.3g} g/mL", "v/v")
         if grams is not None and strength.basis in (None, "w/v", "w/w"):
             yield share(grams / 1000, f"{grams:.4g} g", portion.reading or "w/v")

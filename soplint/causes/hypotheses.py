@@ -13,7 +13,7 @@ from dataclasses import dataclass
 from soplint.bench import Bench, Relation
 from soplint.bench.numbers import shown
 from soplint.bench.portions import equivalents
-from soplint.substances import catalogue
+from soplint.substances import catalogue, concentrated
 from soplint.substances.model import Substance
 
 Hypothesis = tuple[str, float, str]
@@ -62,7 +62,23 @@ def related_forms(substance: Substance) -> list[Substance]:
     ]
 
 
-_CATIONS = ("Na", "K", "Li", "Mg", "Ca", "Sr", "Ba", "Mn", "Zn", "Cu", "Fe", "Co", "Ni", "Ag", "NH4")
+_CATIONS = (
+    "Na",
+    "K",
+    "Li",
+    "Mg",
+    "Ca",
+    "Sr",
+    "Ba",
+    "Mn",
+    "Zn",
+    "Cu",
+    "Fe",
+    "Co",
+    "Ni",
+    "Ag",
+    "NH4",
+)
 
 
 def _cations(substance: Substance) -> frozenset[str]:
@@ -119,17 +135,12 @@ def assay_ignored(case: Case) -> Iterator[Hypothesis]:
     substance = case.relation.substance
     if substance is None or case.relation.kind != "concentrate":
         return
-    if substance.strength and substance.strength < 99 and substance.density:
-        yield (
-            "assay-ignored",
-            substance.strength / 100,
-            "the strength of the concentrate was not applied",
-        )
-        yield (
-            "assay-ignored",
-            substance.strength / 100 * substance.density,
-            "neither strength nor density of the concentrate was applied",
-        )
+    for sold in concentrated(substance):
+        share = sold.percent_w_w / 100
+        if share < 0.99:
+            yield "assay-ignored", share, "the strength of the concentrate was not applied"
+            both = "neither strength nor density of the concentrate was applied"
+            yield "assay-ignored", share * sold.density, both
     if substance.density:
         yield "weight-for-volume", substance.density, "grams were written as millilitres"
 

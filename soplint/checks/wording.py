@@ -5,10 +5,11 @@ from __future__ import annotations
 from dataclasses import replace
 
 from soplint.bench import Bench, Relation, Stated
+from soplint.bench.parts import fills_up
 from soplint.causes import Cause
 from soplint.checks.registry import Disagreement, Judgement
 from soplint.findings.model import Amendment, Finding, Related
-from soplint.quantities.writing import format_like, show
+from soplint.quantities.writing import format_like, format_number_like, show
 
 
 def judgement(
@@ -87,9 +88,27 @@ def amendment(relation: Relation) -> Amendment | None:
     if measure.value is None or relation.computed.value is None or relation.computed.value <= 0:
         return None
     volume = relation.volume
-    if volume is not None and volume.provenance == "weak":
+    if volume is not None and volume.provenance in ("weak", "sum"):
+        return None  # the volume is not certain, or moves with the amount
+    if relation.kind == "ratio" and volume is None:
         return None
-    return Amendment(relation.tested.span, computed_text(relation))
+    if relation.preparation is not None and fills_up(relation.preparation):
+        return None  # the water would have to change as well
+    return Amendment(relation.tested.span, _in_its_own_writing(relation))
+
+
+def _in_its_own_writing(relation: Relation) -> str:
+    """The corrected number in the spelling of unit and spacing that the text has."""
+    measure, value = relation.tested.measure, relation.computed.value
+    assert value is not None
+    written = relation.tested.text.chars[measure.start : measure.end]
+    if relation.computed.unit != measure.unit or measure.numeral == (0, 0):
+        return format_like(value, replace(measure, unit=relation.computed.unit))
+    if _neighbour_unit(measure.unit, value / measure.value if measure.value else 0.0):
+        return computed_text(relation)
+    comma = "," in written
+    first, last = (offset - measure.start for offset in measure.numeral)
+    return written[:first] + format_number_like(value, measure, comma) + written[last:]
 
 
 def related(relation: Relation) -> tuple[Related, ...]:

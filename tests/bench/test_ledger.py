@@ -187,8 +187,6 @@ LISTED = {
     ),
 }
 LISTED_OPEN = {
-    "flask filled to the mark": "the flask is listed only where a relation uses it",
-    "strength and volume on lines of their own": "the volume of a lead-in is in no ledger",
     "table of standards": "a column of results is not read and not counted",
 }
 

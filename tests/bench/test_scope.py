@@ -89,9 +89,6 @@ OPEN: dict[str, tuple[str, frozenset[str]]] = {
     ),
 }
 OPEN_LEAKS = {
-    "from the document title into one of several preparations": (
-        "a document title with a target lends its volume although several solutions are made"
-    ),
 }
 
 

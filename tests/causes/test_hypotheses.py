@@ -201,7 +201,6 @@ def test_a_dose_is_not_its_own_neighbour():
     assert cause.alone
 
 
-@pytest.mark.xfail(strict=True, reason="strength of the row (96 %), not of the reading (98 %)")
 def test_assay_of_the_reading_taken():
     """98.1 g of pure acid written as millilitres of the concentrate, whatever its strength."""
     cause = cause_of(SULFURIC, "98.1 mL")
