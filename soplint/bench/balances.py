@@ -13,6 +13,7 @@ from itertools import islice, product
 
 from soplint.bench.facts import Facts
 from soplint.bench.numbers import EXACT, nominal_relative, relative, shown
+from soplint.bench.portions import candidates
 from soplint.bench.preparation import (
     Claimed,
     FinalVolume,
@@ -146,6 +147,8 @@ def final_strengths(dose: Dose) -> tuple[Measure, ...]:
     if len(beside) > 1 and len({m.dimension for m in beside}) == 1:
         stock = max(beside, key=lambda m: m.base)
         finals.extend(m for m in beside if m is not stock)
+    if not beside and len(bracket) > 1 and len({m.dimension for m in bracket}) == 1:
+        finals.extend(bracket[1:])  # "1 mL KCl (3 M) (10 mM)": stock, then final
     if beside:
         same = [m for m in bracket if m.dimension == beside[0].dimension]
         finals.extend(m for m in same if m.base < beside[0].base)
@@ -159,7 +162,7 @@ def _either(dose: Dose) -> tuple[Measure, ...]:
         return ()
     beside = [m for m in material.strengths if m.dimension in _STRENGTHS]
     bracket = [m for m in material.bracket if m.dimension in _STRENGTHS]
-    return tuple(bracket if not beside else ())
+    return tuple(bracket if not beside and len(bracket) == 1 else ())
 
 
 # --- testing --------------------------------------------------------------------------------------
@@ -237,7 +240,76 @@ def _test(
             sure = sure and group.sure and not _many(group)
     if target.source == "maybe":
         return None
-    return _relation(preparation, first, ways) if first is not None and sure else None
+    if first is None:
+        return _solid_by_volume(preparation, target, volume, facts, order, scale)
+    if not sure:
+        return None
+    return _other_digits(preparation, first, ways) or _relation(preparation, first, ways)
+
+
+def _other_digits(preparation: Preparation, balance: Balance, ways: int) -> Relation | None:
+    """The relation with the other reading of "1,250": it may close with that."""
+    if len(balance.chosen) != 1:
+        return None
+    share = balance.chosen[0]
+    amount = share.taken.dose.amount
+    for value in amount.alternatives:
+        factor = value / amount.nominal if amount.nominal else 0.0
+        if not factor:
+            continue
+        dose = replace(
+            share.taken.dose,
+            amount=replace(amount, value=value, low=amount.low * factor, high=amount.high * factor),
+        )
+        other = replace(
+            share, quantity=share.quantity * factor, taken=replace(share.taken, dose=dose)
+        )
+        changed = replace(balance, chosen=(other,))
+        if changed.closes:
+            return _relation(preparation, changed, ways)
+    return None
+
+
+_AS_MASS = {"mL": ("g", 1.0), "µL": ("mg", 1e-3), "L": ("kg", 1000.0)}
+
+
+def _solid_by_volume(
+    preparation: Preparation,
+    target: Target,
+    volume: FinalVolume | None,
+    facts: Facts,
+    order: int,
+    scale: float,
+) -> Relation | None:
+    """ "Add 8.49 mL silver nitrate": the figure fits as grams, a solid is not taken by volume."""
+    for index, taken in enumerate(preparation.taken):
+        dose = taken.dose
+        if dose.material is None or dose.amount.unit not in _AS_MASS or dose.material.strengths:
+            continue
+        meant = candidates(dose.material)
+        if not meant or dose.material.solution or any(s.state != "solid" for s in meant):
+            continue
+        unit, factor = _AS_MASS[dose.amount.unit]
+        amount = replace(dose.amount, dimension="mass", unit=unit, factor=factor)
+        weighed = replace(taken, dose=replace(dose, amount=amount))
+        others = list(preparation.taken)
+        others[index] = weighed
+        aim = target
+        if target.material is dose.material:
+            aim = replace(target, material=weighed.dose.material)
+        relation = _test(replace(preparation, taken=others), aim, volume, facts, order, scale)
+        if relation is not None and relation.agrees and relation.taken is not None:
+            return replace(
+                relation,
+                kind="dimension",
+                tested=taken.stated,
+                agrees=False,
+                exact=True,
+                computed=replace(relation.computed, unit=unit),
+                preparation=preparation,
+                taken=taken,
+            )
+    return None
 
 
 def _many(group: Bearers) -> bool:

@@ -203,6 +203,9 @@ class Collector:
             self.equivalents.append((sentence, phrase))
         elif isinstance(phrase, Material):
             self._mention(phrase)
+            if command == "PREPARE" and self._already_taken(sentence):
+                self._obtained(text, phrase)
+                return
             bracketed = _bracketed_dose(phrase, command)
             if bracketed is not None:
                 self._dose(sentence, bracketed, command)
@@ -254,6 +257,17 @@ class Collector:
             self._begin_after_make_up(taken, command)
         else:
             self.pending.append(taken)
+
+    def _already_taken(self, sentence: Sentence) -> bool:
+        """Whether this sentence has taken something: what it "obtains" is the result."""
+        return bool(self.current.taken) and self.current.taken[-1].step == self.step
+
+    def _obtained(self, text: Text, material: Material) -> None:
+        for strength in material.strengths:
+            kind = "fold" if strength.dimension == "fold" else "strength"
+            named = None if material.solution else material
+            claim = Claim(strength.start, material.end, strength, named, kind)
+            self.current.claimed.append(Claimed(text, claim, self.step))
 
     def _mention(self, material: Material) -> None:
         if material.match is not None and not material.is_water and not material.solution:
@@ -328,6 +342,12 @@ class Collector:
                 self.current.taken.extend(pending)
             self.pending = []
         self.current.made.append(Made(text, to, self.step, len(self.current.taken)))
+        if to.diluent is not None:
+            for strength in (*to.diluent.bracket, *to.diluent.finals):
+                # "to 100 mL with water (200 mg/L)" speaks of what comes of it
+                if strength.dimension in ("molarity", "mass-concentration", "fraction", "ppm"):
+                    claim = Claim(strength.start, strength.end, strength)
+                    self.current.claimed.append(Claimed(text, claim, self.step))
         self.closed = bool(self.current.taken) or self.kind == "line"
 
     # --- tables ------------------------------------------------------------------------------------

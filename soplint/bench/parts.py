@@ -39,6 +39,11 @@ def _stock_fold(taken: Taken, facts: Facts, order: int, preparation: Preparation
     folds = [m for m in material.strengths if m.dimension == "fold"]
     if folds:
         return max(folds, key=lambda m: m.base)
+    title = preparation.title
+    bracket = [m for m in material.bracket if m.dimension == "fold"]
+    if len(bracket) == 1 and title is not None and title.fold is not None:
+        if bracket[0].base > title.fold.measure.base:
+            return bracket[0]
     if material.match is not None or not (material.solution or tokens(material.words)):
         return None
     solution = facts.solution(material, order, preparation.section)
@@ -49,7 +54,9 @@ def _fold_aim(preparation: Preparation, taken: Taken) -> Stated | None:
     """The fold that this stock shall have in the preparation, where the text says it."""
     material = taken.dose.material
     assert material is not None
-    beside = [m for m in (*material.finals, *material.bracket) if m.dimension == "fold"]
+    stock = any(m.dimension == "fold" for m in material.strengths)
+    printed = (*material.finals, *(material.bracket if stock else ()))
+    beside = [m for m in printed if m.dimension == "fold"]
     if len(beside) == 1:
         return Stated(taken.text, beside[0])
     folds = [m for m in material.strengths if m.dimension == "fold"]
@@ -122,6 +129,7 @@ def sum_relations(preparation: Preparation) -> Iterator[Relation]:
     total = sum(t.dose.amount.base for t in poured)
     slack = sum(t.dose.amount.base * relative(t.dose.amount, ALIQUOT) for t in poured)
     complete = preparation.total is not None and not preparation.made
+    complete = complete or _ends_in_total(preparation)
     if complete and all(t.dose.amount.dimension == "volume" for t in preparation.taken):
         yield _total(preparation, volume, poured, total, slack)
     elif total > volume.litres * (1 + CONTRACTION) + slack:
@@ -130,6 +138,14 @@ def sum_relations(preparation: Preparation) -> Iterator[Relation]:
         yield _total(preparation, volume, poured, total, slack + 0.01 * volume.litres)
     elif _complete_line(preparation) and total < volume.litres * (1 - CONTRACTION) - slack:
         yield _too_much(preparation, volume, poured, total, slack)
+
+
+def _ends_in_total(preparation: Preparation) -> bool:
+    """ "- 700 µL water, - Total: 1 mL": every part is poured and the sum is printed."""
+    if not preparation.made or not _poured_with_water(preparation):
+        return False
+    last = preparation.made[-1].to
+    return last.said_final and last.diluent is None and last.command in (None, "MIX", "ADD")
 
 
 def fills_up(preparation: Preparation) -> bool:
@@ -142,12 +158,14 @@ def fills_up(preparation: Preparation) -> bool:
 
 
 def _all_poured(preparation: Preparation) -> bool:
-    """Whether every part is a volume and water is one of them: the sum is the volume."""
-    return (
-        not preparation.made
-        and any(t.dose.material is not None and t.dose.material.is_water for t in preparation.taken)
-        and all(t.dose.amount.dimension == "volume" for t in preparation.taken)
-    )
+    """Whether nothing is made up, every part is a volume and water is one of them."""
+    return not preparation.made and _poured_with_water(preparation)
+
+
+def _poured_with_water(preparation: Preparation) -> bool:
+    return any(
+        t.dose.material is not None and t.dose.material.is_water for t in preparation.taken
+    ) and all(t.dose.amount.dimension == "volume" for t in preparation.taken)
 
 
 def _complete_line(preparation: Preparation) -> bool:

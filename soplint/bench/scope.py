@@ -144,6 +144,8 @@ class _Walker:
         if block.bold:
             return True
         colon = block.text.chars.rstrip().endswith(":")
+        if block.kind == "paragraph" and self._titles(read, index):
+            return True
         if block.kind == "item":
             return following.kind == "item" and following.level > block.level
         if following.table is not None:
@@ -152,6 +154,19 @@ class _Walker:
             names = any(isinstance(phrase, (Material, Dose)) for phrase in phrases)
             return colon or (names and len(block.text.chars) < 120 and not _commands(phrases))
         return colon and len(block.text.chars) < 100
+
+    def _titles(self, read: ReadBlock, index: int) -> bool:
+        """ "5X transfer buffer, 500 mL" on a line of its own, the recipe in the block below."""
+        chars = read.block.text.chars.strip()
+        phrases = read.sentences[0].phrases
+        if len(chars) > 110 or chars.endswith(".") or not _only_names(phrases):
+            return False
+        if not any(_carries(phrase) for phrase in phrases):
+            return False
+        if sum(isinstance(phrase, Dose) for phrase in phrases) > 1 or _divided(read):
+            return False
+        below = self.blocks[index + 1]
+        return below.table is not None or _doses(below)
 
     # --- contents --------------------------------------------------------------------------------
 
@@ -241,6 +256,13 @@ def _cover(blocks: Sequence[ReadBlock]) -> Block | None:
     if len(headings) < 2:
         return None
     first = headings[0]
+    titles = [
+        title_of(read.sentences[0])
+        for read in blocks
+        if read.block.kind == "heading" and read.sentences
+    ]
+    if titles and titles[0].targets and all(title.bare for title in titles[1:]):
+        return None  # "## Buffer (20 mM KCl)" over "### For 250 mL" and "### For 500 mL"
     below = all(other.level > first.level for other in headings[1:])
     return first if below or _DOCUMENT.search(first.text.chars) else None
 
@@ -459,6 +481,9 @@ def _one_line(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
     body = replace(read, sentences=(rest, *read.sentences[1:]))
     if isinstance(first, Dose):
         return _dose_first(read, body, first)
+    if isinstance(first, ToVolume) and first.said_final and len(head.phrases) > 1:
+        if _goes_on(head, first):  # "10 L: 9 L water, 100 mL stock A, ..."
+            return body, title_of(replace(head, phrases=(first,)), "line")
     if not isinstance(first, Material) or not first.words:
         return None
     phrases = [phrase for sentence in read.sentences for phrase in sentence.phrases]
@@ -507,7 +532,7 @@ def _named_by(title: Title, end: int) -> Title:
     return replace(title, words=title.text.chars[:end].strip())
 
 
-def _goes_on(sentence: Sentence, first: Dose) -> bool:
+def _goes_on(sentence: Sentence, first: Dose | ToVolume) -> bool:
     """Whether a colon or dash follows: "Borax 0.1 mol/L, 1 L: 38.1 g ..."."""
     return sentence.text.chars[first.end :].lstrip()[:1] in (":", "-", "–", "—")
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass, replace
+from functools import lru_cache
 
 from soplint.bench.facts import Component, Facts, Solution, same_substance, tokens
 from soplint.bench.numbers import ALIQUOT, relative, shown
@@ -271,12 +272,33 @@ def _of_system(
     if own is None:
         return []
     if any(s.acid_system in systems for s in candidates(own)):
-        return shares(taken, strength, facts)
+        return [_per_unit(share, systems) for share in shares(taken, strength, facts)]
     return [
         share
         for solution in _shelf(taken, facts, order, preparation)
         for share in _from_shelf(taken, solution, strength, lambda s: s.acid_system in systems)
     ]
+
+
+def _per_unit(share: Share, systems: frozenset[str]) -> Share:
+    """A share counted in units of the acid: borax brings four of borate."""
+    count = _units(share.substance.formula or "", systems) if share.substance is not None else 1.0
+    if count == 1.0 or share.label is not None:
+        return share
+    return replace(
+        share, quantity=share.quantity * count, working=f"{share.working} × {count:g}"
+    )
+
+
+@lru_cache(maxsize=256)
+def _units(formula: str, systems: frozenset[str]) -> float:
+    from soplint.equilibria import EquilibriumError, acid_systems_of
+
+    try:
+        found = acid_systems_of(formula)
+    except EquilibriumError:
+        return 1.0
+    return max((count for system, count in found.items() if system in systems), default=1.0)
 
 
 def _unnamed(
@@ -430,8 +452,10 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
     found: list[Share] = []
     if taken.dose.amount.dimension == "volume":
         labels = [m for m in material.strengths if m.dimension == strength.dimension]
-        if not labels and not material.finals:
-            labels = [m for m in material.bracket if m.dimension == strength.dimension]
+        if not labels:
+            bracket = [m for m in material.bracket if m.dimension == strength.dimension]
+            above = [m for m in bracket if m is not strength and m.base > strength.base]
+            labels = above if material.finals or len(bracket) > 1 else bracket
         label = max(labels, key=lambda m: m.base) if labels else None
         if label is not None and label is not strength:
             found.append(_diluted(taken, label))

@@ -30,6 +30,13 @@ _NUMBER = re.compile(r"^\s*(?:\d+(?:\.\d+)*|[a-zA-Z])[.)]\s+")
 WATER = Material(0, 0, "")
 
 
+def _sequestrant(material: Material) -> bool:
+    """EDTA and its like carry the label pH of their stock, not the pH of the mixture."""
+    return material.match is not None and any(
+        s.acid_system == "edta" for s in material.match.substances
+    )
+
+
 _PORTIONS = re.compile(
     r"\b(?:two|three|four|five|six|ten|\d+)\s+(?:[\w.-]+\s+){0,2}"
     r"(?:gels?|tubes?|plates?|portions?|aliquots?|dishes|bottles|vials)\b",
@@ -106,7 +113,7 @@ class _Title:
             material.match is not None or material.solution or material.strengths
         ):
             self.materials.append(material)
-        if material.ph is not None and self.ph is None:
+        if material.ph is not None and self.ph is None and not _sequestrant(material):
             self.ph = self._stated(material.ph)
         self.temperature = self.temperature or material.temperature
         for measure in material.bracket:

@@ -13,6 +13,7 @@ from dataclasses import dataclass
 from soplint.bench import Bench, Relation
 from soplint.bench.numbers import shown
 from soplint.bench.portions import equivalents
+from soplint.bench.preparation import Taken
 from soplint.substances import catalogue, concentrated
 from soplint.substances.model import Substance
 
@@ -30,12 +31,17 @@ class Case:
 def hydrates_and_salts(case: Case) -> Iterator[Hypothesis]:
     """The mass of another hydrate or salt form."""
     substance = case.relation.substance
-    if substance is None or not substance.molar_mass or case.relation.kind not in ("mass", "sum"):
+    if substance is None or not substance.molar_mass or case.relation.kind not in (
+        *("mass", "sum", "molar-mass"),
+    ):
         return
     for other in related_forms(substance):
         if other.molar_mass and other.state == "solid":
-            same = other.family == substance.family
-            kind = "other-hydrate" if same else "other-salt-form"
+            kind = "other-hydrate" if other.family == substance.family else "other-salt-form"
+            if kind == "other-salt-form" and _cations(other) not in (
+                *(_cations(substance), frozenset()),
+            ):
+                kind = "another-salt"
             yield (
                 kind,
                 other.molar_mass / substance.molar_mass,
@@ -56,7 +62,6 @@ def related_forms(substance: Substance) -> list[Substance]:
             or (
                 other.acid_system is not None
                 and other.acid_system == substance.acid_system
-                and _cations(other) in (_cations(substance), frozenset())
             )
         )
     ]
@@ -109,7 +114,7 @@ def other_volumes(case: Case) -> Iterator[Hypothesis]:
         for stated in (
             preparation.volume.stated if preparation.volume else None,
             preparation.title.volume if preparation.title else None,
-            *(t.stated for t in preparation.taken if t.solvent),
+            *(t.stated for t in preparation.taken if t.solvent or _is_water(t)),
         ):
             if stated is None or round(stated.measure.base, 9) in seen or stated.measure.base <= 0:
                 continue
@@ -119,6 +124,11 @@ def other_volumes(case: Case) -> Iterator[Hypothesis]:
                 stated.measure.base / volume.litres,
                 f"the amount fits {shown(stated.measure)} (line {stated.span.line})",
             )
+
+
+def _is_water(taken: Taken) -> bool:
+    material = taken.dose.material
+    return material is not None and material.is_water and taken.dose.amount.dimension == "volume"
 
 
 def normal_for_molar(case: Case) -> Iterator[Hypothesis]:
@@ -135,12 +145,18 @@ def assay_ignored(case: Case) -> Iterator[Hypothesis]:
     substance = case.relation.substance
     if substance is None or case.relation.kind != "concentrate":
         return
-    for sold in concentrated(substance):
-        share = sold.percent_w_w / 100
+    taken = case.relation.taken
+    material = taken.dose.material if taken is not None else None
+    printed = [m.base * 100 for m in (material.strengths if material else ()) if m.unit == "%"]
+    for percent, density in (
+        *((p, substance.density or 1.0) for p in printed),
+        *((sold.percent_w_w, sold.density) for sold in concentrated(substance)),
+    ):
+        share = percent / 100
         if share < 0.99:
             yield "assay-ignored", share, "the strength of the concentrate was not applied"
             both = "neither strength nor density of the concentrate was applied"
-            yield "assay-ignored", share * sold.density, both
+            yield "assay-ignored", share * density, both
     if substance.density:
         yield "weight-for-volume", substance.density, "grams were written as millilitres"
 

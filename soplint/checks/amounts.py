@@ -13,7 +13,7 @@ from soplint.checks.registry import Disagreement, Judgement, rule
 from soplint.checks.wording import computed_text, judgement
 from soplint.findings.model import Related
 
-_FORMS = ("other-hydrate", "other-salt-form")
+_FORMS = ("other-hydrate", "other-salt-form", "another-salt")
 
 
 def _open(bench: Bench, *kinds: str) -> Iterator[Relation]:
@@ -73,7 +73,8 @@ def columns_scale_alike(bench: Bench) -> Iterator[Judgement]:
             f"cell does not scale with its column: {_stated(relation)} stated,"
             f" {computed_text(relation)} computed"
         )
-        yield judgement(bench, relation, "amounts.columns-scale-alike", grade, message)
+        cause = likely_cause(relation, bench)
+        yield judgement(bench, relation, "amounts.columns-scale-alike", grade, message, cause)
 
 
 @rule("amounts.mass-gives-concentration")

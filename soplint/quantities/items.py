@@ -176,7 +176,8 @@ def _grouped(chars: str, numeral: Numeral, lead: Lead) -> tuple[Numeral, ReadUni
     if grouped is None or unit is None:
         return None
     if after == " " and grouped.value < 10_000_000:
-        last = float(chars[grouped.end - 3 : grouped.end]) if grouped.value.is_integer() else 0.0
+        group = chars[grouped.end - 3 : grouped.end]
+        last = float(group) if grouped.value.is_integer() and group.isdigit() else 0.0
         if last:
             grouped = grouped._replace(alternatives=(last,))
     return grouped, unit
