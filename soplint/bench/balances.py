@@ -126,7 +126,7 @@ def _finals(taken: Taken) -> Iterator[Target]:
     for measure in final_strengths(taken.dose):
         yield Target(Stated(taken.text, measure), material, "bracket", fold)
     for measure in _either(taken.dose):
-        yield Target(Stated(taken.text, measure), taken.dose.material, "maybe")
+        yield Target(Stated(taken.text, measure), taken.dose.material, "maybe", fold)
 
 
 # Strengths beside a mass that cannot be an assay of the thing weighed.
@@ -238,36 +238,36 @@ def _test(
         ways += 1
         if group.how != "any":
             sure = sure and group.sure and not _many(group)
-    if target.source == "maybe":
-        return None
     if first is None:
+        if target.source == "maybe" and target.fold is None:
+            return None  # "10 mL of NaF (0.5 mol/l)": the strength of what is taken
         return _solid_by_volume(preparation, target, volume, facts, order, scale)
-    if not sure:
+    if not sure or target.source == "maybe":
         return None
     return _other_digits(preparation, first, ways) or _relation(preparation, first, ways)
 
 
 def _other_digits(preparation: Preparation, balance: Balance, ways: int) -> Relation | None:
     """The relation with the other reading of "1,250": it may close with that."""
-    if len(balance.chosen) != 1:
-        return None
-    share = balance.chosen[0]
-    amount = share.taken.dose.amount
-    for value in amount.alternatives:
-        factor = value / amount.nominal if amount.nominal else 0.0
-        if not factor:
-            continue
-        dose = replace(
-            share.taken.dose,
-            amount=replace(amount, value=value, low=amount.low * factor, high=amount.high * factor),
-        )
-        other = replace(
-            share, quantity=share.quantity * factor, taken=replace(share.taken, dose=dose)
-        )
-        changed = replace(balance, chosen=(other,))
+    readings = [(share, *_other_shares(share)) for share in balance.chosen]
+    for chosen in islice(product(*readings), _MOST_READINGS):
+        changed = replace(balance, chosen=chosen)
         if changed.closes:
             return _relation(preparation, changed, ways)
     return None
+
+
+def _other_shares(share: Share) -> Iterator[Share]:
+    """The share under the other readings of its amount's digits."""
+    amount = share.taken.dose.amount
+    for value in amount.alternatives:
+        factor = value / amount.nominal if amount.nominal else 0.0
+        if factor:
+            changed = replace(
+                amount, value=value, low=amount.low * factor, high=amount.high * factor
+            )
+            taken = replace(share.taken, dose=replace(share.taken.dose, amount=changed))
+            yield replace(share, quantity=share.quantity * factor, taken=taken)
 
 
 _AS_MASS = {"mL": ("g", 1.0), "µL": ("mg", 1e-3), "L": ("kg", 1000.0)}

@@ -140,12 +140,18 @@ def _undosed(blocks: Sequence[ReadBlock]) -> Iterator[tuple[Sentence, Material]]
                         yield sentence, phrase.material
 
 
+# Relations that say nothing about one number alone.
+_STRUCTURAL = ("columns", "total", "volume", "ratio")
+
+
 def _close(bench: Bench) -> None:
     """Enter what agrees; what disagrees is left to the checks."""
     broken = {r.tested.key for r in bench.relations if not r.agrees}
     for relation in bench.relations:
         if relation.target is not None:
             bench.ledger.enter(relation.target, relation.of)  # a strength without a name of its own
+        if relation.agrees and relation.tested.key in broken and relation.kind in _STRUCTURAL:
+            continue  # rows scale alike, yet all of them are wrong
         if relation.agrees:
             bench.ledger.agree(relation.tested, relation.computed, relation.working)
             for stated in relation.inputs:

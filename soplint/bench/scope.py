@@ -75,6 +75,8 @@ class _Walker:
                 self.scope.aside.add(index)
             elif read.table is not None:
                 self._table(read.table)
+            elif read.block.kind == "paragraph" and self._titles(read, index):
+                self._title_line(read)
             elif self._leads(index):
                 self._flush()
                 self.lead = title_of(read.sentences[0], "lead")
@@ -144,8 +146,6 @@ class _Walker:
         if block.bold:
             return True
         colon = block.text.chars.rstrip().endswith(":")
-        if block.kind == "paragraph" and self._titles(read, index):
-            return True
         if block.kind == "item":
             return following.kind == "item" and following.level > block.level
         if following.table is not None:
@@ -159,20 +159,40 @@ class _Walker:
         """ "5X transfer buffer, 500 mL" on a line of its own, the recipe in the block below."""
         chars = read.block.text.chars.strip()
         phrases = read.sentences[0].phrases
-        if len(chars) > 110 or chars.endswith(".") or not _only_names(phrases):
+        if len(read.sentences) != 1 or len(chars) > 200 or chars.endswith("."):
+            return False
+        if index + 1 >= len(self.blocks) or not _only_names(phrases):
             return False
         if not any(_carries(phrase) for phrase in phrases):
             return False
         if sum(isinstance(phrase, Dose) for phrase in phrases) > 1 or _divided(read):
             return False
         below = self.blocks[index + 1]
-        return below.table is not None or _doses(below)
+        before = self.blocks[index - 1].block if index else None
+        line = read.block.text.line
+        if below.block.text.line < line + 2:
+            return False  # one of several lines of a recipe
+        if before is not None and before.kind != "heading" and before.text.line > line - 2:
+            return False
+        return below.table is not None or _doses(below) or _batch(below)
+
+    def _title_line(self, read: ReadBlock) -> None:
+        """A title without the marks of a heading: it holds until the next one."""
+        self._flush()
+        while self.headings and self.headings[-1][0] >= _TITLE_LINE:
+            self.headings.pop()
+        self.lead = None
+        self.headings.append((_TITLE_LINE, title_of(read.sentences[0])))
+        self._open()
 
     # --- contents --------------------------------------------------------------------------------
 
     def _text(self, read: ReadBlock) -> None:
         """Sentences of a block; one that names a solution and makes it stands alone."""
         for part in _segments(read):
+            if part.sentences and part.sentences[0].leads:
+                self._led(part)
+                continue
             opening = _opening(part)
             divided = _divided(part)
             alone = _one_line(part)
@@ -187,6 +207,13 @@ class _Walker:
                     self.collector.fresh(always=_run_in_heading(part))
                 for sentence in part.sentences:
                     self.collector.sentence(sentence)
+
+    def _led(self, read: ReadBlock) -> None:
+        """A line whose title and recipe stand apart: "1 mol/L KCl (7.46 g in 100 mL)"."""
+        first = read.sentences[0]
+        title = title_of(first, "line")
+        words = first.text.chars.strip(" :-–—=")
+        self._alone(replace(read, sentences=read.sentences[1:]), replace(title, words=words))
 
     def _alone(self, read: ReadBlock, title: Title) -> None:
         """A line that names a solution and makes it: its own preparation."""
@@ -442,6 +469,15 @@ def _divided(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
     return replace(read, sentences=rest), title
 
 
+_TITLE_LINE = 9  # deeper than every marked heading
+
+
+def _batch(read: ReadBlock) -> bool:
+    """Whether a block says nothing but a volume: "For 250 mL:"."""
+    title = title_of(read.sentences[0]) if len(read.sentences) == 1 else None
+    return title is not None and title.bare and title.volume is not None
+
+
 def _run_in_heading(read: ReadBlock) -> bool:
     """Whether a paragraph opens with a word or two of its own: "Assay. Mix 2.0 mL of ..."."""
     first = read.sentences[0]
@@ -465,7 +501,11 @@ def _segments(read: ReadBlock) -> Iterator[ReadBlock]:
     start = 0
     for index in range(1, len(read.sentences)):
         single = replace(read, sentences=(read.sentences[index],))
-        if _divided(single) is not None or _one_line(single) is not None:
+        if (
+            read.sentences[index].leads
+            or _divided(single) is not None
+            or _one_line(single) is not None
+        ):
             yield replace(read, sentences=read.sentences[start:index])
             start = index
     yield replace(read, sentences=read.sentences[start:])

@@ -201,6 +201,10 @@ class Reader:
                 continue
             if listed and terminal.kind in ("STRENGTH", "PERCENT", "FOLD"):
                 continue
+            if terminal.kind == "PH" and any(
+                m.start <= terminal.start < m.end and m.ph is not None for m in into.contents
+            ):
+                continue  # the label pH of one of several stocks
             if terminal.kind in ("STRENGTH", "PERCENT", "FOLD"):
                 (into.finals if final else into.strengths).append(measure)
             elif terminal.kind == "PH":
