@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
 
 from soplint.intake import sentences
 from soplint.intake.model import Block, Document, Text
+from soplint.notation.led_lines import led, opens_batch
 from soplint.notation.phrases import Sentence
 from soplint.notation.read import Reading, read_sentence
 from soplint.notation.rows import RecipeTable
@@ -36,19 +37,31 @@ def read_document(document: Document) -> tuple[ReadBlock, ...]:
             table = read_table(block.table, reading, index, strict, context[-2:])
             result.append(ReadBlock(block, tuple(row.sentence for row in table.rows), table))
             continue
-        heading = block.kind == "heading"
-        pieces = [block.text] if heading else sentences(block.text)
-        result.append(
-            ReadBlock(
-                block,
-                tuple(
-                    read_sentence(piece, reading, index, strict, always=heading or number == 0)
-                    for number, piece in enumerate(pieces)
-                ),
-            )
-        )
+        if block.kind == "heading":
+            read = (read_sentence(block.text, reading, index, strict, always=True),)
+        else:
+            read = tuple(_read_block(block.text, reading, index, strict))
+        result.append(ReadBlock(block, read))
         context.append(block.text)
     return tuple(result)
+
+
+def _read_block(text: Text, reading: Reading, index: int, strict: bool) -> Iterator[Sentence]:
+    """The sentences of a block; one that holds title and recipe is two."""
+
+    def read(piece: Text, always: bool = True) -> Sentence:
+        return read_sentence(piece, reading, index, strict, always)
+
+    pieces = sentences(text)
+    for number, piece in enumerate(pieces):
+        both = led(piece, read)
+        if both is not None:
+            yield from both
+            continue
+        sentence = read(piece, number == 0)
+        if number + 1 < len(pieces) and opens_batch(sentence, pieces[number + 1]):
+            sentence = replace(sentence, leads=True)
+        yield sentence
 
 
 @lru_cache(maxsize=1)

@@ -170,3 +170,4 @@ class Sentence:
     kinds: frozenset[str]  # terminals that occurred: command and role words, for quick tests
     block: int = 0  # index of the block in the document
     strict: bool = False
+    leads: bool = False  # the title of the sentences behind it: "1 mol/L KCl" before "(7.5 g ...)"

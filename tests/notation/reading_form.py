@@ -71,7 +71,7 @@ def reading(text: str) -> tuple[str, ...]:
     """All phrases of a Markdown text, one line each; "nothing" where there is none."""
     document = read_bytes(text.encode(), "example.md")
     lines = [
-        Form(sentence).phrase(phrase)
+        ("title " if sentence.leads else "") + Form(sentence).phrase(phrase)
         for block in read_document(document)
         for sentence in block.sentences
         for phrase in sentence.phrases
