@@ -188,7 +188,7 @@ class Collector:
             self._to_volume(text, phrase)
         elif isinstance(phrase, SetPH):
             self.current.adjusted.append(Adjusted(text, phrase, self.step, self.closed))
-        elif isinstance(phrase, Claim) and command == "DILUTE" and self.closed:
+        elif isinstance(phrase, Claim) and self._of_another(sentence, command):
             pass  # "for use dilute 1:5 to 50 mM" speaks of another solution
         elif isinstance(phrase, Claim):
             fold = _fold_of(sentence, phrase)
@@ -213,6 +213,11 @@ class Collector:
                 self._inline_title(sentence, phrase)
             else:
                 self.reagents.append((sentence, phrase))
+
+    def _of_another(self, sentence: Sentence, command: str | None) -> bool:
+        """Whether a claim is of what a later dilution makes that is not carried out here."""
+        made = sum(isinstance(phrase, ToVolume) for phrase in sentence.phrases)
+        return command == "DILUTE" and self.closed and made != 1
 
     def _inline_title(self, sentence: Sentence, phrase: Phrase) -> None:
         """ "To prepare 0.05 mol/L buffer from the stock, dilute ...": a title within a sentence."""
@@ -348,7 +353,8 @@ class Collector:
                 if strength.dimension in ("molarity", "mass-concentration", "fraction", "ppm"):
                     claim = Claim(strength.start, strength.end, strength)
                     self.current.claimed.append(Claimed(text, claim, self.step))
-        self.closed = bool(self.current.taken) or self.kind == "line"
+        ahead = to.said_final and not self.current.taken  # "For 100 mL: 0.9 g glucose ..."
+        self.closed = bool(self.current.taken) or (self.kind == "line" and not ahead)
 
     # --- tables ------------------------------------------------------------------------------------
 

@@ -61,6 +61,7 @@ class _Walker:
         self.scope = Scope()
         self.headings: list[tuple[int, Title]] = []
         self.lead: Title | None = None
+        self.lead_number: str | None = None  # of a leading item whose parts carry its number
         self.lead_level = 0  # nesting level of the item that leads, 0 for a paragraph
         self.aside = False
         self.section = 0
@@ -81,6 +82,9 @@ class _Walker:
                 self._flush()
                 self.lead = title_of(read.sentences[0], "lead")
                 self.lead_level = read.block.level if read.block.kind == "item" else 0
+                below = self.blocks[index + 1].block.number if self.lead_level else None
+                parted = (below or "").startswith(f"{read.block.number}.")
+                self.lead_number = read.block.number if parted else None
                 self._open()
             else:
                 self._leave_lead(read)
@@ -126,10 +130,18 @@ class _Walker:
         if self.lead is None:
             return
         block = read.block
+        if self.lead_level and block.kind == "item" and self._within(block.number):
+            return
         if self.lead_level and (block.kind != "item" or block.level <= self.lead_level):
             self._flush()
             self.lead = None
             self._open()
+
+    def _within(self, number: str | None) -> bool:
+        """Whether an item is a part of the item that leads: 5.1.1 of 5.1."""
+        if self.lead_number is None:
+            return False
+        return number is None or number.startswith(f"{self.lead_number}.")
 
     def _leads(self, index: int) -> bool:
         """Whether the block at ``index`` opens a scope: a bold line, "Buffer A:", a nesting item."""
@@ -147,6 +159,8 @@ class _Walker:
             return True
         colon = block.text.chars.rstrip().endswith(":")
         if block.kind == "item":
+            if block.number and (following.number or "").startswith(f"{block.number}."):
+                return following.kind == "item"  # "5.1 Saline, 0.5 mol/L", then "5.1.1 Weigh ..."
             return following.kind == "item" and following.level > block.level
         if following.table is not None:
             return colon or (len(block.text.chars) < 120 and not block.text.chars.endswith("."))
@@ -222,7 +236,9 @@ class _Walker:
         if above is not None and (title.bare and title.volume or _without_volume(read, title)):
             title = inherit([title, above])
         collector.open(title, parents, self.section, kind="line")
-        for sentence in read.sentences:
+        for number, sentence in enumerate(read.sentences):
+            if number and _takes_from_it(sentence):
+                collector.fresh(always=True)
             collector.sentence(sentence)
         self.scope.preparations.extend(collector.close())
 
@@ -472,6 +488,17 @@ def _divided(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
 _TITLE_LINE = 9  # deeper than every marked heading
 
 
+def _takes_from_it(sentence: Sentence) -> bool:
+    """Whether a sentence uses the solution before it: "Add 10 µL to 90 µL medium per well"."""
+    doses = [phrase for phrase in sentence.phrases if isinstance(phrase, Dose)]
+    return (
+        len(doses) > 1
+        and doses[0].material is None
+        and doses[0].role is None
+        and doses[0].amount.dimension == "volume"
+    )
+
+
 def _batch(read: ReadBlock) -> bool:
     """Whether a block says nothing but a volume: "For 250 mL:"."""
     title = title_of(read.sentences[0]) if len(read.sentences) == 1 else None
@@ -501,11 +528,10 @@ def _segments(read: ReadBlock) -> Iterator[ReadBlock]:
     start = 0
     for index in range(1, len(read.sentences)):
         single = replace(read, sentences=(read.sentences[index],))
-        if (
-            read.sentences[index].leads
-            or _divided(single) is not None
-            or _one_line(single) is not None
-        ):
+        if read.sentences[index - 1].leads:
+            continue  # the recipe of the title before it
+        led = read.sentences[index].leads
+        if led or _divided(single) is not None or _one_line(single) is not None:
             yield replace(read, sentences=read.sentences[start:index])
             start = index
     yield replace(read, sentences=read.sentences[start:])

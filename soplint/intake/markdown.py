@@ -13,9 +13,11 @@ from functools import lru_cache
 from typing import TYPE_CHECKING
 
 from soplint.intake.builder import Builder, joined
+from soplint.intake.grids import grid_table, simple_table
 from soplint.intake.headings import without_closing_hashes
 from soplint.intake.html import add_html
 from soplint.intake.inline import clean, clean_line
+from soplint.intake.model import Text
 from soplint.intake.numbering import Mark
 from soplint.intake.paragraphs import Place, add_lines
 from soplint.intake.plain import read_plain
@@ -40,6 +42,11 @@ _QUOTE = re.compile(r"(?:\s{0,3}>)+ ?")
 _DEEP_QUOTE = re.compile(r"(?:[ \t]*>){6}")
 
 
+_DRAWN = re.compile(r" {0,3}(?:={2,}(?:\s+={2,})+|\+(?:[-=]{2,}\+)+)\s*$")
+_FENCE = re.compile(r" {0,3}(`{3,}|~{3,})")
+_TABLE = "\ue000"  # info of the fence put around a drawn table; no author writes it
+
+
 @lru_cache(maxsize=1)
 def _parser() -> MarkdownIt:
     from markdown_it import MarkdownIt
@@ -62,13 +69,36 @@ def read_markdown(builder: Builder, lines: Sequence[str], skip: int) -> str | No
     tokens: list[Token] = []
     parser = _parser()
     try:
-        parser.block.parse("\n".join(body), parser, {}, tokens)
+        parser.block.parse("\n".join(_fenced_tables(body)), parser, {}, tokens)
         _Walk(builder, lines, skip, tokens).run()
     except RecursionError:
         builder.blocks.clear()
         _read_simply(builder, lines, skip)
         return "read line by line, without nesting and strict fences: nested too deeply"
     return None
+
+
+def _fenced_tables(body: Sequence[str]) -> Sequence[str]:
+    """``body`` with the rules around drawn tables made fences, so that no rule makes a heading.
+
+    A table between rules of ``=`` or drawn with ``+---+`` begins and ends with a rule.
+    """
+    if not any(_DRAWN.match(line) for line in body):
+        return body
+    lines = [Line(k + 1, 1, line) for k, line in enumerate(body)]
+    shown = list(body)
+    index, fence = 0, ""
+    while index < len(lines):
+        mark = _FENCE.match(body[index])
+        if mark is not None and mark.group(1)[0] == (fence or mark.group(1)[0]):
+            fence = "" if fence else mark.group(1)[0]
+        found = None if fence else grid_table(lines, index) or simple_table(lines, index)
+        if found is None or found[1] - index < 3:
+            index += 1
+            continue
+        shown[index], shown[found[1] - 1] = f"~~~ {_TABLE}", "~~~"
+        index = found[1]
+    return shown
 
 
 def _read_simply(builder: Builder, lines: Sequence[str], skip: int) -> None:
@@ -172,9 +202,19 @@ class _Walk:
         body = [_unquoted(k + 1, self.lines[k]) for k in range(first + 1, last - closed)]
         strict = _STRICT_FENCE.match(token.info) is not None
         self.take_mark()
+        if token.info.strip() == _TABLE and self.drawn(first, last):
+            return
         inner = Builder(strict=strict)
         read_plain(inner, body, headings=strict or not closed, least_level=self.level + 1)
         self.builder.blocks.extend(inner.blocks)
+
+    def drawn(self, first: int, last: int) -> bool:
+        """Adds the drawn table on these lines."""
+        lines = [Line(k + 1, 1, self.lines[k]) for k in range(first, last)]
+        found = grid_table(lines, 0) or simple_table(lines, 0)
+        if found is not None:
+            self.builder.table(found[0], Text("", first + 1, 1))
+        return found is not None
 
     def html(self, token: Token) -> None:
         self.take_mark()

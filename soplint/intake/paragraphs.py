@@ -30,7 +30,7 @@ _OPEN_END = re.compile(
     r"than|least|most|plus|per|as|on|until|see|section|Section|step|Step|steps|table|Table|Fig\.|"
     r"No\.|e\.g\.|i\.e\.|und|mit|von|et|de|и|в)|[-+=~×*/<>≈±]|[(\[])$"
 )
-_CONTINUES = re.compile(r"[)\],;:.=%×/]|(?:and|or|of|to|in|with|und|et)\s")
+_CONTINUES = re.compile(r"[()\[\],;:.=%×/]|(?:and|or|of|to|in|with|und|et)\s")
 # "Author: ...", "Example: ..." begin a line of their own; so does what follows "c = m / V".
 _LABEL = re.compile(r"[A-ZÀ-ÞА-Я][^\W\d_]{2,15}(?: [^\W\d_]{1,12})?:(?:\s|$)")
 _FORMULA = re.compile(r"[^\W\d_]\w{0,5}(?:\s?\([^()]{1,40}\))?\s?=\s")

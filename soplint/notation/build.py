@@ -8,6 +8,7 @@ a name and the amount after it, strengths after a comma); commands give the phra
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 
 from lark import Token, Tree
 
@@ -32,7 +33,11 @@ def parts(chars: str, tree: Tree[Token], terminals: Sequence[Terminal]) -> list[
 def _part(reader: Reader, tree: Tree[Token], found: list[Part]) -> None:
     start, end = reader.bounds(tree) if tree.children else (0, 0)
     if tree.data == "dose":
-        found.append(reader.dose(tree))
+        dose = reader.dose(tree)
+        back = reader.points_back(dose)
+        found.append(replace(dose, material=None) if back else dose)
+        if back:
+            found.append(Role(end, end, "OF"))
         if _ends_in(tree, "OF"):
             found.append(Role(end, end, "OF"))
         _opened(reader, tree, found)
@@ -104,4 +109,5 @@ def _role(reader: Reader, tree: Tree[Token], found: list[Part]) -> None:
             _open(reader, child, found)
         else:
             for terminal in reader.tokens(child):
-                found.append(Role(terminal.start, terminal.end, terminal.kind))
+                words = reader.chars[terminal.start : terminal.end].lower()
+                found.append(Role(terminal.start, terminal.end, terminal.kind, words))

@@ -38,10 +38,10 @@ def read_document(document: Document) -> tuple[ReadBlock, ...]:
             result.append(ReadBlock(block, tuple(row.sentence for row in table.rows), table))
             continue
         if block.kind == "heading":
-            read = (read_sentence(block.text, reading, index, strict, always=True),)
+            read = [read_sentence(block.text, reading, index, strict, always=True)]
         else:
-            read = tuple(_read_block(block.text, reading, index, strict))
-        result.append(ReadBlock(block, read))
+            read = list(_read_block(block.text, reading, index, strict))
+        result.append(ReadBlock(block, tuple(read)))
         context.append(block.text)
     return tuple(result)
 

@@ -46,7 +46,16 @@ class Doses(Volumes):
             # "12 mL extract + 38 mL water = 50 mL"
             self._made_to(ToVolume(dose.start, dose.end, dose.amount, said_final=True), None)
             return
+        if self._comes_out(dose):
+            self._made_to(ToVolume(dose.start, dose.end, dose.amount, said_final=True), None)
+            named = dose.material if dose.material and dose.material.words else None
+            for strength in dose.material.strengths if dose.material else ():
+                self._claim(named, strength)
+            return
         if self._leads(dose, index):
+            if self.phrases and self.command == "PREPARE":
+                self.phrases.pop()  # "For 1 L: 5 mL of ...": what follows is taken, not aimed at
+                self.command = None
             self._made_to(ToVolume(dose.start, dose.end, dose.amount, said_final=True), None)
             return
         if isinstance(last, Dose) and self.between and self.between[-1] == "OR":
@@ -67,9 +76,19 @@ class Doses(Volumes):
         for strength in claims:
             self._claim(None, strength)
 
+    def _comes_out(self, dose: Dose) -> bool:
+        """ "5 mL of 2 M KCl and 95 mL water give 100 mL of 0.1 M KCl": what was mixed."""
+        if self.claiming != "GIVES" or dose.amount.dimension != "volume" or dose.role:
+            return False
+        mixed = [p.amount for p in self.phrases if isinstance(p, Dose)]
+        liquid = sum(m.base for m in mixed if m.dimension == "volume")
+        return bool(mixed) and liquid <= 1.1 * dose.amount.base
+
     def _leads(self, dose: Dose, index: int) -> bool:
         """ "1 L: 5 g NaCl, 10 g peptone": the volume that the recipe behind the colon is for."""
-        if dose.material is not None or dose.amount.dimension != "volume" or dose.role:
+        if dose.material is not None or dose.amount.dimension != "volume":
+            return False
+        if dose.role and self.between != ["PER"]:
             return False
         first = all(isinstance(p, Command) and p.kind == "PREPARE" for p in self.phrases)
         after = self.found[index + 1 : index + 3]

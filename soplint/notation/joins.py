@@ -193,9 +193,10 @@ def _name_first(found: list[Part]) -> list[Part]:
     """ "KBr 12 g (100 mM)": a name, perhaps a separator, then its amount."""
     result: list[Part] = []
     for part in found:
-        if isinstance(part, Dose) and (part.material is None or not part.material.words):
+        nameless = isinstance(part, Dose) and (part.material is None or not part.material.words)
+        if isinstance(part, Dose) and (nameless or _of_stock(part)):
             target = _behind_link(result)
-            if target is not None and _takes_amount(result, target):
+            if target is not None and _takes_amount(result, target, nameless):
                 material = result[target]
                 assert isinstance(material, Material)
                 titled = any(kind_of(role) in ("COLON", "DASH") for role in result[target + 1 :])
@@ -209,10 +210,22 @@ def _name_first(found: list[Part]) -> list[Part]:
     return result
 
 
-def _takes_amount(result: list[Part], index: int) -> bool:
+def _of_stock(dose: Dose) -> bool:
+    """ "NaCl 100 mM: 2 mL of 5 M stock": the stock is one of what stands before it."""
+    material = dose.material
+    return (
+        material is not None
+        and material.words.lower() in ("stock", "stock solution")
+        and bool(material.strengths)
+    )
+
+
+def _takes_amount(result: list[Part], index: int, nameless: bool = True) -> bool:
     """Whether the material at ``index`` still waits for its amount."""
     part = result[index]
     if not isinstance(part, Material) or not part.words:
+        return False
+    if not nameless and not (part.strengths and part.match):
         return False
     if part.words.lower().endswith(" of") and not _WHOLE.fullmatch(part.words):
         return False

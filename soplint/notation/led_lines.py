@@ -11,6 +11,7 @@ from collections.abc import Callable, Iterator
 from dataclasses import replace
 
 from soplint.intake.model import Text
+from soplint.notation.litre import per_litre
 from soplint.notation.phrases import (
     Assigned,
     Claim,
@@ -24,7 +25,6 @@ from soplint.notation.phrases import (
     SetPH,
     ToVolume,
 )
-from soplint.quantities.model import Measure
 
 Read = Callable[[Text], Sentence]
 
@@ -33,7 +33,7 @@ _TITLE = 140
 _SIGN = re.compile(r":(?=\s)|\s[-–—=]+>?\s")
 _BRACKETED = re.compile(r"\s(\()([^()]*(?:\([^()]*\)[^()]*)*)\)[\s.;,]*$")
 _PER = re.compile(r",?\s*\b(?:per|/)\s*(?:1\s*)?(l|litre|liter)\b[\s.;)]*$", re.IGNORECASE)
-_BATCH = re.compile(r"(?:for|per|to make|makes)\b[^.:]{1,40}:", re.IGNORECASE)
+_BATCH = re.compile(r"(?:for|per|to make)(?: (?!of\b)[^\s:]{1,15}){1,3}:", re.IGNORECASE)
 _PARTS = re.compile(r";\s+(?=\S)")
 _AIMS = frozenset({"PREPARE", "DILUTE"})
 _TAKEN = ("mass", "volume", "amount")
@@ -63,18 +63,19 @@ def led(text: Text, read: Read) -> list[Sentence] | None:
 
 def opens_batch(first: Sentence, second: Text) -> bool:
     """Whether "50 mM glucose, 25 mM Tris." leads the recipe "For 100 mL: 0.9 g glucose ..."."""
-    return _BATCH.match(second.chars) is not None and _is_title(first)
+    told = first.kinds & {"IS", "GIVES", "FINALCONC", "AT"}
+    return _BATCH.match(second.chars) is not None and not told and _is_title(first)
 
 
 def _led(text: Text, read: Read) -> list[Sentence] | None:
     for before, body in _divisions(text):
         if not any(c.isdigit() for c in before.chars) or len(before.chars) > _TITLE:
             continue
-        title = read(before)
+        title = _for_a_litre(read(before))
         if not _is_title(title):
             continue
         recipe = _for_a_litre(read(body))
-        if _is_recipe(recipe):
+        if _is_recipe(recipe) or (_has_volume(title) and _takes_any(recipe)):
             return [replace(title, leads=True), _named_after(title, recipe)]
     return None
 
@@ -135,7 +136,7 @@ def _is_title(sentence: Sentence) -> bool:
             return False
         elif not isinstance(phrase, (Loose, Mixture, SetPH, ToVolume)):
             return False
-    return named and aimed
+    return aimed and (named or _has_volume(sentence))
 
 
 def _aims(material: Material | None) -> bool:
@@ -154,10 +155,18 @@ def _is_recipe(sentence: Sentence) -> bool:
         return False
     if any(isinstance(p, ToVolume) for p in sentence.phrases):
         return True
-    if any(d.role == "in" and d.amount.dimension == "volume" for d in doses):
+    if any(d.role in ("in", "into") and d.amount.dimension == "volume" for d in doses):
         return len(doses) > 1
     liquids = [d for d in doses if d.amount.dimension == "volume" and not d.role]
     return len(liquids) > 1 and any(d.material and d.material.is_water for d in liquids)
+
+
+def _has_volume(title: Sentence) -> bool:
+    return any(isinstance(p, ToVolume) and p.volume is not None for p in title.phrases)
+
+
+def _takes_any(sentence: Sentence) -> bool:
+    return any(isinstance(p, Dose) and _takes(p) and not p.role for p in sentence.phrases)
 
 
 def _takes(dose: Dose) -> bool:
@@ -167,7 +176,7 @@ def _takes(dose: Dose) -> bool:
 def _for_a_litre(sentence: Sentence) -> Sentence:
     """ "30.3 g Tris, 144 g glycine per litre": the volume that the amounts are for."""
     found = _PER.search(sentence.text.chars)
-    if found is not None:
+    if found is not None and not any(m.start < found.start(1) < m.end for m in sentence.measures):
         made = per_litre(*found.span(1))
         kept = [p for p in sentence.phrases if p.end <= found.start()]
         return _made(sentence, kept, made)
@@ -186,9 +195,3 @@ def _made(
     if made.volume is not None and made.volume not in measures:
         measures = (*measures, made.volume)
     return replace(sentence, phrases=(*phrases, made), measures=measures)
-
-
-def per_litre(start: int, end: int) -> ToVolume:
-    """The litre of "per litre", written as a word."""
-    one = Measure(start, end, "volume", 1.0, 1.0, 1.0, "L", 1.0, 1, numeral=(start, start))
-    return ToVolume(start, end, one, said_final=True)

@@ -12,6 +12,7 @@ from dataclasses import replace
 
 from soplint.notation.closings import close, stands_before
 from soplint.notation.doses import Doses
+from soplint.notation.litre import per_litre
 from soplint.notation.parts import Condition, Part, Role
 from soplint.notation.phrases import (
     Claim,
@@ -35,6 +36,8 @@ class Meaning(Doses):
     def read(self) -> list[Phrase]:
         """The typed phrases of the sentence."""
         index = 0
+        if _in_brackets(self.found):
+            self.claiming = "FINALCONC"  # "(3 M NaCl, 0.3 M citrate)" says what came out
         while index < len(self.found):
             index += self._step(index)
         self._flush_reagents()
@@ -88,7 +91,10 @@ class Meaning(Doses):
         role = self._last_role()
         material = replace(material, role=role)
         last = self.phrases[-1] if self.phrases else None
-        if material.ph is not None and self._says_ph(material):
+        if self.between == ["AT"] and self._at_a_fold(material, index):
+            self.claiming = "FINALCONC"
+            self.phrases.append(material)
+        elif material.ph is not None and self._says_ph(material):
             # "the pH is 4.7 without adjustment"
             bare = replace(material, words="", end=material.ph.end)
             self._nameless(bare, role, index)
@@ -126,6 +132,13 @@ class Meaning(Doses):
             self._made_to(last, material)
         else:
             self.phrases.append(material)
+
+    def _at_a_fold(self, material: Material, index: int) -> bool:
+        """ "At 1x: 0.1 M Tris, 0.15 M NaCl": strengths after a dilution."""
+        after = self.found[index + 1 : index + 2]
+        colon = bool(after) and isinstance(after[0], Role) and after[0].kind == "COLON"
+        folds = material.strengths and all(m.dimension == "fold" for m in material.strengths)
+        return bool(folds) and not material.words and colon and not self.phrases
 
     def _says_ph(self, material: Material) -> bool:
         """Whether a pH with unknown words behind it is the pH that "the pH is" speaks of."""
@@ -181,11 +194,15 @@ class Meaning(Doses):
 
     def _per_litre(self, material: Material) -> bool:
         """ "15 g agar per litre (1.5 %)": what the brackets say of the dose before."""
-        if not _LITRE.fullmatch(material.words) or self.between not in (["PER"], ["SLASH"]):
+        between = [kind for kind in self.between if kind != "COMMA"]
+        if not _LITRE.fullmatch(material.words) or between not in (["PER"], ["SLASH"]):
             return False
         before = stands_before(self.phrases)
         for strength in (*material.bracket, *material.finals):
             self._claim(before, strength, "per litre")
+        taken = any(isinstance(phrase, (Dose, ToVolume)) for phrase in self.phrases)
+        if not taken and self.command in (None, "PREPARE"):
+            self.phrases.append(per_litre(material.start, material.start + len(material.words)))
         return True
 
     def _nameless(self, material: Material, role: str | None, index: int) -> None:
@@ -268,6 +285,17 @@ class Meaning(Doses):
                 break
             found.append(phrase)
         return found[::-1]
+
+
+def _in_brackets(found: Sequence[Part]) -> bool:
+    """Whether a sentence is one bracket from its first sign to its last."""
+    depth = 0
+    for index, part in enumerate(found):
+        kind = part.kind if isinstance(part, Role) else ""
+        depth += (kind == "LPAR") - (kind == "RPAR")
+        if depth < 1:
+            return index == len(found) - 1 and index > 0
+    return False
 
 
 def meaning(found: Sequence[Part]) -> list[Phrase]:

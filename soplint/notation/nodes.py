@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, field
 
@@ -14,6 +15,12 @@ from soplint.substances.model import Match
 
 Node = Tree[Token] | Token
 
+_POINTING = re.compile(
+    r"\s*(?:of\s+)?(?:this|that|the above|the latter)\s+"
+    r"(?:(?:stock|standard|working|diluted|intermediate)\s+)?"
+    r"(?:solution|stock|dilution|mixture|standard|mix)\b",
+    re.IGNORECASE,
+)
 # Endings of words that make a following name part of a longer one (radicals of organic names).
 _RADICALS = ("yl", "oxy", "amino", "phenyl", "bromo", "chloro", "iodo", "fluoro", "nitro", "-")
 
@@ -234,6 +241,14 @@ class Reader:
             else:
                 self.remarks(part, remarks)
         return amount, each
+
+    def points_back(self, dose: Dose) -> bool:
+        """Whether a dose is of the solution made just before: "10 mL of this solution"."""
+        material = dose.material
+        if material is None or material.match or material.strengths or material.ph:
+            return False
+        bare = self.chars[material.start : dose.end].strip(" .,;:") == material.words
+        return bare and _POINTING.match(self.chars, dose.amount.end) is not None
 
     # --- doses -----------------------------------------------------------------------------------
 

@@ -14,6 +14,7 @@ class Role:
     start: int
     end: int
     kind: str
+    words: str = ""
 
 
 @dataclass(frozen=True, slots=True)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 
@@ -10,7 +11,7 @@ from soplint.notation.build import parts
 from soplint.notation.lexicon import terminals
 from soplint.notation.meaning import meaning
 from soplint.notation.parser import parse
-from soplint.notation.phrases import Sentence
+from soplint.notation.phrases import Dose, Phrase, Sentence, ToVolume
 from soplint.notation.refine import refine
 from soplint.quantities import NumberStyle, find_measures
 from soplint.quantities.model import Measure
@@ -42,13 +43,32 @@ def read_sentence(
     found = terminals(text.chars, measures, names)
     found = refine(text.chars, found)
     tree, kept = parse(found)
-    phrases = meaning(parts(text.chars, tree, kept))
+    phrases = _entry(text.chars, meaning(parts(text.chars, tree, kept)))
     kinds = frozenset(terminal.kind for terminal in kept)
     refined = tuple(t.measure for t in kept if t.measure is not None)
     seen = {(m.start, m.end) for m in refined}
     rest = tuple(m for m in measures if (m.start, m.end) not in seen)
     whole = tuple(sorted((*refined, *rest), key=lambda m: m.start))
     return Sentence(text, tuple(phrases), whole, kinds, block, strict)
+
+
+_VOLUME_ENTRY = re.compile(
+    r"\W*(?:(?:final|total|batch|prepared)\s+)?(?:volume|batch size|amount|quantity)"
+    r"(?:\s+(?:to (?:make|prepare)|prepared|made))?\s*[:=]\s*",
+    re.IGNORECASE,
+)
+
+
+def _entry(chars: str, phrases: list[Phrase]) -> list[Phrase]:
+    """ "Volume: 250 mL" on a line of its own is the volume of what the section makes."""
+    only = phrases[0] if len(phrases) == 1 else None
+    if not isinstance(only, Dose) or only.amount.dimension != "volume":
+        return phrases
+    if only.material is not None and (only.material.match or only.material.strengths):
+        return phrases
+    if not _VOLUME_ENTRY.fullmatch(chars, 0, only.amount.start):
+        return phrases
+    return [ToVolume(only.start, only.end, only.amount, said_final=True)]
 
 
 def _apart(

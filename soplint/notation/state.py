@@ -49,6 +49,7 @@ class State:
         self.between: list[str] = []  # roles since the last phrase
         self.reagents: list[Material] = []  # named with an adjustment before its pH
         self.bracket = 0  # depth of brackets
+        self.final_first = False  # the sentence begins with "final"
         self.reading = False  # after a burette reading: nameless volumes are readings too
 
     def _last_role(self) -> str | None:
@@ -78,8 +79,16 @@ class State:
             self.phrases[-1] = replace(last, material=Material(last.start, last.end, ""))
         elif role.kind == "OFIT":
             self._part_of(last)
+        elif role.kind == "FINAL" and isinstance(last, Dose) and self._is_whole(last, role):
+            self.phrases[-1] = ToVolume(
+                last.start, role.end, last.amount, last.material, self.command, said_final=True
+            )
         elif role.kind == "FINAL" and isinstance(last, (Material, Dose)):
             self._said_final(last)
+        elif role.kind == "FINAL" and not self.phrases:
+            self.final_first = True
+        elif role.kind == "COLON" and self.final_first and not self.phrases:
+            self.claiming = "FINALCONC"  # "Final: 20 mM EDTA"
         elif role.kind == "EQUALS" and self._equates(role):
             self.phrases.append(Command(role.start, role.end, "EQUIVALENT"))
         elif (
@@ -97,6 +106,13 @@ class State:
                 self._command(Command(role.start, role.end, "THEN"))
         elif role.kind == "OPTIONAL":
             self.phrases.append(Command(role.start, role.end, "OPTIONAL"))
+
+    def _is_whole(self, last: Dose, role: Role) -> bool:
+        """ "water, 250 mL final volume": the volume of the mixture, not of its water."""
+        if last.amount.dimension != "volume" or self.between != ["FINAL"] or last.role:
+            return False
+        water = last.material is None or last.material.is_water
+        return water and "vol" in role.words
 
     def _equates(self, role: Role) -> bool:
         """ "1 mL of silver nitrate 0.02 mol/L = 0.709 mg chloride": what a titrant stands for."""

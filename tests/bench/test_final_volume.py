@@ -330,9 +330,7 @@ ROWS = [
     "water q.s. 250 mL",
     "water qs to 250 mL",
 ]
-ROWS_OPEN = {
-    "water, 250 mL final volume": "'final volume' behind the volume is not taken up in an item",
-}
+ROWS_OPEN: dict[str, str] = {}
 
 
 @sentences(ROWS, ROWS_OPEN)

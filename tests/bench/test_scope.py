@@ -71,22 +71,6 @@ STRENGTH_LEAKS = {name: body for (name, kind), body in cases("leaks.txt") if kin
 
 # Layouts that do not come out yet: which of the three tests below fail, and why.
 OPEN: dict[str, tuple[str, frozenset[str]]] = {
-    "numbered sub-items as plain paragraphs": (
-        "a numbered paragraph that names a solution is taken for a dose of the volume in it",
-        frozenset({"volume", "right", "wrong"}),
-    ),
-    "standard and its dilution in one paragraph": (
-        "a claim behind 'this solution' is taken for that of an unknown substance",
-        frozenset({"right", "wrong 10.0 mL"}),
-    ),
-    "line wrapped early, before a bracket": (
-        "a line that begins with a bracket is taken for a new paragraph",
-        frozenset({"right", "wrong"}),
-    ),
-    "strength and volume on lines of their own": (
-        "'Concentration: 0.5 mol/L' becomes no target of the preparation",
-        frozenset({"right", "wrong"}),
-    ),
 }
 OPEN_LEAKS = {
 }
