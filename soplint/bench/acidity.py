@@ -411,6 +411,10 @@ def _systems_present(preparation: Preparation, facts: Facts, order: int) -> froz
                 for c in solution.components
                 if c.substance is not None and c.substance.acid_system
             )
+    for adjusted in preparation.adjusted:
+        for reagent in adjusted.set_ph.reagents:
+            # triethylamine set with phosphoric acid: the phosphate buffers as well
+            systems.update(s.acid_system for s in candidates(reagent) if s.acid_system)
     return frozenset(systems - NO_BUFFERS)
 
 

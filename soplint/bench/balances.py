@@ -361,7 +361,7 @@ def _volumes(
     if target.stated.measure.dimension == "fraction" and target.stated.measure.basis != "w/v":
         mass = _total_mass(preparation)
         if mass is not None:
-            yield FinalVolume(mass, EXACT, "total", None)
+            yield FinalVolume(mass, EXACT, "weighed", None)
             return
     strong = volume is not None and volume.provenance not in ("weak", "sum", "heading")
     strong = strong and not any(share.taken.late for share in chosen)
@@ -429,7 +429,7 @@ def _relation(preparation: Preparation, balance: Balance, ways: int) -> Relation
     if single and not about_claim:
         tested = share.taken.stated
         measure = tested.measure
-        value = measure.nominal / balance.ratio if balance.ratio else 0.0
+        value = _needed(balance, measure)
         working = _amount_working(balance, value, measure)
         deviation = balance.ratio - 1
     else:
@@ -464,6 +464,25 @@ def _relation(preparation: Preparation, balance: Balance, ways: int) -> Relation
         several=ways > 0,
         members=() if single or balance.closes else tuple(_members(preparation, balance)),
     )
+
+
+def _needed(balance: Balance, measure: Measure) -> float:
+    """The amount of the only dose that gives the strength, in its printed unit.
+
+    Where the solvent is weighed the dose counts in the whole as well: x·q = p·(x·m + w).
+    """
+    if not balance.ratio:
+        return 0.0
+    share = balance.chosen[0]
+    dose = share.taken.dose.amount
+    if balance.volume.provenance == "weighed" and dose.dimension == "mass":
+        strength = balance.target.stated.measure.base * balance.scale
+        own = dose.base / 1000
+        rest = balance.volume.litres - own
+        brought = share.quantity - strength * own
+        if brought > 0 and rest > 0:
+            return measure.nominal * strength * rest / brought
+    return measure.nominal / balance.ratio
 
 
 def _members(preparation: Preparation, balance: Balance) -> Iterator[Relation]:
@@ -510,6 +529,14 @@ def _amount_working(balance: Balance, value: float, measure: Measure) -> str:
     share, target = balance.chosen[0], balance.target.stated.measure
     scale = f" × {balance.scale:g}" if balance.scale != 1 else ""
     volume = _volume_shown(balance.volume)
+    if balance.volume.provenance == "weighed":
+        dose = share.taken.dose.amount
+        rest = balance.volume.litres - dose.base / 1000 if dose.dimension == "mass" else 0.0
+        if rest > 0:
+            return (
+                f"{shown(target)}{scale} (w/w) with {rest * 1000:.4g} g of the rest:"
+                f" {value:.4g} {measure.unit}"
+            )
     if share.kind == "stock" and share.label is not None:
         return (
             f"{shown(target)}{scale} × {volume} / {shown(share.label)} = {value:.4g} {measure.unit}"
@@ -536,4 +563,4 @@ def _sum_working(balance: Balance, value: float, measure: Measure) -> str:
 def _volume_shown(volume: FinalVolume) -> str:
     if volume.stated is not None and abs(volume.stated.measure.base / volume.litres - 1) < 1e-9:
         return shown(volume.stated.measure)
-    return f"{volume.litres * 1000:.4g} mL"
+    return f"{volume.litres * 1000:.4g} {'g' if volume.provenance == 'weighed' else 'mL'}"

@@ -76,6 +76,7 @@ def _fold_of(sentence: Sentence, claim: Claim) -> Measure | None:
     return found
 
 
+_OF_THIS = re.compile(r"\s*of\s+(?:this|that|it)\b", re.IGNORECASE)
 _CLAUSE = re.compile(r"[;:(]|\.\s")
 _AT = re.compile(r"\W*(?:at|in|for|@)\s+(?:the\s+)?$", re.IGNORECASE)
 
@@ -209,6 +210,10 @@ class Collector:
             bracketed = _bracketed_dose(phrase, command)
             if bracketed is not None:
                 self._dose(sentence, bracketed, command)
+            elif command == "ADJUST" and phrase.match is not None and not phrase.is_water:
+                # "adjusted with phosphoric acid": the pH stands in the title
+                with_it = SetPH(phrase.start, phrase.end, None, reagents=(phrase,))
+                self.current.adjusted.append(Adjusted(text, with_it, self.step, self.closed))
             elif command == "PREPARE" and (phrase.strengths or phrase.ph or phrase.solution):
                 self._inline_title(sentence, phrase)
             else:
@@ -248,6 +253,12 @@ class Collector:
             if material.strengths or material.solution or material.ph:
                 self._inline_title(sentence, dose)
                 return
+        if self._from_the_last(sentence, dose):
+            self._settle_pending()
+            self._next()
+            last = Material(dose.start, dose.end, "", solution=True)
+            self.current.taken.append(Taken(sentence.text, replace(dose, material=last), self.step))
+            return
         solvent = dose.role == "in" and dose.amount.dimension == "volume"
         if dose.role == "per" or (dose.material is None and dose.role == "to"):
             return  # "1 tablet per 50 mL"; "weigh to 1 mg": how exactly, not how much
@@ -262,6 +273,13 @@ class Collector:
             self._begin_after_make_up(taken, command)
         else:
             self.pending.append(taken)
+
+    def _from_the_last(self, sentence: Sentence, dose: Dose) -> bool:
+        """ "..., 0.5 mg/mL; 5.0 mL of this to 50.0 mL": the solution just made is diluted."""
+        if dose.material is not None or dose.amount.dimension != "volume" or self.closed:
+            return False
+        holds = any(t.solvent for t in self.current.taken) and bool(self.current.claimed)
+        return holds and bool(_OF_THIS.match(sentence.text.chars, dose.amount.end))
 
     def _already_taken(self, sentence: Sentence) -> bool:
         """Whether this sentence has taken something: what it "obtains" is the result."""

@@ -32,11 +32,26 @@ from soplint.notation.rows import RecipeTable, Row, Variant
 from soplint.quantities.model import Measure
 
 # Sections whose quantities describe equipment, dates or limits, not a recipe.
-_ASIDE = re.compile(
-    r"\b(apparatus|equipment|purpose|scope|records?|references?|revision|history|responsibilit"
-    r"|instrument(?:s|ation)?|personnel|training|definitions?|document control|distribution)\b",
-    re.IGNORECASE,
-)
+# Headings of sections that hold no recipe.  Only a heading of nothing else sets its section aside:
+# "Reference buffers" and "Instrument check solution" are recipes.
+_ASIDE = {
+    *("apparatus", "equipment", "purpose", "scope", "record", "records", "reference", "references"),
+    *("revision", "history", "responsibility", "responsibilities", "instruments", "definitions"),
+    *("instrumentation", "personnel", "training", "definition", "distribution", "glassware"),
+}
+_BESIDE = {
+    *("and", "of", "the", "or", "for", "related", "normative", "change", "document", "documents"),
+    *("control", "list", "abbreviations", "terms", "roles", "field", "application", "use", "forms"),
+    *("required", "other", "general", "used", "log", "laboratory", "ware", "storage", "staff"),
+}
+_HEADING_WORD = re.compile(r"[A-Za-z]+")
+
+
+def _sets_aside(title: Title) -> bool:
+    """Whether a heading says apparatus, scope, records or the like and nothing else."""
+    words = {word.lower() for word in _HEADING_WORD.findall(title.words)}
+    bare = not title.targets and title.volume is None and title.source != "document"
+    return bare and bool(words & _ASIDE) and words <= _ASIDE | _BESIDE
 
 
 @dataclass(slots=True)
@@ -108,7 +123,7 @@ class _Walker:
         source = "document" if read.block is self.cover else "title"
         title = title_of(read.sentences[0], source)
         self.headings.append((level, title))
-        self.aside = bool(_ASIDE.search(title.words)) and not title.targets and title.volume is None
+        self.aside = _sets_aside(title)
         self._open()
 
     def _open(self) -> None:
@@ -173,7 +188,7 @@ class _Walker:
         """ "5X transfer buffer, 500 mL" on a line of its own, the recipe in the block below."""
         chars = read.block.text.chars.strip()
         phrases = read.sentences[0].phrases
-        if len(read.sentences) != 1 or len(chars) > 200 or chars.endswith("."):
+        if len(read.sentences) != 1 or len(chars) > 200 or chars.endswith((".", ":")):
             return False
         if index + 1 >= len(self.blocks) or not _only_names(phrases):
             return False
@@ -304,7 +319,8 @@ def _cover(blocks: Sequence[ReadBlock]) -> Block | None:
         for read in blocks
         if read.block.kind == "heading" and read.sentences
     ]
-    if titles and titles[0].targets and all(title.bare for title in titles[1:]):
+    sizes = all(t.bare for t in titles[1:]) and any(t.volume is not None for t in titles[1:])
+    if titles and titles[0].targets and sizes:
         return None  # "## Buffer (20 mM KCl)" over "### For 250 mL" and "### For 500 mL"
     below = all(other.level > first.level for other in headings[1:])
     return first if below or _DOCUMENT.search(first.text.chars) else None

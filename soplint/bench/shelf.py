@@ -23,7 +23,11 @@ def stock_shelf(preparations: Sequence[Preparation], facts: Facts) -> None:
 
 def _solution(preparation: Preparation, order: int, facts: Facts) -> Solution | None:
     title = preparation.title
-    if title is None or not (preparation.taken or title.targets or title.fold or title.ph):
+    if title is None:
+        if not preparation.taken:
+            return None
+        title = Title(preparation.taken[0].text, "", (), ())  # only "the solution made last"
+    if not (preparation.taken or title.targets or title.fold or title.ph):
         return None
     adjusted = [a.set_ph.ph for a in preparation.adjusted if a.set_ph.ph is not None]
     ph: Measure | None = adjusted[-1] if adjusted else (title.ph.measure if title.ph else None)

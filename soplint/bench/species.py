@@ -37,6 +37,12 @@ GROUPS = {
 # The element whose atoms count the groups in a formula.
 _KEY = re.compile(r"[A-Z][a-z]?")
 _WORD = re.compile(r"[A-Za-zµ]+(?:\d+[A-Z]?[a-z]?)*")
+# "NO3-N", "nitrate nitrogen", "phosphate-phosphorus": counted as the element.
+_COUNTED_AS = re.compile(
+    r"\b(?:NH[34]|NO[23]|PO4|SO4|(?:nitr|phosph|sul(?:f|ph))[ai]te|ammoni(?:um|a))(?:[+-]|\d[+-])?"
+    r"\s?[-–/ ]\s?\(?(?P<element>N|P|S|nitrogen|phosphorus|sulfur|sulphur)\b",
+    re.IGNORECASE,
+)
 _CHARGE = re.compile(r"(?:\(?[IVX]+\)?|\d?[+-])$")
 
 
@@ -46,8 +52,13 @@ def fragment_of(words: str) -> str | None:
 
     >>> fragment_of("Copper"), fragment_of("nitrate standard"), fragment_of("Zn")
     ('Cu', 'NO3', 'Zn')
+    >>> fragment_of("NO3-N"), fragment_of("phosphate-phosphorus")
+    ('N', 'P')
     """
     told, _, basis = words.partition(" as ")
+    counted = _COUNTED_AS.search(basis or told)
+    if counted is not None:
+        return counted["element"][0].upper()
     for word in _WORD.findall(basis or told):
         lower = word.lower()
         if lower in GROUPS:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass, replace
 from functools import lru_cache
@@ -226,7 +227,11 @@ def _of_substance(
     if own is None:
         return []
     if same_substance(material, own) or _related(material, own):
-        return shares(taken, strength, facts)
+        diluted = list(_made_here(taken, strength, facts, order))
+        after = taken.text.chars[taken.dose.start : taken.dose.end + 12]
+        if diluted and _CLAUSE.search(after):
+            return diluted
+        return [*shares(taken, strength, facts), *diluted]
     if material.match is None:
         return []
     families = {s.family for s in material.match.substances}
@@ -235,6 +240,27 @@ def _of_substance(
         for solution in _shelf(taken, facts, order, preparation)
         for share in _from_shelf(taken, solution, strength, lambda s: s.family in families)
     ]
+
+
+# "hydrochloric acid (3.1)", "(see 3.1)": the reagent of that clause, not the bottle as bought.
+_CLAUSE = re.compile(r"\s*\((?:see\s+|from\s+)?\d+(?:\.\d+)+\)")
+_AS_BOUGHT = re.compile(r"\b(?:conc|glacial|fuming|neat|pure)", re.IGNORECASE)
+
+
+def _made_here(taken: Taken, strength: Measure, facts: Facts, order: int) -> Iterator[Share]:
+    """A bare "hydrochloric acid" where the document makes dilute ones: each of them."""
+    own = taken.dose.material
+    if own is None or own.match is None or taken.dose.amount.dimension != "volume":
+        return
+    if own.strengths or own.bracket or _AS_BOUGHT.search(own.words):
+        return
+    for solution in facts.solutions:
+        if solution.order == order:
+            continue
+        for label, of in solution.strengths:
+            if label.dimension == strength.dimension and of is not None and of.match is not None:
+                if same_substance(of, own):
+                    yield replace(_diluted(taken, label), named=False)
 
 
 def _related(material: Material, own: Material) -> bool:
@@ -285,9 +311,7 @@ def _per_unit(share: Share, systems: frozenset[str]) -> Share:
     count = _units(share.substance.formula or "", systems) if share.substance is not None else 1.0
     if count == 1.0 or share.label is not None:
         return share
-    return replace(
-        share, quantity=share.quantity * count, working=f"{share.working} × {count:g}"
-    )
+    return replace(share, quantity=share.quantity * count, working=f"{share.working} × {count:g}")
 
 
 @lru_cache(maxsize=256)
@@ -458,7 +482,9 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
             labels = above if material.finals or len(bracket) > 1 else bracket
         label = max(labels, key=lambda m: m.base) if labels else None
         if label is not None and label is not strength:
-            found.append(_diluted(taken, label))
+            found.extend(_by_density(taken, label, strength, facts))
+            if not found or (label.basis is None and material.density is None):
+                found.append(_diluted(taken, label))
             as_bought = _is_concentrate(material, label) and strength.basis in (None, "v/v")
             if strength.dimension == "fraction" and as_bought:
                 # a percentage of the concentrate as it is bought, by volume
@@ -480,6 +506,18 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
     if not found and strength.dimension in ("mass-concentration", "ppm", "fraction"):
         found.extend(_by_mass(taken, strength))
     return found
+
+
+def _by_density(taken: Taken, label: Measure, strength: Measure, facts: Facts) -> Iterator[Share]:
+    """Per cent w/v from a concentrate in per cent w/w: its density counts."""
+    material = taken.dose.material
+    if strength.dimension != "fraction" or strength.basis != "w/v" or material is None:
+        return
+    if label.basis == "w/v" or not _is_concentrate(material, label):
+        return
+    for portion in portions(taken, facts):
+        if portion.grams is not None and portion.reading.endswith("w/w"):
+            yield from _as_shares(taken, portion, strength)
 
 
 def _is_concentrate(material: Material, label: Measure) -> bool:
@@ -546,4 +584,4 @@ def _as_shares(taken: Taken, portion: Portion, strength: Measure) -> Iterator[Sh
                 litres = grams / 1000 / liquid.density
                 yield share(litres, f"{portion.working} / {liquid.density:.3g} g/mL", "v/v")
         if grams is not None and strength.basis in (None, "w/v", "w/w"):
-            yield share(grams / 1000, f"{grams:.4g} g", portion.reading or "w/v")
+            yield share(grams / 1000, f"{grams:.4g} g", portion.reading or strength.basis or "w/v")

@@ -31,10 +31,10 @@ class Case:
 def hydrates_and_salts(case: Case) -> Iterator[Hypothesis]:
     """The mass of another hydrate or salt form."""
     substance = case.relation.substance
-    if substance is None or not substance.molar_mass or case.relation.kind not in (
-        *("mass", "sum", "molar-mass"),
-    ):
+    if substance is None or not substance.molar_mass:
         return
+    if case.relation.kind not in {"mass", "molar-mass"}:
+        return  # of a sum each member is asked by itself
     for other in related_forms(substance):
         if other.molar_mass and other.state == "solid":
             kind = "other-hydrate" if other.family == substance.family else "other-salt-form"
@@ -59,10 +59,7 @@ def related_forms(substance: Substance) -> list[Substance]:
         and (
             other.family == substance.family
             or other.name in names
-            or (
-                other.acid_system is not None
-                and other.acid_system == substance.acid_system
-            )
+            or (other.acid_system is not None and other.acid_system == substance.acid_system)
         )
     ]
 

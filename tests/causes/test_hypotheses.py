@@ -294,7 +294,16 @@ def kinds_in_code():
     """Kinds of cause written in the code: the first argument of Cause, the hyphenated words."""
     found = set()
     for path in [*ROOM.glob("*.py"), *(ROOM.parent / "checks").glob("*.py")]:
-        for node in ast.walk(ast.parse(path.read_text(encoding="utf-8"))):
+        tree = ast.parse(path.read_text(encoding="utf-8"))
+        compared = {  # kinds of relation, asked for
+            id(part)
+            for node in ast.walk(tree)
+            if isinstance(node, ast.Compare)
+            for part in ast.walk(node)
+        }
+        for node in ast.walk(tree):
+            if id(node) in compared:
+                continue
             if isinstance(node, ast.Call) and getattr(node.func, "id", "") == "Cause":
                 first = node.args[0]
                 if isinstance(first, ast.Constant):
