@@ -19,7 +19,7 @@ ALLOWANCE, WIDE_ALLOWANCE = 0.10, 0.20
 ROOM = (20.0, 25.0)  # °C, when the text states no temperature
 _MOST_READINGS = 24
 # Single salts that set a pH by themselves: primary standards (Buck et al. 2002, Pure Appl. Chem. 74, 2169).
-STANDARDS = {"C8H5KO4", "Na2B4O7", "C4H5KO6", "NaHCO3", "K3H3C4O8", "KHC8H4O4", "KHC4H4O6"}
+STANDARDS = {"C8H5KO4", "Na2B4O7", "C4H5KO6", "NaHCO3", "C4H3KO8", "C6H7KO7"}
 # Systems that are present for another purpose than to hold the pH.
 # Substances that are dissolved for no other purpose than to hold a pH.
 BUFFER_SUBSTANCES = {

@@ -20,8 +20,12 @@ _TOKEN = re.compile(r"[^\W_]+")
 
 
 def tokens(words: str) -> frozenset[str]:
-    """The telling words of a name, in lower case."""
-    return frozenset(_TOKEN.findall(words.lower())) - _STOP
+    """The telling words of a name, in lower case; the letter of "solution A" is one."""
+    return frozenset(
+        word.lower()
+        for word in _TOKEN.findall(words)
+        if word.lower() not in _STOP or (len(word) == 1 and word.isupper())
+    )
 
 
 @dataclass(frozen=True, slots=True)
@@ -118,7 +122,7 @@ def _fits(solution: Solution, material: Material, wanted: frozenset[str]) -> boo
     if wanted and not wanted <= solution.tokens:
         return False
     fold = next((m for m in material.strengths if m.dimension == "fold"), None)
-    if fold and solution.fold and abs(fold.base / solution.fold.base - 1) > 0.01:
+    if fold and solution.fold and abs(fold.base - solution.fold.base) > 0.01 * solution.fold.base:
         return False
     for strength in material.strengths:
         same = [m for m, _ in solution.strengths if m.dimension == strength.dimension]

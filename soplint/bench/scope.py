@@ -91,7 +91,7 @@ class _Walker:
                 self.scope.aside.add(index)
             elif read.table is not None:
                 self._table(read.table)
-            elif read.block.kind == "paragraph" and self._titles(read, index):
+            elif self._may_title(read) and self._titles(read, index):
                 self._title_line(read)
             elif self._leads(index):
                 self._flush()
@@ -184,6 +184,11 @@ class _Walker:
             return colon or (names and len(block.text.chars) < 120 and not _commands(phrases))
         return colon and len(block.text.chars) < 100
 
+    def _may_title(self, read: ReadBlock) -> bool:
+        """A paragraph, or the numbered line of a section: "4.2 Silver nitrate, 0.1 mol/L"."""
+        block = read.block
+        return block.kind == "paragraph" or (block.kind == "item" and "." in (block.number or ""))
+
     def _titles(self, read: ReadBlock, index: int) -> bool:
         """ "5X transfer buffer, 500 mL" on a line of its own, the recipe in the block below."""
         chars = read.block.text.chars.strip()
@@ -231,6 +236,8 @@ class _Walker:
                 self._alone(*divided)
             elif alone is not None:
                 self._alone(*alone)
+            elif (label := _label(part)) is not None:
+                self._alone(replace(part, sentences=()), label)
             else:
                 if read.block.kind == "paragraph" and read.block.number is None and _doses(part):
                     self.collector.fresh(always=_run_in_heading(part))
@@ -551,6 +558,28 @@ def _segments(read: ReadBlock) -> Iterator[ReadBlock]:
             yield replace(read, sentences=read.sentences[start:index])
             start = index
     yield replace(read, sentences=read.sentences[start:])
+
+
+_LETTERED = re.compile(
+    r"\s*(?P<name>(?:stock |buffer )?(?:solution|stock|buffer|reagent|component) [A-Z0-9]{1,2})"
+    r"\s?[:=–—-]\s",
+    re.IGNORECASE,
+)
+
+
+def _label(read: ReadBlock) -> Title | None:
+    """ "Solution A: 0.2 mol/L sodium dihydrogen phosphate": a bottle with its label, no recipe."""
+    if len(read.sentences) != 1:
+        return None
+    sentence = read.sentences[0]
+    named = _LETTERED.match(sentence.text.chars)
+    if named is None:
+        return None
+    told = [p for p in sentence.phrases if p.end > named.end()]
+    if len(told) != 1 or not isinstance(told[0], Material) or told[0].match is None:
+        return None
+    title = title_of(replace(sentence, phrases=tuple(told)), "line")
+    return replace(title, words=named["name"]) if title.targets else None
 
 
 def _one_line(read: ReadBlock) -> tuple[ReadBlock, Title] | None:

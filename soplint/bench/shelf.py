@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 
 from soplint.bench.facts import Component, Facts, Solution, tokens
+from soplint.bench.numbers import ALIQUOT, relative
 from soplint.bench.portions import portions
 from soplint.bench.preparation import Preparation, Title
 from soplint.notation.phrases import Material
@@ -65,6 +66,9 @@ def _aims(preparation: Preparation) -> Iterator[tuple[Measure, Material | None]]
 
 
 def _components(preparation: Preparation, order: int, facts: Facts) -> Iterator[Component]:
+    if not preparation.taken:
+        yield from _labelled(preparation)
+        return
     volume = preparation.volume
     if volume is None or volume.litres <= 0:
         return
@@ -99,6 +103,23 @@ def _components(preparation: Preparation, order: int, facts: Facts) -> Iterator[
                 _times(component.gram_per_litre, share),
                 component.relative + volume.relative,
             )
+
+
+def _labelled(preparation: Preparation) -> Iterator[Component]:
+    """A bottle known by its label alone: "Solution A: 0.2 mol/L sodium dihydrogen phosphate"."""
+    title = preparation.title
+    targets = title.targets if title is not None else ()
+    if title is None or title.ph is not None or len(targets) != 1:
+        return
+    measure, material = targets[0].stated.measure, targets[0].material
+    if measure.dimension != "molarity" or material is None or material.match is None:
+        return
+    if material.match.generic or title.source != "line":
+        return
+    substance = material.match.substances[0]
+    mass = substance.molar_mass
+    grams = measure.base * mass if mass else None
+    yield Component(substance, material.words, measure.base, grams, relative(measure, ALIQUOT))
 
 
 def _times(value: float | None, factor: float) -> float | None:

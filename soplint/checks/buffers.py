@@ -8,6 +8,7 @@ from dataclasses import replace
 from soplint.bench import Bench, Relation
 from soplint.bench.acidity import exchanged_ph, reach_of
 from soplint.bench.numbers import shown
+from soplint.bench.preparation import Stated
 from soplint.causes import Cause
 from soplint.checks.registry import Disagreement, Judgement, rule
 from soplint.checks.wording import judgement
@@ -111,12 +112,17 @@ def _judgement(
     return Judgement(finding, made.disproved + more)
 
 
+def _reached(bench: Bench, stated: Stated) -> bool:
+    """Whether the contents give the pH that is stated: a reference buffer need not hold much."""
+    return any(r.kind == "ph" and r.agrees and r.tested.key == stated.key for r in bench.relations)
+
+
 @rule("buffers.target-near-pka")
 def target_near_pka(bench: Bench) -> Iterator[Judgement]:
     """A buffer is used within one unit of its pKa'."""
     for order, preparation in enumerate(bench.preparations):
         reach = reach_of(preparation, bench.facts, order)
-        if reach is None or reach.distance <= _RANGE:
+        if reach is None or reach.distance <= _RANGE or _reached(bench, reach.stated):
             continue
         measure = reach.stated.measure
         grade = "major" if reach.distance > _FAR else "minor"

@@ -33,6 +33,12 @@ COPPER = (
 TRIS = (
     "## Tris hydrochloride, 0.100 mol/L\n\nDissolve {} of Tris hydrochloride and make up to 1 L.\n"
 )
+# KH2PO4 136.08 g/mol: 13.61 g; the sodium salt NaH2PO4 119.98 g/mol
+POTASSIUM = """\
+## Potassium dihydrogen phosphate, 0.100 mol/L
+
+Dissolve {} of potassium dihydrogen phosphate and make up to 1 L.
+"""
 # 0.500 mol/L × 400 mL × 58.44 g/mol = 11.69 g; for the 250 mL of the neighbour 7.305 g
 TWO_VOLUMES = """\
 # Stocks
@@ -101,6 +107,7 @@ class Slip:
 SLIPS = [
     Slip("other-hydrate", COPPER, "15.96 g", "18.20 g", "anhydrous"),
     Slip("other-salt-form", TRIS, "12.11 g", "13.40 g", "Tris base"),
+    Slip("another-salt", POTASSIUM, "12.00 g", "12.80 g", "sodium dihydrogen phosphate"),
     Slip("factor-ten", SALT, "73.05 g", "66.00 g", "10-fold"),
     Slip("factor-ten", SALT, "0.7305 g", "0.8100 g", "10-fold"),
     Slip("factor-hundred", SALT, "730.5 g", "660.0 g", "100-fold"),
