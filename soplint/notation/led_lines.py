@@ -82,7 +82,8 @@ def _led(text: Text, read: Read) -> list[Sentence] | None:
 
 def _named_after(title: Sentence, recipe: Sentence) -> Sentence:
     """ "1 mol/L KCl (7.46 g in 100 mL)": the amount without a name is of what the title names."""
-    named = [m for m in map(_material_of, title.phrases) if m is not None and m.words]
+    found = [m for m in map(_material_of, title.phrases) if m is not None and m.words]
+    named = list({m.words: m for m in found}.values())
     first = next((p for p in recipe.phrases if isinstance(p, Dose)), None)
     if len(named) != 1 or first is None or first.role is not None:
         return recipe

@@ -48,7 +48,7 @@ _SEPARATORS = {
 }
 
 # Symbols of quantities, as they stand before "=": "m", "V2", "c(NaOH)", "V_total".
-_SYMBOL = re.compile(r"[A-Za-wyz](?:_\w{1,12}|\d{1,2}|[₀-₉]{1,2})?")
+_SYMBOL = re.compile(r"[A-Za-wyzρβγφσ](?:_\w{1,12}|\d{1,2}|[₀-₉]{1,2})?")
 _ASSIGNS = re.compile(r"\s*(?:\([^()=]{1,40}\))?\s*=")
 # What may stand before a symbol; after a word it is the name of something: "buffer A = ...".
 _BEFORE_SYMBOL = {

@@ -12,6 +12,7 @@ from dataclasses import replace
 
 from soplint.notation.arithmetic import arithmetic
 from soplint.notation.asides import asides
+from soplint.notation.strength_symbols import strengths_unassigned
 from soplint.notation.terminals import Terminal
 
 # Words that may stand between a size and its vessel: "50 mL class A conical flask".
@@ -49,6 +50,7 @@ def refine(chars: str, found: list[Terminal]) -> list[Terminal]:
     """The terminals with figures of arithmetic, ware sizes and pH values recognised."""
     if any(terminal.kind in ("TIMES", "EQUALS") for terminal in found):
         found = _facts_unassigned(arithmetic(chars, found))
+        found = strengths_unassigned(chars, found)
     kinds = {terminal.kind for terminal in found}
     if "BASIS" in kinds:
         found = _bases(chars, found)

@@ -66,7 +66,10 @@ class State:
             self.phrases.append(Command(role.start, role.end, role.kind))
         if role.kind in _CLAIMING:
             self.claiming = role.kind
-        elif role.kind == "LPAR" and isinstance(last, (ToVolume, Command)):
+        elif role.kind == "LPAR" and (
+            isinstance(last, (ToVolume, Command))
+            or (isinstance(last, Claim) and last.kind == "dilution")
+        ):
             self.claiming = role.kind  # "bring to 35 mL (0.5 M)": what comes out of it
         elif role.kind == "RPAR" and self.claiming == "LPAR":
             self.claiming = None

@@ -77,7 +77,8 @@ def read_item(chars: str, at: int, style: NumberStyle) -> Item | int:
         end = not_a_quantity(chars, start, numeral.end, numeral.value)
         if end:
             return end
-        if (lead.kind == "label" and not lead.sign) or lead.sign == "#":
+        labelled = lead.kind == "label" and not lead.sign and not _RATIO.match(chars, numeral.end)
+        if labelled or lead.sign == "#":
             return identifier_end(chars, at)
     elif not _fits(numeral, unit):
         unit = None
@@ -86,6 +87,10 @@ def read_item(chars: str, at: int, style: NumberStyle) -> Item | int:
         Item(numeral, unit, lead, start, unit.end if unit is not None else numeral.end),
         attached,
     )
+
+
+# "buffer 20:15:65": parts of a mixture, not the number of a buffer.
+_RATIO = LatePattern(r":\d+(?:\.\d+)?:\d")
 
 
 def _is_title(chars: str, start: int, numeral: Numeral, unit: ReadUnit) -> bool:

@@ -232,10 +232,13 @@ def _plus_ratio(chars: str, item: Item, second: Numeral, unit: ReadUnit | None) 
 
 def _ratio(chars: str, item: Item, style: NumberStyle) -> Joined | None:
     parts, last, end = [item.numeral.value], item.numeral, item.numeral.end
+    tight = chars[end : end + 1] != " "
     while len(parts) < MAX_PARTS:
         found = _JOINT.match(chars, end) if len(parts) == 1 else _NEXT_PART.match(chars, end)
         if found is None or (len(parts) == 1 and found.lastgroup != "colon"):
             break
+        if len(parts) > 1 and tight and found.group()[-1] == " ":
+            break  # "1:200: 5 µL in 995 µL"
         numeral = read_numeral(chars, found.end(), style)
         if numeral is None or chars[numeral.end : numeral.end + 1].isalpha():
             break

@@ -32,7 +32,7 @@ _OVER = re.compile(
 OVER_FIRST = frozenset("/·⋅*.pLlmdckKgsµμh")
 _BASIS = LatePattern(
     r" ?[(\[]? ?(?P<basis>(?:w|v|m|wt|vol|W|V|M|Vol|Wt)\.? ?[/:] ?(?:w|v|m|wt|vol|W|V|M|Vol|Wt)"
-    r"|by (?:volume|weight|mass|vol|wt)|wt(?!\w)|vol(?!\w)|weight(?!\w)|mol(?!\w)"
+    r"(?:[/:](?:w|v|m|wt|vol|W|V|M)){0,4}|by (?:volume|weight|mass|vol|wt)|wt(?!\w)|vol(?!\w)|weight(?!\w)|mol(?!\w)"
     r"|об|мас)(?!\w)(?: ?[)\]])?"
 )
 _BASIS_FIRST = frozenset("([wvmbWVMоm")
@@ -200,7 +200,7 @@ def basis_name(written: str) -> str:
         return "v/v"
     for sign in "/:":
         if sign in text:
-            over, _, under = text.partition(sign)
+            over, under = text.split(sign)[:2]  # "v/v/v" of three parts
             return f"{_VOLUMES_OVER.get(over, over)}/{_VOLUMES_OVER.get(under, under)}"
     if text in ("mol", "at"):
         return "mol"
