@@ -7,51 +7,39 @@ sibling, volumes of headings pass to children.
 
 from __future__ import annotations
 
-import re
-from collections.abc import Iterator, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass, field, replace
 
 from soplint.bench.collect import Collector
-from soplint.bench.preparation import Preparation, Stated, Title
+from soplint.bench.headings import cover, inherit, sets_aside, variant_title
+from soplint.bench.lines import (
+    batch,
+    carries,
+    commands,
+    divided_line,
+    doses,
+    is_recipe,
+    label_of,
+    makes,
+    one_line,
+    only_names,
+    opening_of,
+    run_in_heading,
+    segments,
+    takes_from_it,
+)
+from soplint.bench.preparation import Preparation, Title
 from soplint.bench.title import title_of
-from soplint.intake.model import Block
 from soplint.notation.document import ReadBlock
 from soplint.notation.phrases import (
     Claim,
-    Command,
     Dose,
     Equivalent,
-    Loose,
     Material,
-    Mixture,
     Sentence,
-    SetPH,
     ToVolume,
 )
 from soplint.notation.rows import RecipeTable, Row, Variant
-from soplint.quantities.model import Measure
-
-# Sections whose quantities describe equipment, dates or limits, not a recipe.
-# Headings of sections that hold no recipe.  Only a heading of nothing else sets its section aside:
-# "Reference buffers" and "Instrument check solution" are recipes.
-_ASIDE = {
-    *("apparatus", "equipment", "purpose", "scope", "record", "records", "reference", "references"),
-    *("revision", "history", "responsibility", "responsibilities", "instruments", "definitions"),
-    *("instrumentation", "personnel", "training", "definition", "distribution", "glassware"),
-}
-_BESIDE = {
-    *("and", "of", "the", "or", "for", "related", "normative", "change", "document", "documents"),
-    *("control", "list", "abbreviations", "terms", "roles", "field", "application", "use", "forms"),
-    *("required", "other", "general", "used", "log", "laboratory", "ware", "storage", "staff"),
-}
-_HEADING_WORD = re.compile(r"[A-Za-z]+")
-
-
-def _sets_aside(title: Title) -> bool:
-    """Whether a heading says apparatus, scope, records or the like and nothing else."""
-    words = {word.lower() for word in _HEADING_WORD.findall(title.words)}
-    bare = not title.targets and title.volume is None and title.source != "document"
-    return bare and bool(words & _ASIDE) and words <= _ASIDE | _BESIDE
 
 
 @dataclass(slots=True)
@@ -80,7 +68,7 @@ class _Walker:
         self.lead_level = 0  # nesting level of the item that leads, 0 for a paragraph
         self.aside = False
         self.section = 0
-        self.cover = _cover(blocks)
+        self.cover = cover(blocks)
         self.collector = Collector(self.scope.reagents, self.scope.equivalents)
 
     def walk(self) -> Scope:
@@ -123,7 +111,7 @@ class _Walker:
         source = "document" if read.block is self.cover else "title"
         title = title_of(read.sentences[0], source)
         self.headings.append((level, title))
-        self.aside = _sets_aside(title)
+        self.aside = sets_aside(title)
         self._open()
 
     def _open(self) -> None:
@@ -165,7 +153,7 @@ class _Walker:
         if len(read.sentences) != 1 or not any(c.isalpha() for c in block.text.chars):
             return False
         phrases = read.sentences[0].phrases
-        if any(_is_recipe(phrase) for phrase in phrases):
+        if any(is_recipe(phrase) for phrase in phrases):
             return False
         following = self.blocks[index + 1].block if index + 1 < len(self.blocks) else None
         if following is None or following.kind == "heading":
@@ -181,10 +169,11 @@ class _Walker:
             return colon or (len(block.text.chars) < 120 and not block.text.chars.endswith("."))
         if following.kind == "item":
             names = any(isinstance(phrase, (Material, Dose)) for phrase in phrases)
-            return colon or (names and len(block.text.chars) < 120 and not _commands(phrases))
+            return colon or (names and len(block.text.chars) < 120 and not commands(phrases))
         return colon and len(block.text.chars) < 100
 
-    def _may_title(self, read: ReadBlock) -> bool:
+    @staticmethod
+    def _may_title(read: ReadBlock) -> bool:
         """A paragraph, or the numbered line of a section: "4.2 Silver nitrate, 0.1 mol/L"."""
         block = read.block
         return block.kind == "paragraph" or (block.kind == "item" and "." in (block.number or ""))
@@ -195,11 +184,11 @@ class _Walker:
         phrases = read.sentences[0].phrases
         if len(read.sentences) != 1 or len(chars) > 200 or chars.endswith((".", ":")):
             return False
-        if index + 1 >= len(self.blocks) or not _only_names(phrases):
+        if index + 1 >= len(self.blocks) or not only_names(phrases):
             return False
-        if not any(_carries(phrase) for phrase in phrases):
+        if not any(carries(phrase) for phrase in phrases):
             return False
-        if sum(isinstance(phrase, Dose) for phrase in phrases) > 1 or _divided(read):
+        if sum(isinstance(phrase, Dose) for phrase in phrases) > 1 or divided_line(read):
             return False
         below = self.blocks[index + 1]
         before = self.blocks[index - 1].block if index else None
@@ -208,7 +197,7 @@ class _Walker:
             return False  # one of several lines of a recipe
         if before is not None and before.kind != "heading" and before.text.line > line - 2:
             return False
-        return below.table is not None or _doses(below) or _batch(below)
+        return below.table is not None or doses(below) or batch(below)
 
     def _title_line(self, read: ReadBlock) -> None:
         """A title without the marks of a heading: it holds until the next one."""
@@ -223,24 +212,24 @@ class _Walker:
 
     def _text(self, read: ReadBlock) -> None:
         """Sentences of a block; one that names a solution and makes it stands alone."""
-        for part in _segments(read):
+        for part in segments(read):
             if part.sentences and part.sentences[0].leads:
                 self._led(part)
                 continue
-            opening = _opening(part)
-            divided = _divided(part)
-            alone = _one_line(part)
+            opening = opening_of(part)
+            divided = divided_line(part)
+            alone = one_line(part)
             if opening is not None:
                 self._alone(replace(part, sentences=part.sentences[1:]), opening)
             elif divided is not None:
                 self._alone(*divided)
             elif alone is not None:
                 self._alone(*alone)
-            elif (label := _label(part)) is not None:
+            elif (label := label_of(part)) is not None:
                 self._alone(replace(part, sentences=()), label)
             else:
-                if read.block.kind == "paragraph" and read.block.number is None and _doses(part):
-                    self.collector.fresh(always=_run_in_heading(part))
+                if read.block.kind == "paragraph" and read.block.number is None and doses(part):
+                    self.collector.fresh(always=run_in_heading(part))
                 for sentence in part.sentences:
                     self.collector.sentence(sentence)
 
@@ -259,7 +248,7 @@ class _Walker:
             title = inherit([title, above])
         collector.open(title, parents, self.section, kind="line")
         for number, sentence in enumerate(read.sentences):
-            if number and _takes_from_it(sentence):
+            if number and takes_from_it(sentence):
                 collector.fresh(always=True)
             collector.sentence(sentence)
         self.scope.preparations.extend(collector.close())
@@ -286,7 +275,7 @@ class _Walker:
         self._flush()
         made: list[Preparation] = []
         for number, variant in enumerate(table.variants):
-            head = _variant_title(variant, title)
+            head = variant_title(variant, title)
             self.collector.open(head, parents, self.section, kind="table")
             self.collector.rows(table, number)
             made.extend(self.collector.close())
@@ -315,60 +304,11 @@ class _Walker:
         return bool(variant.volume or variant.fold or variant.name)
 
 
-def _cover(blocks: Sequence[ReadBlock]) -> Block | None:
-    """The heading that titles the whole document: the first, where others stand below it."""
-    headings = [read.block for read in blocks if read.block.kind == "heading"]
-    if len(headings) < 2:
-        return None
-    first = headings[0]
-    titles = [
-        title_of(read.sentences[0])
-        for read in blocks
-        if read.block.kind == "heading" and read.sentences
-    ]
-    sizes = all(t.bare for t in titles[1:]) and any(t.volume is not None for t in titles[1:])
-    if titles and titles[0].targets and sizes:
-        return None  # "## Buffer (20 mM KCl)" over "### For 250 mL" and "### For 500 mL"
-    below = all(other.level > first.level for other in headings[1:])
-    return first if below or _DOCUMENT.search(first.text.chars) else None
-
-
-_DOCUMENT = re.compile(
-    r"\b[A-Z]{2,5}-(?:[A-Z]{2,5}-)?\d{2,5}\b|\bprocedure\b|\bSOP\b", re.IGNORECASE
-)
-
-
-def inherit(chain: Sequence[Title]) -> Title:
-    """The first title of the chain; what it leaves open is taken from those above.
-
-    A title that names a solution of its own takes nothing but a volume from above; a bare one
-    ("Recipe:", "For 50 mL:") takes everything.
-    """
-    title = chain[0]
-    for above in chain[1:]:
-        if title.source == "lead" and title.targets and above.fold is not None:
-            title = _at_its_fold(title, above)
-            break
-        if title.bare and not above.bare:
-            title = replace(
-                above,
-                volume=title.volume or above.volume,
-                text=title.text if title.volume else above.text,
-            )
-            break
-        lends = above.source != "document" or not (above.targets or above.ph)
-        if title.volume is None and above.volume is not None and lends:
-            title = replace(title, volume=above.volume)
-    if title.bare and title.volume is not None and len(chain) > 1 and chain[0].volume is not None:
-        title = replace(title, words=chain[1].words)  # "Per 30 mL:" names nothing
-    return title
-
-
 def _without_volume(read: ReadBlock, title: Title) -> bool:
     """Whether a line states no volume of its own, so that the heading's counts."""
     phrases = [phrase for sentence in read.sentences for phrase in sentence.phrases]
     liquids = [p for p in phrases if isinstance(p, Dose) and p.amount.dimension == "volume"]
-    own = _makes(phrases) or len(liquids) > 1
+    own = makes(phrases) or len(liquids) > 1
     return title.volume is None and not own and not title.bare
 
 
@@ -389,287 +329,7 @@ def _is_preparation(row: Row) -> bool:
     return taken and any(isinstance(phrase, (Claim, ToVolume)) for phrase in phrases)
 
 
-_WORKING = re.compile(r"\b(final|working|use|1\s?[x×])\b", re.IGNORECASE)
-
-
-def _at_its_fold(title: Title, above: Title) -> Title:
-    """ "1x: 137 mM NaCl, ..." above the list of a 10X stock: strengths at another fold."""
-    own = title.fold.measure if title.fold is not None else None
-    if own is None and _WORKING.search(title.words) and above.fold is not None:
-        own = replace(above.fold.measure, value=1.0, low=1.0, high=1.0)
-    if own is None:
-        return replace(title, volume=title.volume or above.volume)
-    targets = tuple(replace(target, fold=own) for target in title.targets)
-    return replace(
-        above, targets=above.targets + targets, volume=title.volume or above.volume,
-        materials=above.materials or title.materials,
-    )  # fmt: skip
-
-
-def _variant_title(variant: Variant, title: Title | None) -> Title:
-    """The title of an amount column: its own volume, fold and pH, the rest from above."""
-
-    def stated(measure: Measure | None) -> Stated | None:
-        return Stated(variant.head, measure) if measure is not None else None
-
-    volume, fold, ph = stated(variant.volume), stated(variant.fold), stated(variant.ph)
-    if title is None or variant.name:
-        base = Title(variant.head, variant.name or variant.head.chars, (), ())
-    else:
-        base = title
-    return replace(
-        base,
-        volume=volume or base.volume,
-        fold=fold or base.fold,
-        ph=ph or base.ph,
-        source="column" if volume else base.source,
-    )
-
-
-def _opening(read: ReadBlock) -> Title | None:
-    """The title that opens a paragraph: "Borax, 0.05 mol/L, one litre. Dissolve 19.1 g ...", else None."""
-    if len(read.sentences) < 2:
-        return None
-    first, rest = read.sentences[0], read.sentences[1:]
-    if not any(_carries(phrase) for phrase in first.phrases):
-        return None
-    if not all(_carries(phrase) or _known(phrase) for phrase in first.phrases[1:]):
-        return None
-    if len(first.text.chars) > 120 or not _only_names(first.phrases):
-        return None
-    made = any(isinstance(p, (Dose, ToVolume)) for s in rest for p in s.phrases)
-    title = title_of(first, "line")
-    return title if made and (title.targets or title.volume or title.ph or title.fold) else None
-
-
-def _carries(phrase: object) -> bool:
-    """Whether a phrase names something with a strength, pH or volume."""
-    if isinstance(phrase, Dose):
-        return phrase.material is not None
-    return isinstance(phrase, Material) and bool(
-        phrase.strengths or phrase.bracket or phrase.ph or phrase.contents or phrase.solution
-    )
-
-
-# Commands that a title may hold: "buffer brought to pH 2.5", "diluted acid".
-_AIMING = ("PREPARE", "MAKE_UP", "DILUTE", "ADJUST")
-
-
-def _known(phrase: object) -> bool:
-    """Whether a phrase is no run of unknown words ("run in slowly from the dispenser")."""
-    if isinstance(phrase, Material):
-        return phrase.match is not None or not phrase.words
-    return isinstance(phrase, (Dose, Mixture, ToVolume, Loose, SetPH)) or (
-        isinstance(phrase, Command) and phrase.kind in _AIMING
-    )
-
-
-def _only_names(phrases: Sequence[object]) -> bool:
-    """Whether phrases name a solution and what it shall be, and do nothing."""
-    named = False
-    for phrase in phrases:
-        if isinstance(phrase, Dose):
-            if phrase.amount.dimension != "volume" or phrase.role is not None:
-                return False
-            named = named or phrase.material is not None
-        elif isinstance(phrase, Material):
-            named = True
-        elif isinstance(phrase, Command) and phrase.kind not in _AIMING:
-            return False
-        elif isinstance(phrase, ToVolume) and not phrase.said_final:
-            return False
-    return named
-
-
-_COLON = re.compile(r":(?=\s)|\s[-–—]\s")
-
-
-def _divided(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
-    """ "25 mmol/L MES with 0.1 mol/L NaCl, 1 L: 250 mL of ...": title and body at the first colon."""
-    if not read.sentences:
-        return None
-    first = read.sentences[0]
-    colon = _COLON.search(first.text.chars)
-    if colon is None:
-        return None
-    before = tuple(p for p in first.phrases if p.end <= colon.start())
-    after = tuple(p for p in first.phrases if p.start >= colon.end())
-    if len(before) + len(after) != len(first.phrases) or not _only_names(before):
-        return None
-    body = [p for s in read.sentences[1:] for p in s.phrases] + list(after)
-    doses = [p for p in body if isinstance(p, Dose)]
-    title = title_of(replace(first, text=first.text, phrases=before), "line")
-    own = bool(title.targets or title.volume or title.ph or title.fold)
-    result = any(isinstance(p, (Claim, ToVolume)) for p in body) or len(doses) > 1
-    if not doses or not (own or (read.block.kind == "item" or len(doses) > 1) and result):
-        return None
-    title = replace(title, words=first.text.chars[: colon.start()].strip())
-    rest = (replace(first, phrases=after), *read.sentences[1:])
-    return replace(read, sentences=rest), title
-
-
 _TITLE_LINE = 9  # deeper than every marked heading
-
-
-def _takes_from_it(sentence: Sentence) -> bool:
-    """Whether a sentence uses the solution before it: "Add 10 µL to 90 µL medium per well"."""
-    doses = [phrase for phrase in sentence.phrases if isinstance(phrase, Dose)]
-    return (
-        len(doses) > 1
-        and doses[0].material is None
-        and doses[0].role is None
-        and doses[0].amount.dimension == "volume"
-    )
-
-
-def _batch(read: ReadBlock) -> bool:
-    """Whether a block says nothing but a volume: "For 250 mL:"."""
-    title = title_of(read.sentences[0]) if len(read.sentences) == 1 else None
-    return title is not None and title.bare and title.volume is not None
-
-
-def _run_in_heading(read: ReadBlock) -> bool:
-    """Whether a paragraph opens with a word or two of its own: "Assay. Mix 2.0 mL of ..."."""
-    first = read.sentences[0]
-    chars = first.text.chars.strip()
-    return (
-        len(read.sentences) > 1
-        and len(chars.split()) <= 4
-        and chars.endswith(".")
-        and not first.measures
-        and not any(isinstance(phrase, Command) for phrase in first.phrases)
-    )
-
-
-def _doses(read: ReadBlock) -> bool:
-    """Whether a block takes anything."""
-    return any(isinstance(p, Dose) for sentence in read.sentences for p in sentence.phrases)
-
-
-def _segments(read: ReadBlock) -> Iterator[ReadBlock]:
-    """The block, cut before every later sentence that names a solution and makes it."""
-    start = 0
-    for index in range(1, len(read.sentences)):
-        single = replace(read, sentences=(read.sentences[index],))
-        if read.sentences[index - 1].leads:
-            continue  # the recipe of the title before it
-        led = read.sentences[index].leads
-        if led or _divided(single) is not None or _one_line(single) is not None:
-            yield replace(read, sentences=read.sentences[start:index])
-            start = index
-    yield replace(read, sentences=read.sentences[start:])
-
-
-_LETTERED = re.compile(
-    r"\s*(?P<name>(?:stock |buffer )?(?:solution|stock|buffer|reagent|component) [A-Z0-9]{1,2})"
-    r"\s?[:=–—-]\s",
-    re.IGNORECASE,
-)
-
-
-def _label(read: ReadBlock) -> Title | None:
-    """ "Solution A: 0.2 mol/L sodium dihydrogen phosphate": a bottle with its label, no recipe."""
-    if len(read.sentences) != 1:
-        return None
-    sentence = read.sentences[0]
-    named = _LETTERED.match(sentence.text.chars)
-    if named is None:
-        return None
-    told = [p for p in sentence.phrases if p.end > named.end()]
-    if len(told) != 1 or not isinstance(told[0], Material) or told[0].match is None:
-        return None
-    title = title_of(replace(sentence, phrases=tuple(told)), "line")
-    return replace(title, words=named["name"]) if title.targets else None
-
-
-def _one_line(read: ReadBlock) -> tuple[ReadBlock, Title] | None:
-    """A line such as "0.2 mol/L TCEP: 57 mg in 1 mL of ..." with its title, else None."""
-    if not read.sentences or not read.sentences[0].phrases:
-        return None
-    head = read.sentences[0]
-    first = head.phrases[0]
-    rest = replace(head, phrases=head.phrases[1:])
-    body = replace(read, sentences=(rest, *read.sentences[1:]))
-    if isinstance(first, Dose):
-        return _dose_first(read, body, first)
-    if isinstance(first, ToVolume) and first.said_final and len(head.phrases) > 1:
-        if _goes_on(head, first):  # "10 L: 9 L water, 100 mL stock A, ..."
-            return body, title_of(replace(head, phrases=(first,)), "line")
-    if not isinstance(first, Material) or not first.words:
-        return None
-    phrases = [phrase for sentence in read.sentences for phrase in sentence.phrases]
-    named = bool(first.strengths or first.finals or first.solution or first.contents) or any(
-        m.dimension not in ("mass", "volume", "amount", "ratio") for m in first.bracket
-    )
-    taken = any(isinstance(p, Dose) and p.amount.dimension in ("mass", "volume") for p in phrases)
-    if not (named and taken and (_makes(phrases) or read.block.kind == "item")):
-        return None
-    if _facts_only(phrases):
-        return None
-    title = title_of(replace(head, phrases=(first,)), "line")
-    return body, _named_by(title, first.end)
-
-
-def _dose_first(read: ReadBlock, body: ReadBlock, first: Dose) -> tuple[ReadBlock, Title] | None:
-    """ "10 L: 100 mL stock A ...", "MES 0.5 mol/L, 1 L: 97.6 g ...", "5 % milk: 2.5 g in 50 mL"."""
-    head, material = read.sentences[0], first.material
-    rest = [phrase for sentence in body.sentences for phrase in sentence.phrases]
-    titled = replace(head, phrases=(first,))
-    if first.amount.dimension == "volume" and first.role is None and _goes_on(head, first):
-        if rest and (material is None or material.start == first.start):
-            return body, _named_by(title_of(titled, "line"), first.end)
-        return None
-    if material is None or material.start != first.start or not material.words:
-        return None
-    aimed = material.finals or (material.strengths and first.amount.dimension == "mass")
-    liquids = any(isinstance(p, Dose) and p.amount.dimension == "volume" for p in rest)
-    if aimed and (_makes(rest) or liquids):
-        # the dose stays: its own strength is what it is tested against
-        name = replace(material, strengths=(), finals=(), bracket=())
-        title = title_of(replace(head, phrases=(name,)), "line")
-        return read, replace(title, words=material.words)
-    return None
-
-
-def _makes(phrases: Sequence[object]) -> bool:
-    """Whether a line says what its volume is."""
-    return any(isinstance(phrase, ToVolume) for phrase in phrases) or any(
-        isinstance(phrase, Dose) and phrase.role == "in" for phrase in phrases
-    )
-
-
-def _named_by(title: Title, end: int) -> Title:
-    """The title with only the words up to ``end``, where its recipe begins."""
-    return replace(title, words=title.text.chars[:end].strip())
-
-
-def _goes_on(sentence: Sentence, first: Dose | ToVolume) -> bool:
-    """Whether a colon or dash follows: "Borax 0.1 mol/L, 1 L: 38.1 g ..."."""
-    return sentence.text.chars[first.end :].lstrip()[:1] in (":", "-", "–", "—")
-
-
-def _facts_only(phrases: Sequence[object]) -> bool:
-    return not any(isinstance(phrase, (Command, ToVolume)) for phrase in phrases) and not any(
-        isinstance(phrase, Dose) and phrase.amount.dimension == "mass" for phrase in phrases
-    )
-
-
-def _is_recipe(phrase: object) -> bool:
-    """Whether a phrase makes its line part of a recipe, so that the line is no lead-in."""
-    if isinstance(phrase, ToVolume):
-        return not phrase.said_final
-    if not isinstance(phrase, Dose):
-        return False
-    if phrase.amount.dimension != "volume":
-        return phrase.amount.dimension in ("mass", "amount")
-    material = phrase.material
-    if material is None:
-        return False
-    return phrase.command not in (None, "PREPARE", "MAKE_UP")
-
-
-def _commands(phrases: Sequence[object]) -> bool:
-    return any(isinstance(p, Command) and p.kind not in ("PREPARE", "MAKE_UP") for p in phrases)
 
 
 def _first_line(preparation: Preparation) -> int:
