@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import replace
 
 from soplint.bench import Bench, carry_out
+from soplint.bench.contact import pairs
 from soplint.checks import RULES, Judgement
 from soplint.findings.model import SEVERITIES, Coverage, Finding, Related, Review
 from soplint.intake import Document, read_bytes
@@ -105,11 +106,14 @@ def _ordered(findings: list[Finding], document: Document) -> tuple[Finding, ...]
 
 def _coverage(bench: Bench) -> Coverage:
     reading = bench.reading
+    assessed, left = pairs(bench)
     return Coverage(
         sentences_with_quantities=reading.with_quantities,
         sentences_read=reading.with_quantities - len(reading.unread),
         unread=tuple((line, text) for line, text, _ in reading.unread),
         set_aside=dict(sorted(reading.set_aside.items())),
+        pairs_assessed=assessed,
+        pairs_not_assessed=left,
     )
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator
 from dataclasses import dataclass
 
@@ -58,7 +59,11 @@ def contents_of(
 ) -> Iterator[Content]:
     """The contents that a dose or a bare material brings."""
     material = dose.material if isinstance(dose, Dose) else dose
-    if material is None or not material.words:
+    if (
+        material is None
+        or not material.words
+        or _LABEL.search(text.chars[dose.start : dose.end + 1])
+    ):
         return
     if material.is_water:
         litres = _litres(dose) if isinstance(dose, Dose) else None
@@ -91,6 +96,9 @@ def contents_of(
         percent_of(material, substance, grams, litres, facts),
         step,
     )
+
+
+_LABEL = re.compile(r"\bHF-|-HF\b")  # a catalogue number, no acid
 
 
 def _by_words(words: str) -> frozenset[str]:

@@ -93,6 +93,10 @@ _EMPTIES = re.compile(
 )
 _INTO = re.compile(r"\b(?:into|onto)\b", re.IGNORECASE)
 _JOIN = re.compile(r"\b(?:mix|combine|pour together|unite)\b.*\b(?:both|two|all|solutions)\b", re.I)
+_ENDS_AT = re.compile(
+    r"\b(?:to|until|at|reaches|is|above|below)\W*(?:(?:the|a|is|pH|above|below|about|reaches)\W*)*$",
+    re.I,
+)
 _BRINGS = {"ADD", "POUR", "DISSOLVE", "MAKE_UP", "DILUTE", "MIX", "WEIGH", "ADJUST", "PREPARE"}
 _BY_HAND = re.compile(
     r"\b(?:run in|top up|treat|acidif\w+|spike|charge|pour\w*|tip|empt\w+|quench\w*|soak\w*"
@@ -211,6 +215,7 @@ class Walker:
             vessel.kind = "list"
         if not (commanded or recipe):
             return
+        self._stated_ph(sentence, vessel, skip)
         command = ""
         order = self.places.get((sentence.text.line, sentence.text.column), 10**6)
         for phrase in sentence.phrases:
@@ -234,6 +239,14 @@ class Walker:
                     self._phrase(sentence, phrase, command, vessel, order)
         self._words(sentence, vessel, skip, named)
 
+    def _stated_ph(self, sentence: Sentence, vessel: Vessel, skip: list[tuple[int, int]]) -> None:
+        """ "bring to pH 6.5", "until the pH is above 12": the pH that the step ends at."""
+        for measure in sentence.measures:
+            before = sentence.text.chars[max(0, measure.start - 40) : measure.start]
+            if measure.dimension == "pH" and not _covered(measure.start, skip):
+                if _ENDS_AT.search(before):
+                    vessel.ph = measure.nominal
+
     def _phrase(
         self, sentence: Sentence, phrase: Dose | Material, command: str, vessel: Vessel, order: int
     ) -> None:
@@ -243,8 +256,9 @@ class Walker:
                 return
             if phrase.match is None or phrase.match.generic or phrase.role == "from":
                 return
-        for dose in (phrase, *(phrase.alternatives if isinstance(phrase, Dose) else ())):
-            self._add(sentence.text, dose, vessel, order)
+        self._add(sentence.text, phrase, vessel, order)
+        for other in phrase.alternatives if isinstance(phrase, Dose) else ():
+            self._add(sentence.text, other, vessel, order)
 
     def _add(self, text: Text, thing: Dose | Material, vessel: Vessel, order: int) -> None:
         if isinstance(thing, Dose) and thing.amount.dimension == "amount":
@@ -264,7 +278,8 @@ class Walker:
     def _adjusted(self, text: Text, phrase: SetPH, vessel: Vessel, order: int) -> None:
         if phrase.ph is not None:
             vessel.ph = phrase.ph.nominal
-        for thing in (*phrase.doses, *phrase.reagents):
+        things: list[Dose | Material] = [*phrase.doses, *phrase.reagents]
+        for thing in things:
             self._add(text, thing, vessel, order)
 
     def _words(
@@ -289,7 +304,6 @@ class Walker:
 
     def _streams(self, sentence: Sentence, named: list[Destination], vessel: Vessel) -> None:
         """What a sentence puts into named containers."""
-        text = sentence.text
         last = 0
         for place in named:
             start, end = last, place.start

@@ -1,0 +1,213 @@
+"""Pairs of substances that react dangerously in one vessel or one waste container."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from soplint.bench import Bench
+from soplint.bench.contact import Contact, closing, contacts
+from soplint.bench.vessels import Vessel
+from soplint.checks.hazard_words import (
+    PURPOSE,
+    Protection,
+    at,
+    hazard,
+    place,
+    plain,
+    protection,
+)
+from soplint.checks.registry import Judgement, rule
+from soplint.findings.model import SEVERITIES
+
+_OWN = {  # these rules speak about waste containers themselves
+    "hazards.azide-apart-from-acid-and-metal",
+    "hazards.cyanide-alkaline",
+    "hazards.sulfide-alkaline",
+    "hazards.hypochlorite-alone",
+}
+_LITTLE_HYDROGEN = 1.0  # L, convention (gases.csv)
+_OPEN_REMARK = 1.0  # L of carbon dioxide from which a remark is worth its line
+
+
+def severity(contact: Contact, shield: Protection) -> str | None:
+    """Class of a contact (issue of the hazards, point 3); None: nothing to say."""
+    gas, litres = contact.gas, contact.litres
+    if gas is not None and gas.listed:
+        if contact.vessel.kind != "stream" and _controlled(contact.vessel, shield):
+            return "minor"
+        return "major" if litres is not None and litres < gas.grave else "critical"
+    if gas is not None and gas.key == "CO2":
+        return "remark" if litres is None or litres >= _OPEN_REMARK else None
+    if gas is not None and gas.key == "H2" and litres is not None and litres < _LITTLE_HYDROGEN:
+        return "remark"
+    if gas is not None and gas.key == "NH3" and shield.hood:
+        return "minor"
+    return contact.pair.severity.split()[0]
+
+
+def _controlled(vessel: Vessel, shield: Protection) -> bool:
+    """Purpose, trap and fume cupboard are all stated."""
+    return bool(PURPOSE.search(vessel.words)) and shield.trap and shield.hood
+
+
+def _rule(contact: Contact) -> str:
+    if contact.vessel.kind == "stream" and contact.pair.rule not in _OWN:
+        return "hazards.waste-streams-apart"
+    return contact.pair.rule
+
+
+def speak(bench: Bench, name: str) -> Iterator[Judgement]:
+    """One finding for each place, the gravest."""
+    shield = protection(bench)
+    best: dict[tuple[int, int, int], tuple[str, Contact]] = {}
+    for contact in contacts(bench):
+        if _rule(contact) != name:
+            continue
+        grade = severity(contact, shield)
+        late = contact.late
+        spot = (*late.text.place(late.start), late.end)
+        if grade is None:
+            continue
+        held = best.get(spot)
+        if held is None or SEVERITIES.index(grade) < SEVERITIES.index(held[0]):
+            best[spot] = (grade, contact)
+    for grade, contact in best.values():
+        yield _judgement(name, grade, contact)
+
+
+def _judgement(name: str, grade: str, contact: Contact) -> Judgement:
+    gas, litres, pair = contact.gas, contact.litres, contact.pair
+    product = gas.name if gas is not None else pair.product
+    met = f"{plain(contact.early)} and {plain(contact.late)} meet in {place(contact.vessel)}"
+    much = (
+        f", up to {litres:.3g} L of gas at 25 °C" if litres is not None and gas is not None else ""
+    )
+    source = f"{pair.class_a} with {pair.class_b}: {pair.hazard} ({pair.source}; {pair.status})"
+    if pair.condition:
+        source += f"; {pair.condition}"
+    ph = f"; stated pH {contact.vessel.ph:g}" if contact.vessel.ph is not None else ""
+    return at(
+        name,
+        grade,
+        contact.late,
+        f"{met}: {product}{much}",
+        working=source + ph,
+        others=((contact.early, "meets it"),),
+        computed=f"{litres:.3g} L" if litres is not None else None,
+        see=(gas.source,) if gas is not None and gas.source else (),
+    )
+
+
+@rule("hazards.no-toxic-gas")
+def no_toxic_gas(bench: Bench) -> Iterator[Judgement]:
+    """Nothing meets in a vessel that sets free toxic gas."""
+    yield from speak(bench, "hazards.no-toxic-gas")
+
+
+@rule("hazards.oxidiser-apart-from-organic")
+def oxidiser_apart(bench: Bench) -> Iterator[Judgement]:
+    """Oxidisers do not meet organic substances."""
+    yield from speak(bench, "hazards.oxidiser-apart-from-organic")
+
+
+@rule("hazards.azide-apart-from-acid-and-metal")
+def azide_apart(bench: Bench) -> Iterator[Judgement]:
+    """Azide meets no acid, no heavy metal and no chlorinated solvent."""
+    yield from speak(bench, "hazards.azide-apart-from-acid-and-metal")
+
+
+@rule("hazards.hypochlorite-alone")
+def hypochlorite_alone(bench: Bench) -> Iterator[Judgement]:
+    """Hypochlorite meets no acid, ammonia, guanidine, urea or alcohol."""
+    yield from speak(bench, "hazards.hypochlorite-alone")
+
+
+@rule("hazards.cyanide-alkaline")
+def cyanide_alkaline(bench: Bench) -> Iterator[Judgement]:
+    """Cyanide stays above pH 10.5."""
+    yield from speak(bench, "hazards.cyanide-alkaline")
+
+
+@rule("hazards.sulfide-alkaline")
+def sulfide_alkaline(bench: Bench) -> Iterator[Judgement]:
+    """Sulfide stays above pH 9."""
+    yield from speak(bench, "hazards.sulfide-alkaline")
+
+
+@rule("hazards.waste-streams-apart")
+def waste_streams_apart(bench: Bench) -> Iterator[Judgement]:
+    """Streams that react are not collected in one container."""
+    yield from speak(bench, "hazards.waste-streams-apart")
+
+
+@rule("hazards.peroxide-controlled")
+def peroxide_controlled(bench: Bench) -> Iterator[Judgement]:
+    """Strong hydrogen peroxide meets no acetone, metal salt or closed cap."""
+    for found in speak(bench, "hazards.peroxide-controlled"):
+        if not _closed_at(bench, found):
+            yield found
+
+
+def _closed_at(bench: Bench, found: Judgement) -> bool:
+    """Whether the finding about the closed vessel already speaks about this contact."""
+    return any(
+        contact.late.text.span(contact.late.start, contact.late.end) == found.finding.span
+        and _shut(contact) is not None
+        for contact in contacts(bench)
+        if contact.gas is not None
+    )
+
+
+def _shut(contact: Contact) -> tuple[int, int, int] | None:
+    """Where the vessel is closed once both are in it: sentence, start, end."""
+    if contact.vessel.kind == "stream":
+        return None
+    return closing(contact.vessel, contact.late.text.line)
+
+
+_SLIGHT = 0.1  # bar of overpressure below which a closed vessel is left alone (convention)
+
+
+@rule("hazards.gas-can-escape")
+def gas_can_escape(bench: Bench) -> Iterator[Judgement]:
+    """A vessel in which gas is set free stays open or vented."""
+    said: set[int] = set()
+    for contact in contacts(bench):
+        if contact.gas is None or contact.gas.key not in ("CO2", "H2", "O2", "Cl2", "NO2"):
+            continue
+        shut = _shut(contact)
+        if shut is None or id(contact.vessel) in said:
+            continue
+        pressure, how = _pressure(contact)
+        if pressure is not None and pressure < _SLIGHT:
+            continue
+        said.add(id(contact.vessel))
+        number, start, end = shut
+        yield hazard(
+            "hazards.gas-can-escape",
+            "critical",
+            contact.vessel.sentences[number].text,
+            start,
+            end,
+            f"{plain(contact.early)} and {plain(contact.late)} set free {contact.gas.name} in a closed vessel{how}",
+            working=f"{contact.pair.class_a} with {contact.pair.class_b} ({contact.pair.source}; {contact.pair.status})",
+            others=((contact.late, "sets gas free"),),
+            computed=f"{contact.litres:.3g} L" if contact.litres is not None else None,
+        )
+    for found in speak(bench, "hazards.gas-can-escape"):
+        if not _closed_at(bench, found):
+            yield found
+
+
+def _pressure(contact: Contact) -> tuple[float | None, str]:
+    """Overpressure in bar, V_gas / V_headspace, where the size of the vessel is printed."""
+    litres, vessel = contact.litres, contact.vessel
+    if litres is None:
+        return None, ""
+    if vessel.ware is None or vessel.ware <= (vessel.volume or 0.0):
+        return None, f": up to {litres:.3g} L"
+    head = vessel.ware - (vessel.volume or 0.0)
+    return (
+        litres / head,
+        f": {litres:.3g} L into {head * 1000:.3g} mL, {litres / head:.2g} bar over",
+    )
