@@ -6,7 +6,6 @@ final volume.  All reasonable readings are tried before a disagreement is record
 
 from __future__ import annotations
 
-import re
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
 from itertools import islice, product
@@ -15,24 +14,18 @@ from soplint.bench.facts import Facts
 from soplint.bench.numbers import EXACT, nominal_relative, relative, shown
 from soplint.bench.portions import candidates
 from soplint.bench.preparation import (
-    Claimed,
     FinalVolume,
     Preparation,
-    Stated,
-    Taken,
     Target,
 )
 from soplint.bench.relation import Relation
-from soplint.bench.things import Bearers, Share, bearers, shares
+from soplint.bench.shares import Share, shares
+from soplint.bench.targets import targets_of
+from soplint.bench.things import Bearers, bearers
 from soplint.bench.volumes import final_volume
 from soplint.findings.model import Interval
-from soplint.notation.phrases import Dose
 from soplint.quantities.model import Measure
 
-_STRENGTHS = {
-    *("molarity", "molality", "normality", "mass-concentration", "fraction", "ppm"),
-    "activity-concentration",
-}
 _MOST_READINGS = 64  # combinations of readings that are tried for one sum
 
 
@@ -79,90 +72,6 @@ def _meets(ratio: float, measure: Measure, spread: float) -> bool:
         low, high = measure.low / measure.nominal, measure.high / measure.nominal
         return low * (1 - spread) <= ratio <= high * (1 + spread)
     return abs(ratio - 1) <= spread + 1e-9
-
-
-def targets_of(preparation: Preparation) -> Iterator[Target]:
-    """Strengths that the preparation is said to have: title, brackets, columns, claims."""
-    title = preparation.title
-    if title is not None and _title_counts(preparation):
-        yield from title.targets
-    for taken in preparation.taken:
-        yield from _finals(taken)
-        for other in taken.dose.alternatives:
-            yield from _finals(replace(taken, dose=other))
-    for claimed in preparation.claimed:
-        claim = claimed.claim
-        if not _claim_counts(claimed):
-            continue
-        if claim.kind == "strength" and claim.measure.dimension in _STRENGTHS:
-            yield Target(Stated(claimed.text, claim.measure), claim.material, "claim", claimed.fold)
-
-
-# Sentences whose results come from a measurement, not from the recipe before them.
-_MEASURED = re.compile(
-    r"\b(example|titre|titration|reading|sample|absorbance|blank|limit|range|between|sensitivity)\b"
-    r"|[A-Za-z]\w*\s*=\s*\d|\b\d+(?:\.\d+)?\s?[x×X]\b",
-    re.IGNORECASE,
-)
-
-
-def _claim_counts(claimed: Claimed) -> bool:
-    """Whether a claim speaks of the preparation as made (not of a result or another fold)."""
-    if claimed.claim.material is not None or claimed.fold is not None:
-        return True
-    return not _MEASURED.search(claimed.text.chars)
-
-
-def _title_counts(preparation: Preparation) -> bool:
-    """A document's title speaks of a preparation only where there is just one."""
-    assert preparation.title is not None
-    return preparation.title.source != "document" or preparation.sole
-
-
-def _finals(taken: Taken) -> Iterator[Target]:
-    material = taken.dose.material
-    beside = [m for m in (material.bracket if material else ()) if m.dimension == "fold"]
-    fold = beside[0] if len(beside) == 1 and material and not material.strengths else None
-    for measure in final_strengths(taken.dose):
-        yield Target(Stated(taken.text, measure), material, "bracket", fold)
-    for measure in _either(taken.dose):
-        yield Target(Stated(taken.text, measure), taken.dose.material, "maybe", fold)
-
-
-# Strengths beside a mass that cannot be an assay of the thing weighed.
-_NO_ASSAY = ("molarity", "normality", "mass-concentration", "activity-concentration")
-
-
-def final_strengths(dose: Dose) -> tuple[Measure, ...]:
-    """Strengths beside a dose that mean the finished preparation, not the thing taken."""
-    material = dose.material
-    if material is None:
-        return ()
-    finals = [m for m in material.finals if m.dimension in _STRENGTHS]
-    beside = [m for m in material.strengths if m.dimension in _STRENGTHS]
-    bracket = [m for m in material.bracket if m.dimension in _STRENGTHS]
-    if dose.amount.dimension in ("mass", "amount"):
-        molar = [m for m in beside if m.dimension in _NO_ASSAY]
-        return tuple([*finals, *molar, *bracket])
-    if len(beside) > 1 and len({m.dimension for m in beside}) == 1:
-        stock = max(beside, key=lambda m: m.base)
-        finals.extend(m for m in beside if m is not stock)
-    if not beside and len(bracket) > 1 and len({m.dimension for m in bracket}) == 1:
-        finals.extend(bracket[1:])  # "1 mL KCl (3 M) (10 mM)": stock, then final
-    if beside:
-        same = [m for m in bracket if m.dimension == beside[0].dimension]
-        finals.extend(m for m in same if m.base < beside[0].base)
-    return tuple(finals)
-
-
-def _either(dose: Dose) -> tuple[Measure, ...]:
-    """Strengths behind a volume that may be the stock's or the mixture's: "50 mL acid (10 % v/v)"."""
-    material = dose.material
-    if material is None or dose.amount.dimension != "volume":
-        return ()
-    beside = [m for m in material.strengths if m.dimension in _STRENGTHS]
-    bracket = [m for m in material.bracket if m.dimension in _STRENGTHS]
-    return tuple(bracket if not beside and len(bracket) == 1 else ())
 
 
 # --- testing --------------------------------------------------------------------------------------
