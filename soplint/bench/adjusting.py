@@ -10,7 +10,7 @@ import re
 from collections.abc import Iterator
 from dataclasses import dataclass, replace
 
-from soplint.bench.acidity import ALLOWANCE, DILUTE, WIDE_ALLOWANCE
+from soplint.bench.acidity import ALLOWANCE, DILUTE, NO_BUFFERS, WIDE_ALLOWANCE
 from soplint.bench.filled import Adjuster, Bottles, Finished, Setting, adjuster_of
 from soplint.bench.portions import portions
 from soplint.bench.preparation import Stated, Taken
@@ -106,11 +106,11 @@ def guides(finished: Finished, bottles: Bottles) -> Iterator[Guide]:
         adjuster = setting.adjusters[0]
         text = setting.adjusted.text
         for dose in setting.adjusted.set_ph.doses:
-            told = dose.material
+            told, place = dose.material, bottles.text_of(dose, text)
             other = adjuster_of(told, bottles.facts) if told is not None and told.words else None
             if other is None or other.name == adjuster.name:
                 dose = replace(dose, material=told if other is not None else adjuster.material)
-                yield from _guide(Taken(text, dose, 0), other or adjuster, bottles)
+                yield from _guide(Taken(place, dose, 0), other or adjuster, bottles)
         for measure in adjuster.material.bracket:
             if measure.dimension in ("volume", "mass"):
                 dose = Dose(measure.start, measure.end, measure, _bare(adjuster.material))
@@ -161,7 +161,11 @@ def _guide(
 
 def adjuster_relations(finished: Finished, bottles: Bottles) -> Iterator[Relation]:
     """Stated quantities of adjuster against what the pH needs."""
+    seen = set()
     for guide in guides(finished, bottles):
+        if guide.stated.key in seen:
+            continue
+        seen.add(guide.stated.key)
         need = need_of(finished, guide.adjuster.name)
         if need is None or need.high <= 0:
             continue
@@ -242,9 +246,7 @@ def start_relations(finished: Finished) -> Iterator[Relation]:
             "ph-start",
             Stated(claimed.text, measure),
             finished.preparation.name or None,
-            Interval(
-                round(value, 2), "pH", round(value - allowed, 2), round(value + allowed, 2)
-            ),
+            Interval(round(value, 2), "pH", round(value - allowed, 2), round(value + allowed, 2)),
             gap == 0,
             gap,
             f"charge balance of {listed(finished.start[0])} at 25 °C: pH {value:.2f}",
@@ -266,6 +268,8 @@ def room_relations(finished: Finished, bottles: Bottles) -> Iterator[Relation]:
     preparation, setting = finished.preparation, finished.setting
     volume = preparation.volume
     if setting is None or volume is None or volume.provenance not in ("made-up", "mark"):
+        return
+    if finished.guiding:
         return
     if setting.adjusted is None or setting.adjusted.after_volume or len(setting.adjusters) != 1:
         return
@@ -302,7 +306,8 @@ def _adjuster_litres(finished: Finished, bottles: Bottles) -> float | None:
     setting = finished.setting
     assert setting is not None
     adjuster = setting.adjusters[0]
-    if not adjuster.strengths:
+    printed = any(m.dimension in ("molarity", "fraction") for m in adjuster.material.strengths)
+    if not adjuster.strengths or not printed:
         return None
     need = need_of(finished, adjuster.name)
     if need is None:
@@ -333,7 +338,7 @@ def adjuster_volume(finished: Finished) -> tuple[float, float] | None:
 
 def wrong_way(finished: Finished) -> tuple[Setting, Adjuster, float] | None:
     """A pH that the adjuster leads away from: the setting, the adjuster and the pH it starts at."""
-    from soplint.equilibria import EquilibriumError, UnreachableError, adjust, solve
+    from soplint.equilibria import EquilibriumError, solve
 
     setting = finished.setting
     if setting is None or not setting.adjusters or finished.guiding:
@@ -341,23 +346,43 @@ def wrong_way(finished: Finished) -> tuple[Setting, Adjuster, float] | None:
     ph = setting.ph.measure.nominal
     starts: list[float] = []
     for start in finished.start:
+        if not _holds_ph(start):
+            return None
         for degrees in setting.degrees:
             try:
                 starts.append(solve(start, degrees).pH)
             except EquilibriumError:
                 return None
             for adjuster in setting.adjusters:
+                little = dict(start)
+                little[adjuster.name] = little.get(adjuster.name, 0.0) + 1e-3
                 try:
-                    adjust(start, ph, {adjuster.name: 1.0}, degrees)
-                except UnreachableError:
-                    continue
+                    moved = solve(little, degrees).pH - starts[-1]
                 except EquilibriumError:
                     return None
-                return None  # one of the adjusters named reaches it
+                if moved * (ph - starts[-1]) >= 0:
+                    return None  # one of the adjusters named leads towards it
     nearest = min(starts, key=lambda value: abs(value - ph))
     if abs(nearest - ph) < _CLEAR:
         return None
     return setting, setting.adjusters[0], nearest
+
+
+_WEAK = 2e-3  # mol/L; below this traces and the air decide the pH
+
+
+def _holds_ph(contents: dict[str, float]) -> bool:
+    """Whether a buffer is there in strength, and no metal beside a complexing agent."""
+    from soplint.equilibria import EquilibriumError, solve
+
+    try:
+        solution = solve(contents)
+    except EquilibriumError:
+        return False
+    buffers = sum(v for name, v in solution.totals.items() if name not in NO_BUFFERS)
+    chelating = solution.totals.get("edta", 0.0) > 0.0
+    metals = any(solution.charges[ion] > 1 for ion in solution.strong)
+    return (buffers >= _WEAK or chelating) and not (chelating and metals)
 
 
 _CLEAR = 0.7  # nearer to the target the start may lie on either side of it

@@ -16,6 +16,8 @@ from soplint.bench.acidity import ROOM
 from soplint.bench.facts import Facts
 from soplint.bench.portions import candidates, portions, stock_strengths
 from soplint.bench.preparation import Adjusted, Preparation, Stated, Taken
+from soplint.intake.model import Text
+from soplint.notation.document import ReadBlock
 from soplint.notation.phrases import Dose, Material
 from soplint.quantities.model import Measure
 
@@ -96,7 +98,21 @@ class Bottles:
 
     preparations: Sequence[Preparation]
     facts: Facts
+    blocks: Sequence[ReadBlock] = ()
+    _texts: dict[int, Text] = field(default_factory=dict)
     _kept: dict[int, Finished | None] = field(default_factory=dict)
+
+    def text_of(self, dose: Dose, usual: Text) -> Text:
+        """The text that a dose stands in; "about 17 mL is needed" is a sentence of its own."""
+        if not self._texts:
+            self._texts = {
+                id(phrase): sentence.text
+                for block in self.blocks
+                for sentence in block.sentences
+                for phrase in sentence.phrases
+                if isinstance(phrase, Dose)
+            }
+        return self._texts.get(id(dose), usual)
 
     def finished(self, order: int) -> Finished | None:
         """The preparation of that number, or None where a part of it is unknown."""
@@ -302,8 +318,6 @@ def strengths_of(material: Material, facts: Facts) -> tuple[float, ...]:
     """mol/L of a liquid or solution under each reading; none for a solid or an unknown strength."""
     bare = replace(material, bracket=tuple(m for m in material.bracket if _is_strength(m)))
     litre = Measure(material.start, material.end, "volume", 1.0, 1.0, 1.0, "L", 1.0, 1)
-    from soplint.intake.model import Text
-
     taken = Taken(Text("", 1, 1), Dose(material.start, material.end, litre, bare), 0)
     found = {round(p.moles, 6) for p in portions(taken, facts) if p.moles}
     return tuple(sorted(found))

@@ -225,8 +225,10 @@ def _moved(anchor: _Anchor, stated: Stated, degrees: Stated) -> Relation | None:
     at = " to ".join(f"{t:g}" for t in anchor.degrees)
     working = (
         f"charge balance of {listed(anchor.contents)} with pKa at {used:g} °C: {start} at {at} °C"
-        f" becomes pH {values[-1]:.2f} ({(solution.pH - base) / (used - made):+.3f} for each °C)"
+        f" becomes pH {values[-1]:.2f}"
     )
+    if abs(used - made) > 1:
+        working += f" ({(solution.pH - base) / (used - made):+.3f} for each °C)"
     inputs = (degrees,) if anchor.ph is None else (anchor.ph, degrees)
     return _relation(
         "ph-at", stated, anchor.words, values, allowance, working, inputs, anchor.preparation
@@ -449,9 +451,7 @@ def _loaded(
     )
     text = passage.sentence.text
     inputs = (Stated(text, acid.amount), Stated(text, strength[0]), Stated(text, other.amount))
-    return _relation(
-        "ph-loaded", stated, words, values, allowance, working, inputs, preparation
-    )
+    return _relation("ph-loaded", stated, words, values, allowance, working, inputs, preparation)
 
 
 def _strong(material: Material | None) -> bool:
@@ -482,7 +482,9 @@ def _receiver(
         contents = next(finished.contents(), None)
         if contents is None:
             return None
-        if named is not None and named not in (_systems(bench.preparations[order], order, bottles) or set()):
+        if named is not None and named not in (
+            _systems(bench.preparations[order], order, bottles) or set()
+        ):
             continue
         if not _buffered(contents):
             continue

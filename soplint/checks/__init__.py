@@ -1,6 +1,20 @@
 """The rules: one function each, registered by name; one card each under ``rules/``."""
 
-from soplint.checks import amounts, buffers, document, hazards, titrations, units
+from soplint.checks import (
+    acid_forms,
+    adjusting,
+    amounts,
+    buffers,
+    document,
+    hazards,
+    meters,
+    mobile_phases,
+    ph_changes,
+    precipitation,
+    titrations,
+    units,
+    upkeep,
+)
 from soplint.checks.hazard_rules import RULES as HAZARD_RULES
 from soplint.checks.registry import RULES, Disagreement, Judgement, Rule, rule
 
@@ -10,11 +24,18 @@ __all__ = [
     "Disagreement",
     "Judgement",
     "Rule",
+    "acid_forms",
+    "adjusting",
     "amounts",
     "buffers",
     "document",
     "hazards",
+    "meters",
+    "mobile_phases",
+    "ph_changes",
+    "precipitation",
     "rule",
     "titrations",
     "units",
+    "upkeep",
 ]
