@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import re
+from bisect import bisect_right
+from collections.abc import Sequence
 from dataclasses import replace
 
 from soplint.bench.preparation import (
@@ -60,23 +62,26 @@ def _finals_to_doses(phrases: tuple[Phrase, ...]) -> list[Phrase]:
     return result
 
 
-def _fold_of(sentence: Sentence, claim: Claim) -> Measure | None:
-    """The fold that a claim holds at: "1x is 30 mM Tris", "(1 mM at 1x)"."""
-    chars = sentence.text.chars
-    found: Measure | None = None
-    for measure in sentence.measures:
-        if measure.dimension != "fold":
-            continue
-        if measure.end <= claim.measure.start:
-            between = chars[measure.end : claim.measure.start]
-            if not _CLAUSE.search(between):
-                found = measure
-        elif _AT.match(chars[claim.measure.end : measure.start]):
+def _fold_of(chars: str, folds: Sequence[Measure], claim: Claim) -> Measure | None:
+    """The fold that a claim holds at: "1x is 30 mM Tris", "(1 mM at 1x)".
+
+    ``folds`` are all of the sentence in order; only the ones beside the claim can be meant.
+    """
+    at = bisect_right(folds, claim.measure.start, key=lambda fold: fold.end)
+    for measure in folds[at : at + 2]:
+        if _AT.match(chars[claim.measure.end : measure.start]):
             return measure
-    return found
+    if at and not _CLAUSE.search(chars, folds[at - 1].end, claim.measure.start):
+        return folds[at - 1]
+    return None
 
 
 _OF_THIS = re.compile(r"\s*of\s+(?:this|that|it)\b", re.IGNORECASE)
+# "0.3888 g of potassium hydrogen phthalate consumes 18.64 mL of ..."
+_TITRATED = re.compile(
+    r"\b(?:consumes?|is consumed by|uses up|(?:is )?neutrali[sz](?:es|ed by))\s+(?:about\s+)?\d",
+    re.IGNORECASE,
+)
 _CLAUSE = re.compile(r"[;:(]|\.\s")
 _AT = re.compile(r"\W*(?:at|in|for|@)\s+(?:the\s+)?$", re.IGNORECASE)
 
@@ -123,6 +128,7 @@ class Collector:
         self.kind = "steps"
         self.closed = False
         self.step = 0
+        self.folds: list[Measure] = []  # of the sentence in hand
         self.mentioned: Material | None = None  # "Dry potassium nitrate ...": weighed next
         self.pending: list[Taken] = []  # added after the make-up
         self.waiting: list[tuple[Stated, str]] = []  # flasks named after the make-up
@@ -169,6 +175,9 @@ class Collector:
     def sentence(self, sentence: Sentence) -> None:
         """Take up all phrases of a sentence."""
         self.step += 1
+        self.folds = [m for m in sentence.measures if m.dimension == "fold"]
+        if _TITRATED.search(sentence.text.chars):
+            return  # what a titration takes is no addition to a preparation
         command: str | None = None
         other = _OR_COMMAND.search(sentence.text.chars)
         for index, phrase in enumerate(_finals_to_doses(sentence.phrases)):
@@ -192,7 +201,7 @@ class Collector:
         elif isinstance(phrase, Claim) and self._of_another(sentence, command):
             pass  # "for use dilute 1:5 to 50 mM" speaks of another solution
         elif isinstance(phrase, Claim):
-            fold = _fold_of(sentence, phrase)
+            fold = _fold_of(text.chars, self.folds, phrase)
             self.current.claimed.append(Claimed(text, phrase, self.step, fold))
         elif isinstance(phrase, Mixture):
             self.current.mixed.append(Mixed(text, phrase, self.step))
@@ -221,8 +230,9 @@ class Collector:
 
     def _of_another(self, sentence: Sentence, command: str | None) -> bool:
         """Whether a claim is of what a later dilution makes that is not carried out here."""
-        made = sum(isinstance(phrase, ToVolume) for phrase in sentence.phrases)
-        return command == "DILUTE" and self.closed and made != 1
+        if command != "DILUTE" or not self.closed:
+            return False
+        return sum(isinstance(phrase, ToVolume) for phrase in sentence.phrases) != 1
 
     def _inline_title(self, sentence: Sentence, phrase: Phrase) -> None:
         """ "To prepare 0.05 mol/L buffer from the stock, dilute ...": a title within a sentence."""
@@ -278,8 +288,9 @@ class Collector:
         """ "..., 0.5 mg/mL; 5.0 mL of this to 50.0 mL": the solution just made is diluted."""
         if dose.material is not None or dose.amount.dimension != "volume" or self.closed:
             return False
-        holds = any(t.solvent for t in self.current.taken) and bool(self.current.claimed)
-        return holds and bool(_OF_THIS.match(sentence.text.chars, dose.amount.end))
+        if not _OF_THIS.match(sentence.text.chars, dose.amount.end):
+            return False
+        return bool(self.current.claimed) and any(t.solvent for t in self.current.taken)
 
     def _already_taken(self, sentence: Sentence) -> bool:
         """Whether this sentence has taken something: what it "obtains" is the result."""

@@ -29,6 +29,7 @@ from soplint.bench.lines import (
     takes_from_it,
 )
 from soplint.bench.preparation import Preparation, Title
+from soplint.bench.shares import is_concentrate
 from soplint.bench.title import title_of
 from soplint.notation.document import ReadBlock
 from soplint.notation.phrases import (
@@ -36,6 +37,7 @@ from soplint.notation.phrases import (
     Dose,
     Equivalent,
     Material,
+    Phrase,
     Sentence,
     ToVolume,
 )
@@ -291,12 +293,15 @@ class _Walker:
         title = Title(row.text, words, (), (), volume=volume, source="line")
         first = row.sentence.phrases[0]
         label = row.material or (first if isinstance(first, Material) else None)
+        sentence = row.sentence
+        if label is not None and (bought := _bought(sentence)) is not None:
+            sentence, label = bought, replace(label, finals=())
         if label is not None and (label.strengths or label.ph):
             told = title_of(replace(row.sentence, phrases=(label,)), "line")
             title = replace(told, words=label.words or words, volume=told.volume or volume)
         collector = Collector(self.scope.reagents, self.scope.equivalents)
         collector.open(title, parents, self.section, kind="row")
-        collector.sentence(row.sentence)
+        collector.sentence(sentence)
         self.scope.preparations.extend(collector.close())
 
     @staticmethod
@@ -327,6 +332,25 @@ def _is_preparation(row: Row) -> bool:
     phrases = row.sentence.phrases
     taken = any(isinstance(phrase, Dose) for phrase in phrases)
     return taken and any(isinstance(phrase, (Claim, ToVolume)) for phrase in phrases)
+
+
+def _bought(sentence: Sentence) -> Sentence | None:
+    """The row with the concentrate's per cent given to the dose, the strength wanted to the name.
+
+    "Hydrochloric acid 0.1 mol/L | 37 % | 8.3 mL | 1000 mL": only a concentrate is sold as 37 %.
+    """
+    turned = False
+    phrases: list[Phrase] = []
+    for phrase in sentence.phrases:
+        material = phrase.material if isinstance(phrase, Dose) else None
+        if isinstance(phrase, Dose) and material is not None and material.strengths:
+            sold = tuple(m for m in material.finals if is_concentrate(material, m))
+            molar = all(m.dimension in ("molarity", "normality") for m in material.strengths)
+            if sold and molar and phrase.amount.dimension == "volume":
+                own = replace(material, strengths=sold, finals=())
+                phrase, turned = replace(phrase, material=own), True
+        phrases.append(phrase)
+    return replace(sentence, phrases=tuple(phrases)) if turned else None
 
 
 _TITLE_LINE = 9  # deeper than every marked heading

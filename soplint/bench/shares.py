@@ -61,7 +61,7 @@ def shares(taken: Taken, strength: Measure, facts: Facts) -> list[Share]:
             found.extend(_by_density(taken, label, strength, facts))
             if not found or (label.basis is None and material.density is None):
                 found.append(diluted(taken, label))
-            as_bought = _is_concentrate(material, label) and strength.basis in (None, "v/v")
+            as_bought = is_concentrate(material, label) and strength.basis in (None, "v/v")
             if strength.dimension == "fraction" and as_bought:
                 # a percentage of the concentrate as it is bought, by volume
                 amount = taken.dose.amount
@@ -89,16 +89,16 @@ def _by_density(taken: Taken, label: Measure, strength: Measure, facts: Facts) -
     material = taken.dose.material
     if strength.dimension != "fraction" or strength.basis != "w/v" or material is None:
         return
-    if label.basis == "w/v" or not _is_concentrate(material, label):
+    if label.basis == "w/v" or not is_concentrate(material, label):
         return
     for portion in portions(taken, facts):
         if portion.grams is not None and portion.reading.endswith("w/w"):
             yield from as_shares(taken, portion, strength)
 
 
-def _is_concentrate(material: Material, label: Measure) -> bool:
+def is_concentrate(material: Material, label: Measure) -> bool:
     """Whether a liquid of this per cent is sold: its own volume is often what per cent count."""
-    if label.basis not in (None, "w/w"):
+    if label.dimension != "fraction" or label.basis not in (None, "w/w"):
         return False
     percent = label.base * 100
     return any(
