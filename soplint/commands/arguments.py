@@ -26,7 +26,7 @@ class Option:
         repeats: bool = False,
     ) -> None:
         self.name = name
-        self.value = value  # for people; the choices where there are some
+        self.value = value  # for people; the choices where there are some; "" for a switch
         self.does = does
         self.choices = choices
         self.repeats = repeats
@@ -77,7 +77,11 @@ def read(arguments: list[str], options: tuple[Option, ...], command: str) -> Arg
             option = known.get(name)
             if option is None:
                 raise UsageError(_unknown(name, known, command))
-            if not equals:
+            if not option.value and not option.choices:
+                if equals:
+                    raise UsageError(f"{name} takes no value")
+                value = "yes"
+            elif not equals:
                 value = _next(rest, option)
             _check(option, value, told)
             told.add(name, value)
@@ -130,7 +134,7 @@ def usage_text(head: str, options: tuple[Option, ...], tail: str = "") -> str:
     for option in options:
         value = "|".join(option.choices) or option.value
         again = " (may repeat)" if option.repeats else ""
-        lines.append(f"  {option.name} {value}")
+        lines.append(f"  {option.name} {value}".rstrip())
         lines.append(f"      {option.does}{again}")
     lines += ["", tail.strip()] if tail else []
     return "\n".join(lines).strip()

@@ -5,11 +5,16 @@ from __future__ import annotations
 from soplint.commands.arguments import Option, UsageError, read, review_date, usage_text
 from soplint.commands.exits import FAULT, NOT_HELD, NOT_REVIEWED
 
+TYPE_CHECKING = False  # known to type checkers
+if TYPE_CHECKING:
+    from soplint.commands.sources import Source
+
 FORMS = ("text", "json", "csv")
 
 OPTIONS = (
     Option("--as", "FORM", "form of the worksheet, text if not given", FORMS),
     Option("--to", "FILE", "where the worksheet goes, standard output if not given"),
+    Option("--vessels", "", "the steps of each vessel with volume, temperature and pH instead"),
     Option("--on", "DATE", "the review date as YYYY-MM-DD, today if not given"),
     Option("--named", "PATH", "the name of the text on standard input, which '-' stands for"),
 )
@@ -27,6 +32,7 @@ soplint.
 
 Example:
   soplint worksheet --as csv --to HFL-SOP-014.csv HFL-SOP-014.md
+  soplint worksheet --vessels HFL-SOP-014.md
 """
 
 
@@ -62,6 +68,10 @@ def run(arguments: list[str]) -> int:
         source = Source(shown(path), path)
         if target != STANDARD_OUTPUT and os.path.realpath(target) == os.path.realpath(path):
             raise UsageError(f"--to {target} would write over the procedure under review")
+    if told.one("--vessels") is not None:
+        if told.one("--as") not in (None, "text"):
+            raise UsageError("--vessels is made as text only")
+        return _vessels(source, target)
     result = review_source(source, Settings(on=review_date(told.one("--on"))))
     if isinstance(result, NotReviewed):
         say_missed(result)
@@ -70,4 +80,35 @@ def run(arguments: list[str]) -> int:
     page = page_for(sys.stdout) if target == STANDARD_OUTPUT else Page()
     forms = {"text": worksheet.as_text, "json": worksheet.as_json, "csv": worksheet.as_csv}
     write(forms[form](result, page), target, utf8=form != "text")
+    return NOT_HELD
+
+
+def _vessels(source: Source, target: str) -> int:
+    """The step table of each vessel of one file."""
+    from soplint.commands.messages import fault, say
+    from soplint.commands.output import write
+    from soplint.commands.sources import Unopened, content
+    from soplint.reports.vessels import as_text
+
+    try:
+        data = content(source)
+    except Unopened as refused:
+        say(f"{source.name}: {refused}")
+        return NOT_REVIEWED
+    from soplint.bench import carry_out
+    from soplint.bench.vessel import vessels
+    from soplint.intake import Unreadable, read_bytes
+    from soplint.notation.document import read_document
+
+    try:
+        document = read_bytes(data, source.name)
+    except Unreadable as refused:
+        say(f"{source.name}: {refused}")
+        return NOT_REVIEWED
+    try:
+        lines = list(as_text(document.path, vessels(carry_out(read_document(document)))))
+    except Exception as error:
+        say(fault(error, source.name))
+        return FAULT
+    write(iter(lines), target, utf8=False)
     return NOT_HELD
