@@ -10,9 +10,10 @@ from soplint.bench.balances import balance_relations
 from soplint.bench.columns import column_relations
 from soplint.bench.dimensions import dimension_relations
 from soplint.bench.entries import Reading, enter_all
+from soplint.bench.equivalents import equivalent_relations
 from soplint.bench.examples import example_relations
 from soplint.bench.facts import Facts
-from soplint.bench.labels import equivalent_relation, label_relation, molar_mass_relation
+from soplint.bench.labels import label_relation, molar_mass_relation
 from soplint.bench.ledger import Ledger
 from soplint.bench.more import more_relations
 from soplint.bench.parts import (
@@ -99,9 +100,7 @@ def _relations(bench: Bench) -> Iterator[Relation]:
         if twofold is not None:
             yield twofold
     for sentence, equivalent in bench.scope.equivalents:
-        relation = equivalent_relation(sentence.text, equivalent)
-        if relation is not None:
-            yield relation
+        yield from equivalent_relations(sentence, equivalent, bench.ledger)
 
 
 def _sections(blocks: Sequence[ReadBlock]) -> list[list[Sentence]]:

@@ -2,15 +2,11 @@
 
 from __future__ import annotations
 
-from soplint.bench.numbers import shown
 from soplint.bench.preparation import Stated
 from soplint.bench.relation import Relation
-from soplint.bench.species import fragment_of
-from soplint.bench.stoichiometry import units_of_analyte, units_of_titrant
 from soplint.findings.model import Interval
 from soplint.intake.model import Text
-from soplint.notation.phrases import Equivalent, Material
-from soplint.substances import molar_mass
+from soplint.notation.phrases import Material
 from soplint.substances.model import Substance
 
 # Weight sets that average older isotope data differ by up to 0.02 % (IUPAC abridged weights 2021).
@@ -86,48 +82,3 @@ def _liquid(material: Material) -> Substance | None:
     if material.match is None or material.match.generic:
         return None
     return material.match.substances[0] if material.match.substances else None
-
-
-def equivalent_relation(text: Text, phrase: Equivalent) -> Relation | None:
-    """mg of analyte per mL of titrant: c·n(titrant)·M / n(analyte), by the table of reactions."""
-    titrant, analyte = phrase.titrant, phrase.mass.material
-    strength = [m for m in titrant.strengths if m.dimension in ("molarity", "normality")]
-    measure = phrase.mass.amount
-    if len(strength) != 1 or analyte is None or measure.dimension != "mass" or not measure.base:
-        return None
-    litres = phrase.volume.base if phrase.volume is not None else 0.001
-    kind, units = units_of_titrant(_liquid(titrant))
-    if strength[0].dimension == "normality":
-        units = 1.0
-    ways = [
-        (name, mass, number, strength[0].base * litres * units * mass / number)
-        for name, family, mass in _analytes(analyte)
-        for number in units_of_analyte(family, kind)
-    ]
-    if not ways:
-        return None
-    name, mass, number, grams = min(ways, key=lambda way: abs(way[3] / measure.base - 1))
-    value = grams / measure.factor
-    half = (measure.high - measure.low) / 2 + value * ATOMIC_WEIGHTS
-    by = f" / {number:g}" if number != 1 else ""
-    times = f" × {units:g}" if units != 1 else ""
-    return Relation(
-        "equivalent",
-        Stated(text, measure),
-        name,
-        Interval(value, measure.unit, value - half, value + half),
-        abs(measure.nominal - value) <= half + value * MOLAR_MASS / 4,
-        measure.nominal / value - 1,
-        f"{shown(strength[0])} × {litres * 1000:g} mL{times} × {mass:.3f} g/mol{by}"
-        f" = {value:.5g} {measure.unit}",
-        (Stated(text, strength[0]),),
-        exact=True,
-    )
-
-
-def _analytes(analyte: Material) -> list[tuple[str, str, float]]:
-    """Name, family and molar mass of what a factor counts: a substance or an element."""
-    if analyte.match is not None and not analyte.match.generic:
-        return [(s.name, s.family, s.molar_mass) for s in analyte.match.substances if s.molar_mass]
-    fragment = fragment_of(analyte.words)
-    return [(fragment, fragment, molar_mass(fragment))] if fragment else []

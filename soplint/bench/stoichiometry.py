@@ -1,4 +1,8 @@
-"""How many reactive units a substance takes up in a titration, and a titrant gives."""
+"""How many reactive units a substance takes up in a titration, and a titrant gives.
+
+The tables ``data/titrants.csv`` and ``data/stoichiometry.csv`` hold one row per reaction.  A
+reaction that is not there has no number: nothing is guessed for it.
+"""
 
 from __future__ import annotations
 
@@ -8,47 +12,60 @@ from functools import lru_cache
 
 from soplint.substances.model import Substance
 
-# Reactive units of one formula unit of a titrant, and what kind of titration it is.
-TITRANTS = {
-    "NaOH": ("base", 1.0),
-    "KOH": ("base", 1.0),
-    "HCl": ("acid", 1.0),
-    "HNO3": ("acid", 1.0),
-    "HClO4": ("acid", 1.0),
-    "H2SO4": ("acid", 2.0),
-    "AgNO3": ("silver", 1.0),
-    "C10H14N2Na2O8": ("edta", 1.0),
-    "C10H16N2O8": ("edta", 1.0),
-}
-UNKNOWN = (1.0, 2.0, 3.0, 0.5)  # tried where the reaction is not in the table
+_DATA = os.path.join(os.path.dirname(os.path.abspath(__file__)), "data")
+
+
+def _rows(name: str) -> list[dict[str, str]]:
+    with open(os.path.join(_DATA, name), encoding="utf-8", newline="") as file:
+        return list(csv.DictReader(line for line in file if not line.startswith("#")))
 
 
 @lru_cache(maxsize=1)
-def _table() -> dict[tuple[str, str], tuple[float, ...]]:
-    path = os.path.join(os.path.dirname(os.path.abspath(__file__)), "data", "stoichiometry.csv")
-    with open(path, encoding="utf-8", newline="") as file:
-        rows = csv.DictReader(line for line in file if not line.startswith("#"))
-        return {
-            (row["family"], row["reacts_with"]): tuple(
-                float(number) for number in row["numbers"].split(";")
-            )
-            for row in rows
-        }
+def _titrants() -> dict[str, tuple[tuple[str, float], ...]]:
+    found: dict[str, tuple[tuple[str, float], ...]] = {}
+    for row in _rows("titrants.csv"):
+        kind = (row["kind"], float(row["units"]))
+        found[row["family"]] = (*found.get(row["family"], ()), kind)
+    return found
 
 
-def units_of_titrant(titrant: Substance | None) -> tuple[str | None, float]:
-    """Kind of titration and reactive units per mol of the titrant; (None, 1) when unknown."""
-    if titrant is None:
-        return None, 1.0
-    return TITRANTS.get(titrant.family, (None, 1.0))
+@lru_cache(maxsize=1)
+def _analytes() -> dict[tuple[str, str], tuple[float, ...]]:
+    return {
+        (row["family"], kind): tuple(float(number) for number in row["numbers"].split(";"))
+        for row in _rows("stoichiometry.csv")
+        for kind in row["reacts_with"].split()
+    }
 
 
-def units_of_analyte(family: str, kind: str | None) -> tuple[float, ...]:
-    """Reactive units one mol of the analyte takes up; several where the end point decides.
+@lru_cache(maxsize=1)
+def _names() -> dict[str, str]:
+    return {
+        name.strip().lower(): row["family"]
+        for row in _rows("stoichiometry.csv")
+        for name in row["names"].split(";")
+        if name.strip()
+    }
 
-    >>> units_of_analyte("C6H8O7", "base")
-    (3.0,)
+
+def named_analyte(words: str) -> str | None:
+    """Formula of a substance that is titrated but not held in the catalogue.
+
+    >>> named_analyte("arsenic trioxide"), named_analyte("zinc")
+    ('As2O3', None)
     """
-    if kind is None:
-        return UNKNOWN
-    return _table().get((family, kind), UNKNOWN)
+    return _names().get(words.strip().lower())
+
+
+def kinds_of_titrant(titrant: Substance | None) -> tuple[tuple[str, float], ...]:
+    """Kinds of titration a titrant serves, each with its reactive units per mol; () if unknown."""
+    return _titrants().get(titrant.family, ()) if titrant is not None else ()
+
+
+def units_of_analyte(family: str, kind: str) -> tuple[float, ...]:
+    """Reactive units of one mol of the analyte; several where the end point decides, () if unknown.
+
+    >>> units_of_analyte("C6H8O7", "base"), units_of_analyte("C6H8O7", "silver")
+    ((3.0,), ())
+    """
+    return _analytes().get((family, kind), ())
