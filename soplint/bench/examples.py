@@ -60,9 +60,10 @@ def example_relations(sections: Sequence[Sequence[Sentence]]) -> Iterator[Relati
             if "=" not in chars:
                 continue
             relation, own = _example(sentence, formulas, section)
-            if relation is None:
+            if relation is None:  # the formula may stand before the example in the same sentence
                 formulas.extend(_formulas(chars, section))
-            elif own or relation.agrees:
+                relation, own = _example(sentence, formulas, section)
+            if relation is not None and (own or relation.agrees):
                 yield relation
 
 

@@ -228,6 +228,8 @@ def _silent_conversion(
         return power % 3 == 0 and len(hidden) > 1
     if result.unit == "%":
         return 100.0 not in read.conversions
+    if power == 1 and result.dimension == "molarity" and not read.conversions and "/" in read.signs:
+        return True  # density × per cent / molar mass: 1000 / 100 was left out
     own = round(log10(result.factor)) if result.factor > 0 else 0
     chars = sentence.text.chars
     if "%" in chars[: result.start] or "%" in chars[result.end :]:

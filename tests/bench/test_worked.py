@@ -61,3 +61,11 @@ def test_wrong_line_is_found_with_the_right_value(review, text, computed):
 )
 def test_odd_arithmetic_is_survived(review, text):
     assert all(e.verdict != "agrees" for e in _reviewed(review, text).entries)
+
+
+@pytest.mark.parametrize(("printed", "found"), [("0.1000", False), ("0.1100", True)])
+def test_formula_and_example_in_one_line(review, printed, found):
+    # 0.4103 × 1000 / (204.22 × 20.10) = 0.09996
+    line = "c = m × 1000 / (204.22 × V), m in g, V in mL. Example: m = 0.4103 g, V = 20.10 mL gives"
+    rules = [f.rule for f in _reviewed(review, f"{line} c = {printed} mol/L.").findings]
+    assert ("document.worked-example-reproduces" in rules) is found
