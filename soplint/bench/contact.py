@@ -247,6 +247,7 @@ def _moles(vessel: Vessel, klass: str) -> float | None:
 _CLOSES = re.compile(
     r"\b(?:cap|caps|capped|close|closed|closing|seal|sealed|stopper|stoppered)\b"
     r"[^.;]{0,40}?\b(?:tight|tightly|firmly|hermetically|it|bottle|vessel|flask|tube|vial|jar|cap|lid)\b"
+    r"|\b(?:and|then)\s+(?:cap|close|seal|stopper)\s*(?=[.,;]|$)"
     r"|\btightly (?:closed|capped|sealed)\b|\bclosed (?:bottle|flask|tube|vessel|container)\b",
     re.IGNORECASE,
 )

@@ -27,10 +27,16 @@ _VESSEL = (
     r"|carboys?|streams?|buckets?|sinks?|drains?)"
 )
 _TO = re.compile(
-    r"\b(?:into|in|to|down|goes to|with)\s+(?:the|an?|its|their|our)\s+"
+    r"\b(?:into|in|to|down|goes to|with)\s+(?:the same|the|an?|its|their|our|one|a single)\s+"
     rf"(?P<name>(?:[\w-]+\s+){{0,4}}?{_VESSEL}(?:\s+(?:{_VESSEL}|line)){{0,2}})\b",
     re.IGNORECASE,
 )
+_BLEACH = re.compile(
+    r"\b(?:into|in)\s+(?:the\s+|fresh\s+)?(?:\d[\d.,]*\s?%\s+)?(?P<name>bleach|hypochlorite)\b"
+    rf"(?!\s+{_VESSEL})",
+    re.IGNORECASE,
+)
+_TOGETHER = re.compile(r"\b(?:together|the same|one|a single)\b", re.IGNORECASE)
 _LABELLED = re.compile(
     rf"^\W*(?P<name>(?:[\w-]+\s+){{1,3}}?{_VESSEL}(?:\s+{_VESSEL})?)\s*[:=]\s*", re.IGNORECASE
 )
@@ -38,6 +44,7 @@ _ENDS_IN = re.compile(
     rf":\s*(?:the\s+|an?\s+)?(?P<name>(?:[\w-]+\s+){{1,3}}?{_VESSEL}(?:\s+{_VESSEL})?)\b",
     re.IGNORECASE,
 )
+_DISCARDS = re.compile(r"\b(?:discard|collect|empt|dispos|tip|pour)\w*", re.IGNORECASE)
 _WASTE = re.compile(r"\bwaste|\bcan\b|\bdrum\b|\bbin\b|\bstream\b", re.IGNORECASE)
 # A clause that warns, forbids or keeps apart is no action.
 _WARNS = re.compile(
@@ -72,9 +79,11 @@ def destinations(chars: str) -> list[Destination]:
         ]  # fmt: skip
     found = [
         Destination(_bare(m["name"]), m.start("name"), m.end("name"))
-        for pattern in (_TO, _ENDS_IN)
+        for pattern in (_TO, _ENDS_IN, *((_BLEACH,) if _DISCARDS.search(chars) else ()))
         for m in pattern.finditer(chars)
-        if _classes(m["name"]) or re.search(r"\bwaste\b|\bdrain\b|\bsink\b", m["name"], re.I)
+        if _classes(m["name"])
+        or re.search(r"\bwaste\b|\bdrain\b|\bsink\b", m["name"], re.I)
+        or (_TOGETHER.search(chars) and _DISCARDS.search(chars))
     ]
     return sorted((d for d in found if not _uses(chars, d.start)), key=lambda place: place.start)
 

@@ -97,10 +97,10 @@ _ENDS_AT = re.compile(
     r"\b(?:to|until|at|reaches|is|above|below)\W*(?:(?:the|a|is|pH|above|below|about|reaches)\W*)*$",
     re.I,
 )
-_BRINGS = {"ADD", "POUR", "DISSOLVE", "MAKE_UP", "DILUTE", "MIX", "WEIGH", "ADJUST", "PREPARE"}
+_BRINGS = {"ADD", "POUR", "DISSOLVE", "MAKE_UP", "DILUTE", "MIX", "WEIGH", "ADJUST", "PREPARE", "HEAT"}
 _BY_HAND = re.compile(
     r"\b(?:run in|top up|treat|acidif\w+|spike|charge|pour\w*|tip|empt\w+|quench\w*|soak\w*"
-    r"|neutralis\w+|neutraliz\w+|let .{0,40} run|mix\w*|add\w*|keep in|stored? in)\b",
+    r"|neutralis\w+|neutraliz\w+|etch\w*|digest\w*|react\w*|leach\w*|preserv\w+|fill\w*|let .{0,40} run|mix\w*|add\w*|keep in|stored? in)\b",
     re.IGNORECASE,
 )
 
@@ -252,7 +252,9 @@ class Walker:
     ) -> None:
         if isinstance(phrase, Material):
             # a bare name is a content where it is poured, mixed or used to treat something
-            if command not in ("ADD", "POUR", "MIX", "DISSOLVE", "ADJUST", "DILUTE"):
+            if command not in ("ADD", "POUR", "MIX", "DISSOLVE", "ADJUST", "DILUTE", ""):
+                return
+            if not command and phrase.role not in ("with", "in", "into", "to"):
                 return
             if phrase.match is None or phrase.match.generic or phrase.role == "from":
                 return

@@ -104,7 +104,8 @@ def _agents(
             continue
         if phrase.role in ("of", "in", "from") or phrase.material is None:
             continue
-        if re.search(r"\b(?:rinse|spent|waste|collect)\b", sentence.text.chars, re.IGNORECASE):
+        near = sentence.text.chars[phrase.start : phrase.end + 25].split(" add ")[0]
+        if re.search(r"\b(?:rinse|spent|waste|sample)\b", near, re.IGNORECASE):
             continue
         for portion in portions(Taken(sentence.text, phrase, 0), facts)[:1]:
             substance = portion.substance

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator
 
 from soplint.bench import Bench
 from soplint.bench.contact import Contact, closing, contacts
-from soplint.bench.vessels import Vessel
+from soplint.bench.streams import asides
+from soplint.bench.vessels import Vessel, vessels
 from soplint.checks.hazard_words import (
     PURPOSE,
     Protection,
@@ -18,6 +20,7 @@ from soplint.checks.hazard_words import (
 )
 from soplint.checks.registry import Judgement, rule
 from soplint.findings.model import SEVERITIES
+from soplint.notation.phrases import Sentence
 
 _OWN = {  # these rules speak about waste containers themselves
     "hazards.azide-apart-from-acid-and-metal",
@@ -102,6 +105,36 @@ def _judgement(name: str, grade: str, contact: Contact) -> Judgement:
 def no_toxic_gas(bench: Bench) -> Iterator[Judgement]:
     """Nothing meets in a vessel that sets free toxic gas."""
     yield from speak(bench, "hazards.no-toxic-gas")
+    yield from _autoclaved(bench)
+
+
+_AUTOCLAVE = re.compile(r"\bautoclav(?:e|ed|ing)\b(?!\s+(?:bag|tape|bottle|waste))", re.IGNORECASE)
+_NEVER_HOT = {"hypochlorite", "azide", "cyanide", "sulfide"}
+
+
+def _autoclaved(bench: Bench) -> Iterator[Judgement]:
+    """What sets free toxic gas in steam does not go into the autoclave."""
+    for vessel in vessels(bench):
+        held = [c for c in vessel.contents if c.classes & _NEVER_HOT]
+        for sentence in vessel.sentences if held else ():
+            found = _AUTOCLAVE.search(sentence.text.chars)
+            before = [c for c in held if c.text.line <= sentence.text.line]
+            if found is None or not before or _covered(sentence, found.start()):
+                continue
+            yield hazard(
+                "hazards.no-toxic-gas",
+                "critical",
+                sentence.text,
+                found.start(),
+                found.end(),
+                f"{plain(before[0])} goes into the autoclave: toxic gas in hot steam",
+                working="autoclave with hypochlorite, azide or cyanide (published university incident reports; partly confirmed)",
+                others=((before[0], "is in it"),),
+            )
+
+
+def _covered(sentence: Sentence, start: int) -> bool:
+    return any(a <= start < b for a, b in asides(sentence.text.chars))
 
 
 @rule("hazards.oxidiser-apart-from-organic")
@@ -120,6 +153,45 @@ def azide_apart(bench: Bench) -> Iterator[Judgement]:
 def hypochlorite_alone(bench: Bench) -> Iterator[Judgement]:
     """Hypochlorite meets no acid, ammonia, guanidine, urea or alcohol."""
     yield from speak(bench, "hazards.hypochlorite-alone")
+    yield from _carried_over(bench)
+
+
+_BATH = re.compile(
+    r"\b(?:in(?:to)?|to)\s+(?:the|an?|\d[\d.,]*\s?%)\s+(?P<what>bleach|hypochlorite|acid|ammonia)\b", re.IGNORECASE
+)
+_DIPS = re.compile(r"\b(?:soak|dip|immers|transfer|put|place|move)\w*", re.IGNORECASE)
+_RINSES = re.compile(r"\b(?:rins|wash|water|drain)\w*", re.IGNORECASE)
+_NO_RINSE = re.compile(r"\bwithout (?:rins|wash)", re.IGNORECASE)
+
+
+def _carried_over(bench: Bench) -> Iterator[Judgement]:
+    """Things go from a bleach bath to an acid bath, or back, without a rinse that is said."""
+    last: str | None = None
+    for read in bench.blocks:
+        if read.block.kind == "heading":
+            last = None
+            continue
+        for sentence in read.sentences:
+            chars = sentence.text.chars
+            bare = _NO_RINSE.search(chars)
+            found = _BATH.search(chars) if _DIPS.search(chars) else None
+            if found is None or (_covered(sentence, found.start()) and not bare):
+                last = None if _RINSES.search(chars) else last
+                continue
+            what = found["what"].lower()
+            bleach = what in ("bleach", "hypochlorite")
+            met = last is not None and bleach != (last in ("bleach", "hypochlorite"))
+            if met and (bare or not _RINSES.search(chars[: found.start()])):
+                yield hazard(
+                    "hazards.hypochlorite-alone",
+                    "major" if bare else "minor",
+                    sentence.text,
+                    found.start(),
+                    found.end(),
+                    f"things go from {last} to {what} and no rinse is named between: chlorine or chloramines from what clings to them",
+                    working="order of the baths; say the rinse (Regulation (EC) 1272/2008, EUH031)",
+                )
+            last = None if _RINSES.search(chars[found.end() :]) else what
 
 
 @rule("hazards.cyanide-alkaline")
