@@ -60,7 +60,7 @@ def equivalent_relations(
 
 def _masses(sentence: Sentence, phrase: Equivalent) -> Iterator[Dose]:
     """The mass of the phrase, and those joined to it by a comma, "and", "or"."""
-    yield phrase.mass
+    yield from (phrase.mass, *phrase.mass.alternatives)
     end = phrase.end
     for other in sentence.phrases:
         if other.start < end:
@@ -69,7 +69,7 @@ def _masses(sentence: Sentence, phrase: Equivalent) -> Iterator[Dose]:
             return
         if not _JOINED.fullmatch(sentence.text.chars[end : other.start]):
             return
-        yield other
+        yield from (other, *other.alternatives)
         end = other.end
 
 

@@ -96,6 +96,16 @@ def test_every_mass_of_a_sentence_is_tested():
     assert [f.rule for f in review.findings] == [RULE, RULE]
 
 
+def test_alternatives_are_tested_too():
+    review = reviewed(
+        "Each mL of 0.1 mol/L silver nitrate is equivalent to 5.844 mg of NaCl or 3.545 mg of Cl"
+        " or 14.91 mg of KCl."
+    )
+    found = verdicts(review)
+    assert found["5.844 mg"][0] == found["3.545 mg"][0] == "agrees"
+    assert found["14.91 mg"][0] == "disagrees"
+
+
 def test_a_dose_behind_another_step_is_no_equivalent():
     review = reviewed(
         "Each mL of 0.01 mol/L EDTA is equivalent to 0.4008 mg of calcium; weigh 5 mg of zinc."
