@@ -25,6 +25,7 @@ ROUNDED_MASS = 0.0005  # factors worked out with molar masses of four figures
 _EQUIVALENT = re.compile(r"1\s*/\s*\d|[½⅓¼⅕⅙]|\beq\b|\bval\b")  # "c(1/5 KMnO4) = 0.1 mol/L"
 _JOINED = re.compile(r"[\s,;]*(?:(?:and|or|as well as|=)\s*)?(?:to\s*)?")
 _NITROGEN = re.compile(r"\bnitrogen\b(?! *(?:mon|di|tri)?oxide)|-N$")
+_UNNAMED = {"acid": "acid", "alkali": "base", "base": "base"}
 _WORD = re.compile(r"[A-Za-z]+")
 # Words beside the name of an element or ion that leave its formula as it is.
 _PLAIN = frozenset(
@@ -138,10 +139,17 @@ def _ways(titrant: Material, analyte: Material, by_units: bool) -> list[_Way]:
     """The reactions that titrant and analyte can have, by the tables."""
     return [
         _Way(name, mass, number, 1.0 if by_units else units)
-        for kind, units in kinds_of_titrant(_substance(titrant))
+        for kind, units in _kinds(titrant, by_units)
         for name, family, mass in _species(analyte)
         for number in units_of_analyte(family, kind)
     ]
+
+
+def _kinds(titrant: Material, by_units: bool) -> tuple[tuple[str, float], ...]:
+    """Kinds of titration; "0.02 N acid" needs no name, since its strength counts the protons."""
+    if by_units and titrant.words.lower() in _UNNAMED:
+        return ((_UNNAMED[titrant.words.lower()], 1.0),)
+    return kinds_of_titrant(_substance(titrant))
 
 
 def _substance(material: Material) -> Substance | None:

@@ -119,6 +119,15 @@ def test_a_strength_in_equivalents_counts_electrons_already(strength):
     assert verdicts(reviewed(sentence))["5.585 mg"] == ("agrees", None)
 
 
+def test_normal_acid_needs_no_name():
+    right = "1 mL of 0.02 N acid corresponds to 1.00 mg of CaCO3."
+    wrong = "1 mL of 0.02 N acid corresponds to 2.00 mg of CaCO3."
+    open_ = "1 mL of 0.02 mol/L acid corresponds to 2.00 mg of CaCO3."
+    assert verdicts(reviewed(right))["1.00 mg"] == ("agrees", None)
+    assert verdicts(reviewed(wrong))["2.00 mg"] == ("disagrees", None)
+    assert verdicts(reviewed(open_))["2.00 mg"] == ("not-verified", "outside-model")
+
+
 def test_each_kind_of_titration_has_a_titrant_and_each_reaction_once():
     kinds = {row["kind"] for row in _rows("titrants.csv")}
     pairs = [
