@@ -229,11 +229,20 @@ def _of_percent(
             yield portion(litres * 1000 * thick * share, how, "w/w")
     if strength.basis in (None, "w/v"):
         yield portion(litres * 1000 * share, f"{text} × {share * 1000:.4g} g/L", "w/v")
-    if strength.basis in (None, "v/v") and substance.density and liquid:
+    mixed = strength.basis == "v/v" or (strength.basis is None and not _as_sold(material, share))
+    if mixed and substance.density and liquid:
         neat = litres * share
         pure = (substance.strength or 100) / 100
         grams = neat * 1000 * substance.density * pure
         yield portion(grams, f"{text} × {share:.3g} × {substance.density:.3g} g/mL", "v/v", neat)
+
+
+def _as_sold(material: Material, share: float) -> bool:
+    """Whether a solution of this per cent is sold: 37 % of hydrochloric acid is no 37 % v/v."""
+    return any(
+        s.state == "solution" and s.strength and abs(s.strength - share * 100) < 3
+        for s in candidates(material)
+    )
 
 
 def _density(material: Material, substance: Substance, percent: float) -> float | None:

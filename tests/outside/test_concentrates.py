@@ -65,27 +65,13 @@ def procedure(shape, row, factor):
     return filled, line, f"{volume} mL"
 
 
-# A bare per cent is also read as that share, by volume, of the concentrate as bought; near 50 % twice
-# the volume then fits.  No such reading is reasonable where the per cent printed is the strength of
-# the concentrate itself.
-KNOWN_OPEN = {
-    ("steps", "hydrofluoric acid", "49"),
-    ("steps", "hydrofluoric acid", "40"),
-    ("steps", "hydrobromic acid", "48"),
-    ("steps", "sodium hydroxide solution", "50.5"),
-}
-
-
-def each(factors, known_open=frozenset()):
+def each(factors):
     made = []
     for shape in SHAPES:
         for row in ROWS:
             for factor in factors:
                 key = (shape, row["concentrate"], row["percent_w_w"])
-                is_open = key in known_open and factor > 1
-                marks = pytest.mark.xfail(strict=True, reason="read as v/v") if is_open else ()
-                name = f"{factor:g}-{'-'.join(key)}"
-                made.append(pytest.param(shape, row, factor, id=name, marks=marks))
+                made.append(pytest.param(shape, row, factor, id=f"{factor:g}-{'-'.join(key)}"))
     return pytest.mark.parametrize(("shape", "row", "factor"), made)
 
 
@@ -104,7 +90,7 @@ def test_published_volume_agrees(review, entry, grave, shape, row, factor):
     assert entry(reviewed, volume, line).verdict == "agrees"
 
 
-@each([2.0, 0.5], KNOWN_OPEN)
+@each([2.0, 0.5])
 def test_twice_or_half_of_it_is_found(review, entry, found_at, shape, row, factor):
     text, line, volume = procedure(shape, row, factor)
     reviewed = review(text)
