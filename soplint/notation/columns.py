@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from statistics import median
 
 from soplint.intake.model import Text
@@ -180,7 +180,28 @@ def columns(
     for index, heading in enumerate(headings):
         stats = column_stats([row[index] for row in sample], reading)
         found.append(Column(index, heading, stats, own_role(heading, stats)))
-    return found
+    return _of_standards(found)
+
+
+def _of_standards(found: list[Column]) -> list[Column]:
+    """The columns of "Standard | Stock | Flask | Result" and "Step | 60 % sucrose | buffer".
+
+    A flask of a size is a volume made up to; what comes out of the row is a strength, whether the
+    table calls it a result or labels its rows with it.
+    """
+    taken = any(c.role in ("AMOUNT", "STOCK", "MAKEUP") or c.heading.strengths for c in found[1:])
+    result = []
+    for column in found:
+        role, stats, words = column.role, column.stats, column.heading.words.lower()
+        if words in ("flask", "vial", "tube") and column.index and stats.filled == stats.taken > 0:
+            role = "MAKEUP"
+        elif taken and words in _RESULTS and stats.filled == stats.strengths > 0:
+            role = "FINAL"
+        result.append(replace(column, role=role))
+    return result
+
+
+_RESULTS = ("result", "results", "gives", "step", "steps", "level", "standard", "tube", "layer")
 
 
 def empty_heading() -> Heading:

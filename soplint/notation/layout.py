@@ -66,7 +66,7 @@ def _settled(columns: Sequence[Column], name: Column) -> list[Column]:
         stats = column.stats
         if column.index == name.index:
             role = "NAME"
-        elif role == "NAME":
+        elif role == "NAME" or (role == "WORDS" and column.index == 0 and column.heading.words):
             role = "LABEL" if column.index < name.index else "IGNORE"
         elif role == "LABEL" and column.index > name.index:
             amounts = stats.mostly(stats.taken + stats.numbers + stats.brought)
@@ -139,7 +139,8 @@ def _own_volumes(found: Layout, amounts: list[Column]) -> None:
     """ "Eluent | Reagent | Volume | Amount": a volume a row that a preparation of its own is made to."""
     if found.label is not None and len(amounts) >= 2 and not found.volumes:
         volumes = [c for c in amounts if _only_volumes(c)]
-        if len(volumes) == 1 and volumes[0].stats.filled == volumes[0].stats.taken:
+        counted = volumes[0].stats.taken + volumes[0].stats.numbers if volumes else 0
+        if len(volumes) == 1 and volumes[0].stats.filled == counted:
             other = [c for c in amounts if c is not volumes[0]]
             full = all(c.stats.filled >= volumes[0].stats.filled for c in other)
             labelled = found.label.stats.filled >= volumes[0].stats.filled

@@ -7,6 +7,7 @@ from collections.abc import Sequence
 from soplint.intake.model import Text
 from soplint.notation.columns import Column
 from soplint.notation.headings import words_role
+from soplint.notation.stock_above import is_stock
 
 # Share of the names in the first column that the catalogue must know before a heading that names a
 # substance is taken for the name of a solution ("Phosphate buffer") and not for a component.
@@ -57,7 +58,16 @@ def name_column(columns: Sequence[Column], heads: Sequence[Column]) -> Column | 
             return None
     if best.role in ("LABEL", "WORDS") and _makes_up(columns) and not best.stats.named:
         return None
+    if best.role == "LABEL" and not best.stats.named and any(map(_of_stock, columns)):
+        return None
     return best
+
+
+def _of_stock(column: Column) -> bool:
+    """Whether the cells are volumes of a stock that the heading names: "Working standard (mL)"."""
+    unit = column.heading.unit
+    volumes = column.stats.numbers and unit is not None and unit.dimension == "volume"
+    return bool(volumes) and column.index > 0 and is_stock(column.heading.words)
 
 
 def _makes_up(columns: Sequence[Column]) -> bool:
@@ -65,15 +75,18 @@ def _makes_up(columns: Sequence[Column]) -> bool:
 
 
 def _best_name(columns: Sequence[Column]) -> Column | None:
+    rows = max((c.stats.filled for c in columns), default=0)
     headed = [c for c in columns if c.role == "NAME" and c.stats.filled]
-    if headed:
-        return max(headed, key=lambda c: (_share(c), -c.index))
+    solutes = [c for c in headed if c.heading.words.lower() not in ("solvent", "solvents")]
+    first = next((c for c in columns if c.role in ("WORDS", "LABEL")), None)
+    if solutes or (headed and (first is None or not first.stats.mostly(first.stats.named))):
+        return max(solutes or headed, key=lambda c: (_share(c), -c.index))
     wordy = [
         c
         for c in columns
         if c.role in ("WORDS", "LABEL", "FORMULA", "STOCK") and c.stats.mostly(c.stats.worded)
     ]
-    return max(wordy, key=lambda c: (_share(c), -c.index)) if wordy else None
+    return max(wordy, key=lambda c: (c.stats.named / max(1, rows), -c.index)) if wordy else None
 
 
 def _share(column: Column) -> float:

@@ -7,6 +7,7 @@ by the headings that name a material, so that a strength printed in a heading ha
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
@@ -17,14 +18,17 @@ from soplint.notation.columns import Column
 from soplint.notation.headings import TAKEN, Heading
 from soplint.notation.joined import join, sentence_of
 from soplint.notation.layout import Layout
-from soplint.notation.phrases import Claim, Material, Phrase, SetPH, ToVolume
+from soplint.notation.phrases import Claim, Dose, Material, Phrase, SetPH, ToVolume
 from soplint.notation.read import Reading
 from soplint.notation.recipe_rows import Builder
 from soplint.notation.row_parts import volume_of_row
 from soplint.notation.rows import Row
-from soplint.notation.shift import match_at, measure_at
+from soplint.notation.shift import match_at, material_at, measure_at
+from soplint.notation.stock_above import Above, is_stock
 from soplint.quantities.model import Measure
 
+# A label that can be the name of an element or ion: "Chloride", "Nitrate-N", "Cu".
+_SPECIES = re.compile(r"[A-Z][A-Za-z]*(?:[ -][A-Za-z]+){0,2}(?: ?\([IVX]+\))?")
 # More headings than this are no composition; they are not repeated in the text of every row.
 _MOST_HEADS = 24
 
@@ -37,11 +41,14 @@ class PreparationBuilder:
     reading: Reading
     block: int
     strict: bool
+    above: Above | None = None
 
     def row(self, texts: Sequence[Text], cells: Sequence[Cell]) -> Row:
         """The row of ``cells``; ``texts`` are their texts."""
         heads = [c for c in self.found.columns if _names_material(c.heading)][:_MOST_HEADS]
-        text, starts = join([*texts, *(c.heading.text for c in heads)])
+        told = [self.above.text] if self.above is not None and self._draws() else []
+        text, starts = join([*texts, *(c.heading.text for c in heads), *told])
+        start = starts[-1] if told else None
         places = {c.index: starts[len(texts) + at] for at, c in enumerate(heads)}
         phrases: list[Phrase] = []
         measures: list[Measure] = []
@@ -51,15 +58,42 @@ class PreparationBuilder:
             cell = cells[column.index]
             if cell.shape == "blank" or column.role in ("OTHER", "IGNORE"):
                 continue
-            part, used = self._part(column, cell, places.get(column.index))
+            part, used = self._part(column, cell, places)
             phrases += part
             measures += used
+        if start is not None:
+            phrases = self._from_above(phrases, start)
         if any(isinstance(p, ToVolume) for p in phrases):
             kinds.add("FINAL")
         sentence = sentence_of(
             text, tuple(phrases), tuple(measures), frozenset(kinds), self.block, self.strict
         )
         return Row(text, "note", label, (), (), sentence)
+
+    def _draws(self) -> bool:
+        """Whether one column takes of a stock that its heading does not tell the strength of."""
+        heads = [group[0].heading for group in self.found.amounts]
+        return sum(is_stock(h.words) and not h.strengths for h in heads) == 1
+
+    def _from_above(self, phrases: list[Phrase], start: int) -> list[Phrase]:
+        """The phrases with the stock, and the volume, that the text above the table names."""
+        assert self.above is not None
+        stock = material_at(self.above.stock, start)
+        stock = replace(stock, role=None)
+        result: list[Phrase] = [
+            replace(p, material=stock)
+            if isinstance(p, Dose)
+            and p.material is not None
+            and is_stock(p.material.words)
+            and not p.material.strengths
+            else p
+            for p in phrases
+        ]
+        volume = self.above.volume
+        if volume is not None and not any(isinstance(p, ToVolume) for p in phrases):
+            own = measure_at(volume, start)
+            result.append(ToVolume(own.start, own.end, own, None, "MAKE_UP", said_final=True))
+        return result
 
     def _label(self, cells: Sequence[Cell]) -> Material | None:
         """The name of the solution that the row prepares."""
@@ -71,9 +105,9 @@ class PreparationBuilder:
         return Material(cell.start, cell.start + len(cell.text.chars), words, solution=True)
 
     def _part(
-        self, column: Column, cell: Cell, place: int | None
+        self, column: Column, cell: Cell, places: dict[int, int]
     ) -> tuple[list[Phrase], tuple[Measure, ...]]:
-        heading = column.heading
+        heading, place = column.heading, places.get(column.index)
         if any(column is group[0] for group in self.found.amounts):
             return self._amount(column, cell, place)
         if column in self.found.volumes:
@@ -87,8 +121,8 @@ class PreparationBuilder:
         if column.role == "PH":
             return self._ph(column, cell)
         if column is self.found.label and column not in self.found.finals:
-            return self._named_strength(column, cell, place)
-        return self._strength(column, cell, place)
+            return self._named_strength(column, cell, places)
+        return self._strength(column, cell, places)
 
     def _ph(self, column: Column, cell: Cell) -> tuple[list[Phrase], tuple[Measure, ...]]:
         """The pH that the row is set to; as label of a mixture, the pH that it comes to."""
@@ -124,19 +158,27 @@ class PreparationBuilder:
             return replace(material, words=match.written, match=None)
         return material
 
+    def _stocked(self, places: dict[int, int]) -> Material | None:
+        """The one thing of a strength that the rows take: what comes out is a strength of it."""
+        stocks = [group[0] for group in self.found.amounts if group[0].heading.strengths]
+        if len(stocks) != 1:
+            return None
+        material = _material(stocks[0].heading, places.get(stocks[0].index))
+        return replace(material, strengths=(), solution=False) if material is not None else None
+
     def _named_strength(
-        self, column: Column, cell: Cell, place: int | None
+        self, column: Column, cell: Cell, places: dict[int, int]
     ) -> tuple[list[Phrase], tuple[Measure, ...]]:
         """A label that is the strength wanted: "50 %" under "Ethanol"."""
         if column.heading.match is None or cell.shape != "quantity":
             return [], tuple(m for m in cell.row_measures if m.dimension != "number")
-        return self._strength(column, cell, place)
+        return self._strength(column, cell, places)
 
     def _strength(
-        self, column: Column, cell: Cell, place: int | None
+        self, column: Column, cell: Cell, places: dict[int, int]
     ) -> tuple[list[Phrase], tuple[Measure, ...]]:
         fact = facts(cell, "CONC", column.heading.unit)
-        material = _material(column.heading, place)
+        material = _material(column.heading, places.get(column.index)) or self._stocked(places)
         phrases: list[Phrase] = []
         for strength in fact.strengths:
             if self.found.amounts or material is None:
@@ -174,7 +216,7 @@ class OwnVolumeBuilder:
 
     def row(self, text: Text, cells: Sequence[Cell]) -> Row:
         """The row with its make-up volume as last phrase."""
-        row = self.inner.row(text, cells)
+        row = self._of_label(self._of_stock(self.inner.row(text, cells), cells), cells)
         for column in self.inner.found.volumes[:1]:
             cell = cells[column.index]
             unit = column.heading.unit
@@ -192,3 +234,48 @@ class OwnVolumeBuilder:
             )
             row = replace(row, sentence=sentence)
         return row
+
+    def _of_label(self, row: Row, cells: Sequence[Cell]) -> Row:
+        """ "Chloride | NaCl | 1.6485 g | 1000 mL | 1000 mg/L": the mg/L are those of the label."""
+        column = self.inner.found.label
+        dose = row.doses[0] if row.doses else None
+        if column is None or dose is None or dose.material is None:
+            return row
+        cell = cells[column.index]
+        told = tuple(
+            m for m in dose.material.finals if m.dimension in ("mass-concentration", "ppm")
+        )
+        words = cell.text.chars.strip()
+        if not told or cell.shape != "words" or not _SPECIES.fullmatch(words):
+            return row
+        match = next(iter(self.inner.reading.names.find(cell.text.chars)), None)
+        if match is not None:
+            match = match_at(match, cell.start)
+        label = Material(cell.start, cell.start + len(cell.text.chars), words, match)
+        finals = tuple(m for m in dose.material.finals if m not in told)
+        salt = replace(dose, material=replace(dose.material, finals=finals))
+        phrases: list[Phrase] = [salt if p == dose else p for p in row.sentence.phrases]
+        phrases += [Claim(m.start, m.end, m, label) for m in told]
+        sentence = replace(row.sentence, phrases=tuple(phrases))
+        return replace(row, doses=(salt, *row.doses[1:]), sentence=sentence)
+
+    def _of_stock(self, row: Row, cells: Sequence[Cell]) -> Row:
+        """ "Nitric acid 2 mol/L | 65 % | 139 mL": the name says what comes out, the column what is taken."""
+        stocks = {
+            (m.start, m.end)
+            for column in self.inner.found.stocks
+            for m in facts(cells[column.index], "STOCK", column.heading.unit).strengths
+        }
+        dose = row.doses[0] if row.doses else None
+        if dose is None or dose.material is None or row.material is None or not stocks:
+            return row
+        taken = tuple(m for m in dose.material.strengths if (m.start, m.end) in stocks)
+        aimed = tuple(m for m in dose.material.strengths if (m.start, m.end) not in stocks)
+        if not taken or not aimed:
+            return row
+        stock = replace(dose, material=replace(dose.material, strengths=taken))
+        sentence = replace(
+            row.sentence, phrases=tuple(stock if p == dose else p for p in row.sentence.phrases)
+        )
+        named = replace(row.material, strengths=aimed)
+        return replace(row, material=named, doses=(stock, *row.doses[1:]), sentence=sentence)

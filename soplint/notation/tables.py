@@ -7,7 +7,9 @@ list of reagents with facts, or of preparations (one a row).
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
+from dataclasses import replace
 
 from soplint.intake.model import Table, Text
 from soplint.notation.bare_units import bare_units
@@ -21,6 +23,7 @@ from soplint.notation.prose_rows import ProseBuilder
 from soplint.notation.read import Reading
 from soplint.notation.recipe_rows import Builder
 from soplint.notation.rows import RecipeTable, Row, Variant
+from soplint.notation.stock_above import drawn_from
 from soplint.quantities.model import Measure
 
 # A table wider than this holds no recipe.
@@ -113,7 +116,7 @@ def _read(
         rows = tuple(read.row(t, c) for t, c in zip(texts, cells, strict=True))
         return RecipeTable((), notes + rows, head, table.caption, "list")
     if found.kind == "preparations" and found.name is None:
-        by_row = PreparationBuilder(found, reading, block, strict)
+        by_row = PreparationBuilder(found, reading, block, strict, drawn_from(context, reading))
         rows = tuple(by_row.row(b, c) for b, c in zip(body, cells, strict=True))
         return RecipeTable((), notes + rows, head, table.caption, "list")
     around = (*((table.caption,) if table.caption else ()), *context)
@@ -130,6 +133,8 @@ def _read(
 def _shape(table: Table) -> tuple[tuple[Text, ...], list[tuple[Text, ...]]]:
     """Head and rows of one width: short ones filled up with empty cells."""
     rows = [row for row in table.rows if row]
+    if _is_row(table.head, rows):
+        rows, table = [table.head, *rows], replace(table, head=())
     width = max([len(table.head), *(len(row) for row in rows)], default=0)
     head, body = _padded(table.head, width), [_padded(row, width) for row in rows]
     half = width // 2
@@ -138,6 +143,22 @@ def _shape(table: Table) -> tuple[tuple[Text, ...], list[tuple[Text, ...]]]:
         right = [row[half:] for row in body if any(cell.chars.strip() for cell in row[half:])]
         return head[:half], left + right
     return head, body
+
+
+_TO_VOLUME = re.compile(r"(?:make |fill )?(?:to|up to|ad) ~?\d[\d.,]* ?\S{1,3}$", re.IGNORECASE)
+
+
+def _is_row(head: tuple[Text, ...], rows: Sequence[tuple[Text, ...]]) -> bool:
+    """Whether the heading row is the first of the rows.
+
+    "1 | Weigh 26.3 g of glycine" over "2 | ..." counts the steps, "Base: | to 2 L | water" fills up.
+    """
+    words = [cell.chars.strip() for cell in head]
+    if any(_TO_VOLUME.match(word) for word in words) and words[0].endswith(":"):
+        return True
+    first = words[0].rstrip(".)") if words else ""
+    below = rows[0][0].chars.strip().rstrip(".)") if rows else ""
+    return first.isdecimal() and below.isdecimal() and int(below[:6]) == int(first[:6]) + 1
 
 
 def _twice(head: tuple[Text, ...], half: int) -> bool:

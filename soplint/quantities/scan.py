@@ -17,7 +17,10 @@ from soplint.quantities.words import lower_if_number_words, next_word
 
 _DIGIT = re.compile(r"[0-9½⅓⅔¼¾⅕⅖⅗⅘⅙⅚⅛⅜⅝⅞⅒]")
 _SPIN = LatePattern(r"spin|spun|centrifug|pellet|rcf|rpm|x ?g\b|×", re.IGNORECASE)
-_WASH = LatePattern(r"\b(?:wash(?!\s+(?:buffer|solution|medium|saline|mix))|rins|repeat|vortex|invert|spin|extract|flush)", re.IGNORECASE)
+_WASH = LatePattern(
+    r"\b(?:wash(?!\s+(?:buffer|solution|medium|saline|mix))|rins|repeat|vortex|invert|spin|extract|flush)",
+    re.IGNORECASE,
+)
 _REPEATS = LatePattern(r"(?:with|for|in|and|at|then|after|each)\b|[.,;)]|$", re.IGNORECASE)
 _FORCE_AFTER = LatePattern(
     r" ?(?:for\b|at\b|,|;|\)|\.|/|[0-9]|$|x\b|\(|to\b|max|rt\b)", re.IGNORECASE
