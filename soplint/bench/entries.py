@@ -91,12 +91,13 @@ def _sentence(
         if Stated(sentence.text, measure).key in named:
             bound[(measure.start, measure.end)] = (None, "given")
     loose = [m for m in loose if (m.start, m.end) not in bound]
+    open_keys = {(m.start, m.end) for m in loose}
     for measure in sentence.measures:
         key = (measure.start, measure.end)
         if key in bound:
             of, reason = bound[key]
             ledger.enter(Stated(sentence.text, measure), of, reason)
-        elif measure not in loose and measure.dimension not in _UNIT_FREE:
+        elif key not in open_keys and measure.dimension not in _UNIT_FREE:
             reading.set_aside["ware" if aside else measure.dimension] += 1
     for measure in loose:
         ledger.enter(Stated(sentence.text, measure), None, "not-recomputable")
@@ -125,13 +126,7 @@ def _bound(
 
 def _quantities(phrase: Phrase) -> Iterator[tuple[Measure, Material | None]]:
     if isinstance(phrase, Dose):
-        if phrase.material is not None or phrase.role is not None:
-            yield phrase.amount, phrase.material
-            yield from ((m, phrase.material) for m in phrase.same)
-        if phrase.material is not None:
-            yield from _of_material(phrase.material)
-        for other in phrase.alternatives:
-            yield from _quantities(other)
+        yield from _of_doses(phrase)
     elif isinstance(phrase, Material):
         yield from _of_material(phrase)
     elif isinstance(phrase, ToVolume):
@@ -159,6 +154,19 @@ def _quantities(phrase: Phrase) -> Iterator[tuple[Measure, Material | None]]:
         yield phrase.ratio, None
         for material in phrase.materials:
             yield from _of_material(material)
+
+
+def _of_doses(first: Dose) -> Iterator[tuple[Measure, Material | None]]:
+    """The quantities of a dose and of all that may be used instead of it."""
+    doses = [first]
+    while doses:
+        dose = doses.pop()
+        if dose.material is not None or dose.role is not None:
+            yield dose.amount, dose.material
+            yield from ((m, dose.material) for m in dose.same)
+        if dose.material is not None:
+            yield from _of_material(dose.material)
+        doses.extend(reversed(dose.alternatives))
 
 
 def _of_material(material: Material) -> Iterator[tuple[Measure, Material | None]]:

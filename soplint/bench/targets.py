@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator
 from dataclasses import replace
+from functools import lru_cache
 
 from soplint.bench.preparation import (
     Claimed,
@@ -51,7 +52,13 @@ def _claim_counts(claimed: Claimed) -> bool:
     """Whether a claim speaks of the preparation as made (not of a result or another fold)."""
     if claimed.claim.material is not None or claimed.fold is not None:
         return True
-    return not _MEASURED.search(claimed.text.chars)
+    return not _speaks_of_results(claimed.text.chars)
+
+
+@lru_cache(maxsize=16)
+def _speaks_of_results(chars: str) -> bool:
+    """Whether a sentence is one of a measurement; a sentence of many claims is searched once."""
+    return _MEASURED.search(chars) is not None
 
 
 def _title_counts(preparation: Preparation) -> bool:

@@ -59,7 +59,9 @@ def asides(chars: str, found: list[Terminal]) -> list[Terminal]:
         elif terminal.kind == "ADD" and _is_device(chars, found, index):
             terminal = replace(terminal, kind="WARE")
             result[-1] = replace(result[-1], kind="WARE")
-        elif terminal.kind in ("MASS", "VOLUME") and _FINENESS.search(chars, 0, terminal.start):
+        elif terminal.kind in ("MASS", "VOLUME") and _FINENESS.search(
+            chars, max(0, terminal.start - 60), terminal.start
+        ):
             terminal = replace(terminal, kind="WARE")
         elif terminal.kind == "WARE" and _is_content(found, index):
             terminal = replace(terminal, kind="OTHER")

@@ -72,11 +72,13 @@ def _ends_in(tree: Tree[Token], kind: str) -> bool:
 
 def _opened(reader: Reader, tree: Tree[Token], found: list[Part]) -> None:
     """Go on into the brackets of a thing that say more than remarks."""
-    for child in tree.children:
+    nodes = list(reversed(tree.children))
+    while nodes:
+        child = nodes.pop()
         if not isinstance(child, Tree):
             continue
         if child.data != "bracket":
-            _opened(reader, child, found)
+            nodes.extend(reversed(child.children))
         elif opens(child):
             _open(reader, child, found)
 

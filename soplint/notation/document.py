@@ -9,6 +9,8 @@ from functools import lru_cache
 from soplint.intake import sentences
 from soplint.intake.model import Block, Document, Text
 from soplint.notation.led_lines import led, opens_batch
+from soplint.notation.long_sentences import LONGEST
+from soplint.notation.long_sentences import pieces as cut
 from soplint.notation.phrases import Sentence
 from soplint.notation.read import Reading, read_sentence
 from soplint.notation.rows import RecipeTable
@@ -37,7 +39,7 @@ def read_document(document: Document) -> tuple[ReadBlock, ...]:
             table = read_table(block.table, reading, index, strict, context[-2:])
             result.append(ReadBlock(block, tuple(row.sentence for row in table.rows), table))
             continue
-        if block.kind == "heading":
+        if block.kind == "heading" and len(block.text.chars) <= LONGEST:
             read = [read_sentence(block.text, reading, index, strict, always=True)]
         else:
             read = list(_read_block(block.text, reading, index, strict))
@@ -52,7 +54,7 @@ def _read_block(text: Text, reading: Reading, index: int, strict: bool) -> Itera
     def read(piece: Text, always: bool = True) -> Sentence:
         return read_sentence(piece, reading, index, strict, always)
 
-    pieces = sentences(text)
+    pieces = [piece for sentence in sentences(text) for piece in cut(sentence, reading.style)]
     for number, piece in enumerate(pieces):
         both = led(piece, read)
         if both is not None:

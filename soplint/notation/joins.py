@@ -18,6 +18,7 @@ _LINKS = frozenset({"COMMA", "DASH", "COLON", "EQUALS", "SEMICOLON"})
 _WHOLE = re.compile(r"(?:mixture|mix|solution|batch|preparation|medium|total) of", re.IGNORECASE)
 _LISTED = frozenset({"COMMA", "AND", "SEMICOLON"})
 _JOINED = frozenset({"PLUS", "COLON", "AND", "SLASH", "DASH"})
+_MOST_PARTS = 20  # things of one ratio that are looked for
 _OPPOSITE = {("mass", "amount"), ("amount", "mass"), ("mass", "volume"), ("amount", "volume")}
 
 
@@ -271,7 +272,11 @@ def _alternatives(found: list[Part]) -> list[Part]:
                 if before.amount.dimension != part.amount.dimension:
                     break
                 own = replace(part.material, finals=()) if part.material is not None else None
-                others.insert(0, replace(before, material=own))
+                first = replace(before, alternatives=(), start=before.amount.start)
+                listed = (*before.alternatives, first)
+                if own is not None:
+                    listed = tuple(replace(other, material=own) for other in listed)
+                others[:0] = listed
                 at -= 2
             if (named and others) or len(others) > 1:
                 del result[at:]
@@ -308,7 +313,7 @@ def _ratio_before(result: list[Part]) -> None:
     """ "7:3 methanol:water", "7:3 mixture of methanol and water": the ratio stands first."""
     at = len(result) - 1
     things: list[Material] = []
-    while at >= 1:
+    while at >= 1 and len(things) < _MOST_PARTS:
         part, joint = result[at], result[at - 1]
         if not isinstance(part, Material) or not part.words or part.strengths:
             return

@@ -9,10 +9,11 @@ from __future__ import annotations
 
 import os
 import re
-from collections.abc import Iterable, Sequence
+from collections.abc import Sequence
 from dataclasses import replace
 from functools import lru_cache
 
+from soplint.notation.stretches import Stretches
 from soplint.notation.terminals import BY_DIMENSION, Terminal
 from soplint.places import folder
 from soplint.quantities.model import Measure
@@ -98,27 +99,22 @@ def terminals(chars: str, measures: Sequence[Measure], names: Sequence[Match]) -
 def _settle(measures: Sequence[Measure], names: Sequence[Match]) -> list[Terminal]:
     """Quantities and names in order, without overlaps."""
     kept: list[Terminal] = []
+    places = Stretches((m.start, m.end) for m in measures)
     for name in names:
         kind = "WATER" if name.substances and name.substances[0].name == "water" else "NAME"
         if any(
-            m.start < name.end
-            and name.start < m.end
-            and not (name.start <= m.start and m.end <= name.end)
-            for m in measures
+            not (name.start <= start and end <= name.end)
+            for start, end in places.meeting(name.start, name.end)
         ):
             continue
         kept.append(Terminal(kind, name.start, name.end, match=name))
-    taken = sorted((t.start, t.end) for t in kept)
+    taken = Stretches((t.start, t.end) for t in kept)
     for measure in measures:
-        if not _inside(measure.start, measure.end, taken):
+        if not any(taken.meeting(measure.start, measure.end)):
             kind = BY_DIMENSION.get(measure.dimension, "OTHER")
             kept.append(Terminal(kind, measure.start, measure.end, measure=measure))
     kept.sort(key=lambda item: item.start)
     return kept
-
-
-def _inside(start: int, end: int, taken: Iterable[tuple[int, int]]) -> bool:
-    return any(low < end and start < high for low, high in taken)
 
 
 def _words(chars: str, start: int, end: int, found: list[Terminal]) -> None:

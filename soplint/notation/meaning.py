@@ -60,7 +60,7 @@ class Meaning(Doses):
     def _step(self, index: int) -> int:
         part = self.found[index]
         if isinstance(part, Role):
-            self._role(part)
+            self._role(part, index)
             return 1
         used = 1
         if isinstance(part, Command):

@@ -127,11 +127,13 @@ class Reader:
     def _strengths(self, tree: Tree[Token], before: list[Measure], remarks: Remarks) -> bool:
         """Add strengths before a name to ``before``; whether "each" was said."""
         each = False
-        for child in tree.children:
+        nodes: list[Node] = [tree]  # the grammar nests one level for each strength
+        while nodes:
+            child = nodes.pop()
             if isinstance(child, Token):
                 each = True
             elif child.data == "strengths":
-                each = self._strengths(child, before, remarks) or each
+                nodes.extend(reversed(child.children))
             elif child.data == "bracket":
                 self.remarks(child, remarks)
             else:
@@ -230,14 +232,15 @@ class Reader:
         """The quantity of a dose; brackets behind it go to ``remarks``."""
         amount: Measure | None = None
         each = False
-        for part in tree.children:
+        nodes: list[Node] = [tree]  # the grammar nests one level for each bracket
+        while nodes:
+            part = nodes.pop()
             if isinstance(part, Token):
                 each = True
             elif part.data == "quantity":
                 amount = next(self.tokens(part)).measure
             elif part.data == "amount":
-                amount, inner = self._amount(part, remarks)
-                each = each or inner
+                nodes.extend(reversed(part.children))
             else:
                 self.remarks(part, remarks)
         return amount, each

@@ -13,6 +13,7 @@ from soplint.notation.meaning import meaning
 from soplint.notation.parser import parse
 from soplint.notation.phrases import Dose, Phrase, Sentence, ToVolume
 from soplint.notation.refine import refine
+from soplint.notation.stretches import Stretches
 from soplint.quantities import NumberStyle, find_measures
 from soplint.quantities.model import Measure
 from soplint.substances import NameIndex
@@ -75,9 +76,17 @@ def _apart(
     chars: str, measures: list[Measure], names: Sequence[Match], style: NumberStyle
 ) -> list[Measure]:
     """The quantities, read again where one begins inside a name: "Tween 20 500 µL"."""
+    if not names or not measures:
+        return measures
+    places = Stretches((m.start, m.end) for m in measures)
     cut = [
-        name for name in names for m in measures if name.start < m.start < name.end < m.end
-    ]  # fmt: skip
+        name
+        for name in names
+        if any(
+            name.start < start < name.end < end
+            for start, end in places.meeting(name.start, name.end)
+        )
+    ]
     for name in cut:
         chars = chars[: name.start] + "n" * (name.end - name.start) + chars[name.end :]
     return find_measures(chars, style) if cut else measures

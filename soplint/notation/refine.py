@@ -43,6 +43,7 @@ _ADJECTIVES = {
     *("serum", "media", "culture", "storage", "sample", "autoclavable", "low-density", "eppendorf"),
 }
 _PH_LOWEST, _PH_HIGHEST = -1.0, 15.0
+_APART = 40  # terminals between a percentage and its basis, at most
 _LINKS = {"COMMA", "AND", "OR", "SLASH", "SEMICOLON"}
 
 
@@ -101,7 +102,7 @@ def _bases(chars: str, found: list[Terminal]) -> list[Terminal]:
             result.append(terminal)
             continue
         basis = chars[terminal.start : terminal.end].lower().replace(" ", "").replace("m", "w")
-        for index in range(len(result) - 1, -1, -1):
+        for index in range(len(result) - 1, max(-1, len(result) - 1 - _APART), -1):
             measure = result[index].measure
             if result[index].kind == "COMMA":
                 break
@@ -213,6 +214,7 @@ _PARTICIPLE = {
     "WASH",
     "PREPARE",
 }
+_NEAR = 200  # characters before a word in which its article is looked for
 _ARTICLE = re.compile(
     r"(?:\b(?:the|a|an|of|this|that|each|with|in|to)|[0-9][^ ]*|\d [^ ]+)\s+$", re.IGNORECASE
 )
@@ -222,12 +224,12 @@ def _adjectives(chars: str, found: list[Terminal]) -> list[Terminal]:
     """ "the mixed intermediate", "of boiled water": a participle before a noun commands nothing."""
     result = list(found)
     for index, terminal in enumerate(found[:-1]):
-        if terminal.kind not in _PARTICIPLE or not chars[: terminal.end].endswith("ed"):
+        if terminal.kind not in _PARTICIPLE or not chars.endswith("ed", 0, terminal.end):
             continue
         following = found[index + 1].kind
         opens = not chars[: terminal.start].strip()
         if following in ("NAME", "WATER", "SOLUTION", "OTHER") and (
-            opens or _ARTICLE.search(chars[: terminal.start])
+            opens or _ARTICLE.search(chars, max(0, terminal.start - _NEAR), terminal.start)
         ):
             result[index] = replace(terminal, kind="OTHER")
     return result

@@ -58,7 +58,7 @@ class State:
                 return _ROLES[kind]
         return None
 
-    def _role(self, role: Role) -> None:
+    def _role(self, role: Role, index: int) -> None:
         self.between.append(role.kind)
         last = self.phrases[-1] if self.phrases else None
         self.bracket += (role.kind == "LPAR") - (role.kind == "RPAR")
@@ -92,7 +92,7 @@ class State:
             self.final_first = True
         elif role.kind == "COLON" and self.final_first and not self.phrases:
             self.claiming = "FINALCONC"  # "Final: 20 mM EDTA"
-        elif role.kind == "EQUALS" and self._equates(role):
+        elif role.kind == "EQUALS" and self._equates(index):
             self.phrases.append(Command(role.start, role.end, "EQUIVALENT"))
         elif (
             role.kind == "EQUALS"
@@ -117,10 +117,10 @@ class State:
         water = last.material is None or last.material.is_water
         return water and "vol" in role.words
 
-    def _equates(self, role: Role) -> bool:
+    def _equates(self, index: int) -> bool:
         """ "1 mL of silver nitrate 0.02 mol/L = 0.709 mg chloride": what a titrant stands for."""
         last = self.phrases[-1] if self.phrases else None
-        after = self.found[self.found.index(role) + 1 :][:1]
+        after = self.found[index + 1 : index + 2]
         return (
             isinstance(last, Dose)
             and last.amount.dimension == "volume"
