@@ -6,8 +6,8 @@ from collections.abc import Iterator
 from typing import TYPE_CHECKING
 
 from soplint.bench.adjusting import adjuster_relations, room_relations, start_relations
-from soplint.bench.filled import Bottles
 from soplint.bench.meter_buffers import meter_relations
+from soplint.bench.passages import bottles_of
 from soplint.bench.ph_changes import change_relations
 from soplint.bench.relation import Relation
 
@@ -20,7 +20,7 @@ def more_relations(bench: Bench) -> Iterator[Relation]:
 
     Kinds: adjuster, room, ph-start, ph-at, ph-diluted, ph-loaded, ph-standard.
     """
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     for order, preparation in enumerate(bench.preparations):
         if not preparation.adjusted and (preparation.title is None or not preparation.title.ph):
             continue

@@ -3,10 +3,12 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterator
+from bisect import bisect_right
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
+from soplint.bench.filled import Bottles
 from soplint.bench.preparation import Preparation
 from soplint.notation.phrases import Claim, Sentence
 from soplint.quantities.model import Measure
@@ -31,13 +33,52 @@ class Passage:
         return self.sentence.text.chars
 
 
-def passages(bench: Bench) -> Iterator[Passage]:
+def passages(bench: Bench) -> Sequence[Passage]:
     """Every sentence of the document that is no table and stands in no section set aside."""
-    begins = sorted(
-        (place, order)
-        for order, preparation in enumerate(bench.preparations)
-        if (place := _begin(preparation)) is not None
-    )
+    return _index(bench).every
+
+
+def passages_of(bench: Bench, order: int) -> Sequence[Passage]:
+    """The sentences that stand in the steps of a preparation or behind them, in order."""
+    return _index(bench).by_order.get(order, ())
+
+
+def bottles_of(bench: Bench) -> Bottles:
+    """The solutions of the document, filled once for all who ask."""
+    return _index(bench).bottles
+
+
+@dataclass(frozen=True, slots=True)
+class _Index:
+    bench: Bench
+    every: tuple[Passage, ...]
+    by_order: dict[int, list[Passage]]
+    bottles: Bottles
+
+
+_last: list[_Index] = []  # of the document under review: every rule asks for it
+
+
+def _index(bench: Bench) -> _Index:
+    if not _last or _last[0].bench is not bench:
+        every = tuple(_walk(bench))
+        by_order: dict[int, list[Passage]] = {}
+        for passage in every:
+            if passage.order is not None and not passage.heading:
+                by_order.setdefault(passage.order, []).append(passage)
+        bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+        _last[:] = [_Index(bench, every, by_order, bottles)]
+    return _last[0]
+
+
+def _walk(bench: Bench) -> Iterator[Passage]:
+    begins: dict[int, list[tuple[tuple[int, int], int]]] = {}
+    for order, preparation in enumerate(bench.preparations):
+        place = _begin(preparation)
+        if place is not None:
+            begins.setdefault(preparation.section, []).append((place, order))
+    for found in begins.values():
+        found.sort()
     section = 0
     for index, block in enumerate(bench.blocks):
         heading = block.block.kind == "heading"
@@ -49,19 +90,11 @@ def passages(bench: Bench) -> Iterator[Passage]:
             if not sentence.text.chars.strip():
                 continue
             end = sentence.text.place(len(sentence.text.chars) - 1)
-            order = None
-            for place, number in begins:
-                if place > end:
-                    break
-                if bench.preparations[number].section == section:
-                    order = number
-            yield Passage(sentence, section, order, heading, before)
+            here = begins.get(section, [])
+            number = bisect_right(here, (end, len(bench.preparations)))
+            order_here = here[number - 1][1] if number else None
+            yield Passage(sentence, section, order_here, heading, before)
             before = sentence
-
-
-def passages_of(bench: Bench, order: int) -> list[Passage]:
-    """The sentences that stand in the steps of a preparation or behind them, in order."""
-    return [p for p in passages(bench) if p.order == order and not p.heading]
 
 
 def _begin(preparation: Preparation) -> tuple[int, int] | None:

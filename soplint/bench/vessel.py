@@ -14,6 +14,7 @@ from typing import TYPE_CHECKING
 from soplint.bench.adjusting import SOLID_ML_PER_G
 from soplint.bench.filled import Bottles, Contents, Finished, set_to
 from soplint.bench.numbers import shown
+from soplint.bench.passages import bottles_of
 from soplint.bench.preparation import Adjusted, Made, Preparation, Taken
 
 if TYPE_CHECKING:
@@ -55,7 +56,7 @@ class _State:
 
 def vessels(bench: Bench) -> Iterator[Vessel]:
     """The vessels of a document, in its order."""
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     for order, preparation in enumerate(bench.preparations):
         steps = tuple(_steps(preparation, order, bottles))
         if steps:

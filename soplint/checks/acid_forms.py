@@ -7,8 +7,8 @@ from collections.abc import Iterator
 
 from soplint.bench import Bench, Preparation, Relation, Stated
 from soplint.bench.acidity import NO_BUFFERS
-from soplint.bench.filled import Bottles
 from soplint.bench.numbers import shown
+from soplint.bench.passages import bottles_of
 from soplint.bench.remedies import amounts_for, systems_of
 from soplint.checks.registry import Judgement, rule
 from soplint.checks.telling import about_ph, about_quantity
@@ -23,7 +23,7 @@ _MIXED = re.compile(
 @rule("buffers.pair-shares-a-step")
 def pair_shares_a_step(bench: Bench) -> Iterator[Judgement]:
     """Two forms of one acid hold a pH only near the step that lies between them."""
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     for relation in bench.relations:
         if relation.kind != "ph" or relation.agrees or relation.preparation is None:
             continue
@@ -91,7 +91,7 @@ def same_buffer_same_ph(bench: Bench) -> Iterator[Judgement]:
     """Two recipes for one buffer in a document give one pH."""
     from soplint.equilibria import EquilibriumError, solve
 
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     made: dict[str, list[tuple[Preparation, float, dict[str, float]]]] = {}
     for order, preparation in enumerate(bench.preparations):
         title = preparation.title

@@ -7,8 +7,9 @@ from collections.abc import Iterator
 
 from soplint.bench import Bench, Preparation
 from soplint.bench.adjusting import adjuster_volume, wrong_way
-from soplint.bench.filled import Bottles, Finished, setting_of
+from soplint.bench.filled import Finished, setting_of
 from soplint.bench.numbers import shown
+from soplint.bench.passages import bottles_of
 from soplint.bench.portions import candidates
 from soplint.bench.preparation import Adjusted
 from soplint.checks.registry import Judgement, rule
@@ -25,7 +26,7 @@ _CORRECTION = re.compile(
 
 
 def _finished(bench: Bench) -> Iterator[Finished]:
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     for order, preparation in enumerate(bench.preparations):
         if preparation.adjusted:
             found = bottles.finished(order)

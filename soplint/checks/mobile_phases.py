@@ -9,6 +9,7 @@ from dataclasses import dataclass
 from soplint.bench import Bench, Preparation, Stated
 from soplint.bench.filled import Bottles
 from soplint.bench.numbers import shown
+from soplint.bench.passages import bottles_of
 from soplint.bench.portions import candidates
 from soplint.bench.preparation import Taken
 from soplint.checks.registry import Judgement, rule
@@ -92,7 +93,7 @@ class _Mixed:
 @rule("buffers.salt-stays-in-mobile-phase")
 def salt_stays_in_mobile_phase(bench: Bench) -> Iterator[Judgement]:
     """The buffer salt stays dissolved at the share of acetonitrile."""
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     for order, preparation in enumerate(bench.preparations):
         found = _mixed(preparation, order, bottles)
         if found is None:

@@ -6,7 +6,7 @@ import re
 from collections.abc import Iterator
 
 from soplint.bench import Bench, Relation
-from soplint.bench.filled import Bottles
+from soplint.bench.passages import bottles_of
 from soplint.bench.remedies import strength_for_load
 from soplint.checks.registry import Judgement, rule
 from soplint.checks.telling import about_ph
@@ -85,7 +85,7 @@ def _stronger(bench: Bench, relation: Relation) -> str:
     """How strong the buffer would have to be to hold the stated pH."""
     if relation.preparation is None or relation.preparation not in bench.preparations:
         return ""
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     finished = bottles.finished(bench.preparations.index(relation.preparation))
     contents = next(finished.contents(), None) if finished is not None else None
     acid, amounts = _FORMULA.search(relation.working), _AMOUNTS.search(relation.working)

@@ -8,9 +8,9 @@ from collections.abc import Iterator
 from soplint.bench import Bench, Preparation
 from soplint.bench.acidity import ROOM
 from soplint.bench.adjusting import listed
-from soplint.bench.filled import Bottles, Finished
+from soplint.bench.filled import Finished
 from soplint.bench.numbers import shown
-from soplint.bench.passages import passages_of
+from soplint.bench.passages import bottles_of, passages_of
 from soplint.bench.portions import candidates, portions
 from soplint.bench.preparation import Taken
 from soplint.checks.registry import Judgement, rule
@@ -42,7 +42,7 @@ def ions_stay_dissolved(bench: Bench) -> Iterator[Judgement]:
     """Calcium, magnesium and barium stay in solution beside phosphate, sulfate and fluoride."""
     from soplint.equilibria import EquilibriumError, saturation, solve
 
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     for order, preparation in enumerate(bench.preparations):
         if not any(_brings_metal(t) for t in preparation.taken):
             continue
@@ -120,7 +120,7 @@ _KEPT_COLD = re.compile(r"\b(?:2|4|5|8)\s*°\s*C\b|refrigerat|\bfridge\b|cold ro
 @rule("amounts.solubility-not-exceeded")
 def solubility_not_exceeded(bench: Bench) -> Iterator[Judgement]:
     """No more of a salt is taken than dissolves in the water."""
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     for order, preparation in enumerate(bench.preparations):
         volume = preparation.volume
         if volume is None or volume.provenance not in ("made-up", "mark"):

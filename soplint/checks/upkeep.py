@@ -6,9 +6,8 @@ import re
 from collections.abc import Iterator
 
 from soplint.bench import Bench, Preparation
-from soplint.bench.filled import Bottles
 from soplint.bench.numbers import shown
-from soplint.bench.passages import Passage, passages, passages_of, readings_of
+from soplint.bench.passages import Passage, bottles_of, passages, passages_of, readings_of
 from soplint.bench.portions import candidates
 from soplint.bench.preparation import Taken
 from soplint.checks.registry import Judgement, rule
@@ -165,7 +164,7 @@ _CLOSED = re.compile(
 @rule("buffers.carbon-dioxide-kept-out")
 def carbon_dioxide_kept_out(bench: Bench) -> Iterator[Judgement]:
     """An alkaline buffer that is kept for weeks is protected from carbon dioxide."""
-    bottles = Bottles(bench.preparations, bench.facts, bench.blocks)
+    bottles = bottles_of(bench)
     whole = " ".join(s.text.chars for b in bench.blocks for s in b.sentences)
     if _CLOSED.search(whole):
         return
