@@ -94,12 +94,21 @@ def _contacts(vessel: Vessel) -> Iterator[Contact]:
                 mark = (pair.rule, pair.first + pair.second, "")
                 if mark in seen or not _holds(pair.needs, vessel, one, other):
                     continue
+                if "hypochlorite" in (pair.first, pair.second) and _quenched(held, one, other):
+                    continue
                 gas = gases().get(pair.gas)
                 litres = _gas(gas, vessel, pair)
                 if gas is not None and litres is not None and litres < gas.trace:
                     continue
                 seen.add(mark)
                 yield Contact(pair, vessel, one, other, gas, litres)
+
+
+def _quenched(held: list[Content], one: Content, other: Content) -> bool:
+    """Whether iodide, thiosulfate or sulfite had taken up the hypochlorite before the other came."""
+    last = max(one.step, other.step)
+    bleach = min(c.step for c in (one, other) if "hypochlorite" in c.classes)
+    return any("quenching" in c.classes and bleach <= c.step <= last for c in held)
 
 
 # --- conditions --------------------------------------------------------------------------------

@@ -130,25 +130,31 @@ def percent_of(
             return measure.base * 100
     if substance is None:
         return None
-    if grams is not None and litres:
-        return grams / (litres * 10 * _thickness(substance, grams / litres))
     for measure in (*material.strengths, *material.bracket):
-        if measure.dimension == "molarity" and substance.molar_mass:
+        if measure.dimension in ("molarity", "normality") and substance.molar_mass:
             mass = measure.base * substance.molar_mass
             return mass / (10 * _thickness(substance, mass))
     known = facts.strength(material)
     if known is not None and known.dimension == "fraction":
         return known.base * 100
-    if substance.state == "solution" and "dilute" not in material.words.lower():
-        return substance.strength
-    return 100.0 if substance.state == "solid" else None
+    if known is None and substance.state == "solution" and not material.strengths:
+        return None if "dilute" in material.words.lower() else substance.strength
+    if grams is not None and litres:
+        return grams / (litres * 10 * _thickness(substance, grams / litres))
+    return 100.0 if substance.state == "solid" else substance.strength
 
 
 def _thickness(substance: Substance, grams_per_litre: float) -> float:
-    """Density in g/mL of a solution of so many g/L, by the tables, else 1."""
+    """Density in g/mL of a solution of so many g/L: by the tables, else between water and concentrate."""
     density = 1.0
-    for _ in range(4):
-        density = solution_density(substance.family, grams_per_litre / (10 * density)) or density
+    for _ in range(6):
+        percent = grams_per_litre / (10 * density)
+        tabulated = solution_density(substance.family, percent)
+        if tabulated is not None:
+            density = tabulated
+        elif substance.density and substance.strength and substance.state != "solid":
+            share = min(1.0, percent / substance.strength)
+            density = 1.0 + (substance.density - 1.0) * share
     return density
 
 

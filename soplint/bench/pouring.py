@@ -134,7 +134,7 @@ def _liquid(
         into_water = receiver is not None and (
             receiver.is_water or receiver.solution or receiver.match is not None
         )
-        if liquid and phrase.role is None and not into_water and not vessel.wet:
+        if liquid and phrase.role in (None, "with") and not into_water and not vessel.wet:
             vessel.acid = (*acid, Stated(sentence.text, phrase.amount))
         else:
             vessel.wet = True

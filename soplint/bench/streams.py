@@ -133,7 +133,7 @@ def _found(chars: str) -> Iterator[tuple[int, int, frozenset[str], str]]:
 
 # Adjectives of containers.
 _STREAM_WORDS = (
-    (r"acids?(?=\s+(?:\w+\s+)?(?:waste|can|drum|tub|bath|bottle|container|canister|tank|bin|stream))",
+    (r"acid(?:s|ic)?(?=\s+(?:\w+\s+)?(?:waste|can|drum|tub|bath|bottle|container|canister|tank|bin|stream|carboy))",
      frozenset({"acid", "strong-acid"})),
     (r"(?:alkali|alkaline|caustic|base)(?=\s+(?:\w+\s+)?(?:waste|can|drum|tub|bath|bottle|container|tank))",
      frozenset({"strong-base"})),

@@ -69,6 +69,7 @@ def _once(contents: list[Content]) -> list[Content]:
     return kept
 
 
+_HEAD = 40  # characters of a line that heads a list
 _LISTS = re.compile(
     r"\b(reagents?|materials?|chemicals?|consumables|supplies|apparatus|equipment|protection|safety"
     r"|hazards?|precautions?|scope|purpose|records?|references?|calculation|definitions?|storage"
@@ -77,6 +78,9 @@ _LISTS = re.compile(
 )
 _WASTE = re.compile(
     r"\b(waste|wastes|residues?|disposal|release|clean(?:ing)?[- ]up|cans|drums)\b", re.I
+)
+_BOUGHT = re.compile(
+    r"\b(?:supplier|cat|catalogue|cas|grade|purity|pack|lot|order|storage|source|hazards?)\b", re.I
 )
 _NEW = re.compile(
     r"\b(?:another|second|third|new|clean|fresh|separate|different|next)\s+(?:[\w-]+\s+){0,3}"
@@ -97,10 +101,21 @@ _ENDS_AT = re.compile(
     r"\b(?:to|until|at|reaches|is|above|below)\W*(?:(?:the|a|is|pH|above|below|about|reaches)\W*)*$",
     re.I,
 )
-_BRINGS = {"ADD", "POUR", "DISSOLVE", "MAKE_UP", "DILUTE", "MIX", "WEIGH", "ADJUST", "PREPARE", "HEAT"}
+_BRINGS = {
+    "ADD",
+    "POUR",
+    "DISSOLVE",
+    "MAKE_UP",
+    "DILUTE",
+    "MIX",
+    "WEIGH",
+    "ADJUST",
+    "PREPARE",
+    "HEAT",
+}
 _BY_HAND = re.compile(
     r"\b(?:run in|top up|treat|acidif\w+|spike|charge|pour\w*|tip|empt\w+|quench\w*|soak\w*"
-    r"|neutralis\w+|neutraliz\w+|etch\w*|digest\w*|react\w*|leach\w*|preserv\w+|fill\w*|let .{0,40} run|mix\w*|add\w*|keep in|stored? in)\b",
+    r"|neutralis\w+|neutraliz\w+|etch\w*|digest\w*|react\w*|leach\w*|preserv\w+|fill\w*|containing|let .{0,40} run|mix\w*|add\w*|keep in|stored? in)\b",
     re.IGNORECASE,
 )
 
@@ -115,6 +130,7 @@ class Walker:
         self.current: Vessel | None = None
         self.heading = ""
         self.listing = False
+        self.led_list = False  # items under "Reagents:" that is no heading
         self.waste = False
         self.section = 0
         self.step = 0
@@ -132,6 +148,12 @@ class Walker:
                     self._table(read)
             elif not self.listing or _steps(read):
                 alone = block.kind == "paragraph" and block.number is None
+                if alone:
+                    short = len(block.text.chars) <= _HEAD and not _steps(read)
+                    self.led_list = short and bool(_LISTS.search(block.text.chars))
+                elif self.led_list and block.number is None and not _steps(read):
+                    last_kind = "item"
+                    continue
                 if alone or self.listing or (last_kind == "paragraph" and block.kind == "item"):
                     lead = block.text.chars if last_kind == "paragraph" or alone else ""
                     if alone or self.listing or not self._led(last_kind):
@@ -149,6 +171,7 @@ class Walker:
 
     def _heading(self, chars: str) -> None:
         self.heading = chars
+        self.led_list = False
         self.listing = bool(_LISTS.search(chars)) and not re.search(r"\d\s*(?:mL|L)\b", chars)
         self.waste = bool(_WASTE.search(chars))
         self.section += 1
@@ -292,6 +315,8 @@ class Walker:
         named: list[Destination],
     ) -> None:
         """Things that no phrase took up: "the cyanide sample", "zinc dust", "the bleach bath"."""
+        if {"WASH", "STORE", "TITRATE"} & sentence.kinds:
+            return
         text = sentence.text
         held = [(c.start, c.end) for c in vessel.contents if c.text is text]
         for content in things_in(text, 0, len(text.chars), self.step, loose=False):
@@ -366,7 +391,10 @@ class Walker:
     def _table(self, read: ReadBlock) -> None:
         """The first amount column of a recipe table is a vessel without an order."""
         assert read.table is not None
-        if not any(table is read.table for table, _ in self.bench.scope.tables):
+        made = any((row.text.line, row.text.column) in self.places for row in read.table.rows)
+        grid = read.block.table
+        heads = " ".join(cell.chars for cell in grid.head) if grid is not None else ""
+        if not made or _BOUGHT.search(heads):
             return
         vessel = self._open(self.heading)
         vessel.kind = "table"

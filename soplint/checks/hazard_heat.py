@@ -8,7 +8,7 @@ from collections.abc import Iterator
 from soplint.bench import Bench, Stated
 from soplint.bench.contents import Content
 from soplint.bench.vessels import Vessel, vessels
-from soplint.checks.hazard_words import CAREFUL, at, hazard, place, plain, protection
+from soplint.checks.hazard_words import CAREFUL, at, hazard, place, plain, protection, said
 from soplint.checks.registry import Disagreement, Judgement, rule
 from soplint.equilibria.heats import (
     heat_of_neutralisation,
@@ -80,7 +80,7 @@ def _careful(bench: Bench, vessel: Vessel) -> bool:
     """Cooling, portions or slow addition are said, in the vessel's steps or for the whole text."""
     if CAREFUL.search(vessel.words):
         return True
-    return _ALWAYS.search(protection(bench).words) is not None
+    return said(_ALWAYS, protection(bench).words)
 
 
 _ALWAYS = re.compile(
@@ -92,14 +92,14 @@ _ALWAYS = re.compile(
 def heat_of_dilution(bench: Bench) -> Iterator[Judgement]:
     """Strong acid and alkali are diluted with cooling or in portions where it gets hot."""
     for vessel in vessels(bench):
-        if vessel.kind == "stream" or _careful(bench, vessel):
-            continue
-        if neutralisation_rise(vessel) is not None:
+        if vessel.kind == "stream" or neutralisation_rise(vessel) is not None:
             continue
         for content in vessel.contents:
             rise = dilution_rise(vessel, content)
             if rise is None or rise < SILENT:
                 continue
+            if _careful(bench, vessel):
+                break
             # a list of parts states no steps: it asks for the wording only
             grade = "major" if vessel.kind == "steps" else "remark"
             yield at(

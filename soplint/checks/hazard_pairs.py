@@ -33,8 +33,25 @@ _OPEN_REMARK = 1.0  # L of carbon dioxide from which a remark is worth its line
 
 
 def severity(contact: Contact, shield: Protection) -> str | None:
-    """Class of a contact (issue of the hazards, point 3); None: nothing to say."""
+    """Class of a contact; None: nothing to say.
+
+    A list or table without a volume made up may name separate things: at most minor, it asks for
+    the wording.
+    """
+    grade = _grade(contact, shield)
+    vessel = contact.vessel
+    if vessel.kind in ("list", "table") and vessel.litres is None and grade != "remark":
+        return "minor" if grade else None
+    return grade
+
+
+def _grade(contact: Contact, shield: Protection) -> str | None:
+    """Class by gas, amount and protection (issue of the hazards, point 3)."""
     gas, litres = contact.gas, contact.litres
+    vessel = contact.vessel
+    if contact.pair.rule == "hazards.peroxide-controlled" and shield.hood:
+        if _DROPS.search(vessel.words):
+            return "remark"  # a digestion by design, named as such
     if gas is not None and gas.listed:
         if contact.vessel.kind != "stream" and _controlled(contact.vessel, shield):
             return "minor"
@@ -46,6 +63,9 @@ def severity(contact: Contact, shield: Protection) -> str | None:
     if gas is not None and gas.key == "NH3" and shield.hood:
         return "minor"
     return contact.pair.severity.split()[0]
+
+
+_DROPS = re.compile(r"\b(?:dropwise|in drops|small portions|drop by drop)\b")
 
 
 def _controlled(vessel: Vessel, shield: Protection) -> bool:
@@ -157,7 +177,8 @@ def hypochlorite_alone(bench: Bench) -> Iterator[Judgement]:
 
 
 _BATH = re.compile(
-    r"\b(?:in(?:to)?|to)\s+(?:the|an?|\d[\d.,]*\s?%)\s+(?P<what>bleach|hypochlorite|acid|ammonia)\b", re.IGNORECASE
+    r"\b(?:in(?:to)?|to)\s+(?:the|an?|\d[\d.,]*\s?%)\s+(?P<what>bleach|hypochlorite|acid|ammonia)\b",
+    re.IGNORECASE,
 )
 _DIPS = re.compile(r"\b(?:soak|dip|immers|transfer|put|place|move)\w*", re.IGNORECASE)
 _RINSES = re.compile(r"\b(?:rins|wash|water|drain)\w*", re.IGNORECASE)

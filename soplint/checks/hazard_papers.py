@@ -8,7 +8,7 @@ from collections.abc import Iterator
 from soplint.bench import Bench, Stated
 from soplint.bench.contents import Content
 from soplint.bench.vessels import vessels
-from soplint.checks.hazard_words import ELSEWHERE, absence, at, hazard, plain, protection
+from soplint.checks.hazard_words import ELSEWHERE, absence, at, hazard, place, plain, protection
 from soplint.checks.registry import Judgement, rule
 
 _FATAL = {"H300", "H310", "H330"}
@@ -166,3 +166,40 @@ def amount_within_scale(bench: Bench) -> Iterator[Judgement]:
             working="volume of the vessel against the scale stated in the text",
         )
         return
+
+
+_REACTIVE = {
+    *(
+        "hypochlorite",
+        "cyanide",
+        "sulfide",
+        "azide",
+        "nitric",
+        "perchloric",
+        "peroxide",
+        "permanganate",
+    ),
+    *("dichromate", "nitrite", "hydride", "chlorite", "chlorate", "hydrofluoric"),
+}
+
+
+@rule("hazards.contents-known")
+def contents_known(bench: Bench) -> Iterator[Judgement]:
+    """What meets a reactive substance in a vessel is known, so that the pair can be assessed."""
+    for vessel in vessels(bench):
+        strangers = {c.key: c for c in vessel.contents if not c.known}
+        for content in vessel.contents:
+            reactive = content.classes & _REACTIVE
+            if not reactive or not strangers or not _strong(content):
+                continue
+            first = next(iter(strangers.values()))
+            names = ", ".join(sorted(c.words.strip(" .,;") for c in strangers.values()))
+            yield at(
+                "hazards.contents-known",
+                "remark",
+                first,
+                f"not assessed: {names} with {plain(content)} in {place(vessel)}; the catalogue does not know what it is",
+                working="pairs with an unknown substance are counted as not assessed",
+                others=((content, "the reactive substance"),),
+            )
+            break

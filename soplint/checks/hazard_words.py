@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
+from functools import lru_cache
 
 from soplint.bench import Bench
 from soplint.bench.contents import Content
@@ -40,6 +41,12 @@ CAREFUL = re.compile(
 )
 
 
+@lru_cache(maxsize=16)
+def said(pattern: re.Pattern[str], words: str) -> bool:
+    """Whether a pattern is found in a text; a long text with many vessels is searched once."""
+    return pattern.search(words) is not None
+
+
 @dataclass(frozen=True, slots=True)
 class Protection:
     """What the document says anywhere about how work is protected."""
@@ -49,22 +56,28 @@ class Protection:
     @property
     def hood(self) -> bool:
         """A fume cupboard or another extraction is named."""
-        return HOOD.search(self.words) is not None
+        return said(HOOD, self.words)
 
     @property
     def trap(self) -> bool:
         """A trap or absorber for gas is named."""
-        return TRAP.search(self.words) is not None
+        return said(TRAP, self.words)
 
     @property
     def wear(self) -> bool:
         """Protective equipment is named."""
-        return WEAR.search(self.words) is not None
+        return said(WEAR, self.words)
+
+
+_KEPT: list[tuple[object, Protection]] = []
 
 
 def protection(bench: Bench) -> Protection:
-    """The protection that a document names."""
-    return Protection(" \n".join(read.block.text.chars for read in bench.blocks).lower())
+    """The protection that a document names; kept for the bench that was asked last."""
+    if not _KEPT or _KEPT[0][0] is not bench:
+        words = " \n".join(read.block.text.chars for read in bench.blocks).lower()
+        _KEPT[:] = [(bench, Protection(words))]
+    return _KEPT[0][1]
 
 
 _SAFETY = re.compile(r"\b(?:safety|protection|hazards?|precautions?|sicherheit)\b", re.IGNORECASE)
@@ -76,7 +89,7 @@ def absence(bench: Bench, against: re.Pattern[str] | None = None) -> str:
     A text without such a section (a recipe, an excerpt) gets a remark, unless its words speak
     ``against`` protection.
     """
-    if against is not None and against.search(protection(bench).words):
+    if against is not None and said(against, protection(bench).words):
         return "minor"
     for read in bench.blocks:
         head = read.block.kind == "heading" or read.block.bold
