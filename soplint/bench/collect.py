@@ -7,6 +7,7 @@ from bisect import bisect_right
 from collections.abc import Sequence
 from dataclasses import replace
 
+from soplint.bench.facts import tokens
 from soplint.bench.preparation import (
     Adjusted,
     Claimed,
@@ -263,11 +264,16 @@ class Collector:
             if material.strengths or material.solution or material.ph:
                 self._inline_title(sentence, dose)
                 return
-        if self._from_the_last(sentence, dose):
+        if self._is_the_batch(dose):
+            self._to_volume(sentence.text, ToVolume(dose.start, dose.end, dose.amount))
+            return
+        if self._from_the_last(sentence, dose, command):
             self._settle_pending()
             self._next()
-            last = Material(dose.start, dose.end, "", solution=True)
-            self.current.taken.append(Taken(sentence.text, replace(dose, material=last), self.step))
+            last = dose.material or Material(dose.start, dose.end, "", solution=True)
+            dose = replace(dose, material=last)
+            taken = Taken(sentence.text, dose, self.step, block=sentence.block)
+            self.current.taken.append(taken)
             return
         solvent = dose.role == "in" and dose.amount.dimension == "volume"
         if dose.role == "per" or (dose.material is None and dose.role == "to"):
@@ -275,7 +281,7 @@ class Collector:
         if self._belongs_to_adjustment(dose):
             return
         dose = self._with_material(dose, solvent)
-        taken = Taken(sentence.text, dose, self.step, solvent)
+        taken = Taken(sentence.text, dose, self.step, solvent, block=sentence.block)
         self._contents(taken)
         if not self.closed:
             self.current.taken.append(taken)
@@ -284,13 +290,28 @@ class Collector:
         else:
             self.pending.append(taken)
 
-    def _from_the_last(self, sentence: Sentence, dose: Dose) -> bool:
+    def _is_the_batch(self, dose: Dose) -> bool:
+        """ "(250 mL): 45.4 g ... in 180 mL water, HCl to 8.8, then 250 mL": the volume it is for."""
+        title = self.current.title
+        if dose.material is not None or dose.role is not None or not self.current.taken:
+            return False
+        if title is None or title.volume is None or dose.amount.dimension != "volume":
+            return False
+        batch = title.volume.measure.base
+        return self.kind == "line" and abs(dose.amount.base / batch - 1) < 1e-9 if batch else False
+
+    def _from_the_last(self, sentence: Sentence, dose: Dose, command: str | None) -> bool:
         """ "..., 0.5 mg/mL; 5.0 mL of this to 50.0 mL": the solution just made is diluted."""
-        if dose.material is not None or dose.amount.dimension != "volume" or self.closed:
+        if dose.amount.dimension != "volume" or self.closed:
             return False
-        if not _OF_THIS.match(sentence.text.chars, dose.amount.end):
+        if not any(taken.solvent for taken in self.current.taken):
             return False
-        return bool(self.current.claimed) and any(t.solvent for t in self.current.taken)
+        if dose.material is None:
+            this = _OF_THIS.match(sentence.text.chars, dose.amount.end)
+            return this is not None and bool(self.current.claimed)
+        weighed = any(t.dose.amount.dimension == "mass" for t in self.current.taken)
+        the_stock = dose.material.solution and not tokens(dose.material.words)
+        return weighed and the_stock and command == "DILUTE"
 
     def _already_taken(self, sentence: Sentence) -> bool:
         """Whether this sentence has taken something: what it "obtains" is the result."""

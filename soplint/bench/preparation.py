@@ -79,6 +79,7 @@ class Taken:
     solvent: bool = False
     late: bool = False  # added after the volume was made up
     scale: float = 1.0  # number of times, "each" groups
+    block: int = -1  # of the document; -1 where the dose stands in a table
 
     @property
     def stated(self) -> Stated:

@@ -27,7 +27,7 @@ _VESSEL = (
     r"|carboys?|streams?|buckets?|sinks?|drains?)"
 )
 _TO = re.compile(
-    r"\b(?:into|in|to|down|goes to|with)\s+(?:the same|the|an?|its|their|our|one|a single)\s+"
+    r"\b(?:into|in|to|down|goes to)\s+(?:the same|the|an?|its|their|our|one|a single)\s+"
     rf"(?P<name>(?:[\w-]+\s+){{0,4}}?{_VESSEL}(?:\s+(?:{_VESSEL}|line)){{0,2}})\b",
     re.IGNORECASE,
 )

@@ -40,7 +40,7 @@ def _amount(
     bench: Bench, relation: Relation, cause: Cause | None, rule_name: str, what: str
 ) -> Iterator[Judgement]:
     grade = severity(relation, cause is not None)
-    if grade is None:
+    if grade is None or _all_for_more(bench, relation):
         return
     words = (
         f"{what}: {_stated(relation)} of {relation.of or 'it'} stated,"
@@ -135,6 +135,18 @@ def _rest_follows(relation: Relation) -> bool:
     if volume is None or volume.provenance not in ("total", "sum", "weak"):
         return False
     return 0 < relation.deviation <= _REST
+
+
+def _all_for_more(bench: Bench, relation: Relation) -> bool:
+    """Whether several amounts are too large by one factor: the sample comes to the mix later."""
+    return _rest_follows(relation) and any(
+        other.preparation is relation.preparation
+        and other.kind in ("stock", "fold", "mass")
+        and other.tested.key != relation.tested.key
+        and not other.agrees
+        and abs((1 + other.deviation) / (1 + relation.deviation) - 1) < 0.01
+        for other in bench.relations
+    )
 
 
 @rule("amounts.mass-fits-named-form")

@@ -52,7 +52,7 @@ def hydrofluoric_controls(bench: Bench) -> Iterator[Judgement]:
     """Work with hydrofluoric acid names calcium gluconate, gloves, plastic ware and a second person."""
     words = protection(bench).words
     wanted = {
-        "calcium gluconate": r"gluconate",
+        "calcium gluconate": r"gluconate|calcium gel|ca gel",
         "gloves": r"glove",
         "plastic ware": r"plastic|polyethylene|polypropylene|ptfe|pfa|fluoropolymer|teflon|\bpe\b|\bpp\b",
         "a second person": r"two persons|second person|not alone|never alone|two people|buddy|accompanied",
@@ -61,9 +61,11 @@ def hydrofluoric_controls(bench: Bench) -> Iterator[Judgement]:
     if not missing:
         return
     for _, content in held(bench, "hydrofluoric"):
+        # the antidote and plastic ware decide; gloves and company are often told elsewhere
+        grave = "calcium gluconate" in missing or "plastic ware" in missing
         yield at(
             "hazards.hydrofluoric-controls-named",
-            "critical",
+            "critical" if grave else "remark",
             content,
             f"hydrofluoric acid is used and the text does not name {', '.join(missing)}",
             working="looked for in the whole text (Prudent Practices in the Laboratory, from memory)",

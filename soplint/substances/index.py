@@ -44,6 +44,33 @@ _LIKE_FORMULA = re.compile(r"(?:[A-ZАВЕКМНОРСТХІ][a-zасеохі]?\
 _LED = re.compile(r"[(\[][A-Z][A-Za-z0-9]{0,20}[)\]]\d{0,3}[A-Z][A-Za-z0-9()\[\]]{0,60}")
 
 
+# Words before "HCl" that are no organic base.
+_NO_BASE = {
+    *("combine", "determine", "examine", "define", "machine", "fine", "line", "refine", "chlorine"),
+    *(
+        "brine",
+        "urine",
+        "routine",
+        "saline",
+        "bromine",
+        "iodine",
+        "fluorine",
+        "examine",
+        "medicine",
+    ),
+    *("baseline", "turbine", "marine", "nine", "wine", "mine", "online", "discipline", "pipeline"),
+}
+_BASE = re.compile(r"\b([A-Za-z-]{3,}(?:ine|min|cin|nolol|olol|amil))[ -]$", re.IGNORECASE)
+
+
+def _salt_of_another(chars: str, start: int, end: int) -> bool:
+    """ "dopamine HCl": the salt of a base that is not in the catalogue, no hydrochloric acid."""
+    if chars[start:end] not in ("HCl", "HBr", "2HCl"):
+        return False
+    before = _BASE.search(chars[max(0, start - 40) : start])
+    return before is not None and before[1].lower() not in _NO_BASE
+
+
 class NameIndex:
     """Names of the catalogue in running text."""
 
@@ -77,6 +104,8 @@ class NameIndex:
                 continue
             reached = found[1]
             if found[2].kind != "n":
+                if _salt_of_another(folded, found[0], found[1]):
+                    continue
                 matches.append(self._match(chars, folded, *found))
                 reached = matches[-1].end
         return matches
