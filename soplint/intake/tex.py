@@ -29,7 +29,10 @@ def mathematics(scan: Scan, start: int, end: int) -> None:
         elif command is not None:
             scan.put(COMMANDS.get(command, command), at)
         elif escaped is not None:
-            scan.put({",": " ", ";": " ", ":": " ", "!": "", "\\": " "}.get(escaped, escaped), at)
+            scan.put(
+                {",": " ", ";": " ", ":": " ", "!": "", "\\": " "}.get(escaped, escaped),
+                step.start(6),
+            )
         elif mark is not None:
             scan.put(" " if mark == "~" else "", at)
         else:

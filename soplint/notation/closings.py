@@ -139,6 +139,17 @@ def without_claims(diluent: Material) -> tuple[Material, tuple[Measure, ...]]:
     return replace(diluent, bracket=rest), claims + diluent.finals
 
 
+def without_weight_claims(
+    solvent: Material, claims: tuple[Measure, ...]
+) -> tuple[Material, tuple[Measure, ...]]:
+    """A solvent without the mass strengths in its brackets, and these after ``claims``."""
+    told = tuple(
+        m for m in solvent.bracket if m.basis == "w/v" or m.dimension == "mass-concentration"
+    )
+    rest = tuple(m for m in solvent.bracket if m not in told)
+    return replace(solvent, bracket=rest), claims + told
+
+
 def stands_before(phrases: Sequence[Phrase]) -> Material | None:
     """The last thing that was named."""
     for phrase in reversed(phrases):

@@ -8,6 +8,7 @@ from soplint.notation.closings import (
     join_equivalent,
     same_thing,
     without_claims,
+    without_weight_claims,
 )
 from soplint.notation.parts import Role
 from soplint.notation.phrases import (
@@ -70,11 +71,17 @@ class Doses(Volumes):
         if dose.material is not None and self.phrases:
             # "250 µL of stock + 500 µL water (30 µg/mL)": the strength is that of the mixture
             water, claims = without_claims(dose.material)
+            if dose.role == "in" and self._weighed():
+                # "0.1 g of methyl red in 100 mL of ethanol (0.1 % w/v)": not a strength of ethanol
+                water, claims = without_weight_claims(water, claims)
             dose = replace(dose, material=water)
         self.phrases.append(dose)
         join_equivalent(self.phrases)
         for strength in claims:
             self._claim(None, strength)
+
+    def _weighed(self) -> bool:
+        return any(isinstance(p, Dose) and p.amount.dimension == "mass" for p in self.phrases)
 
     def _comes_out(self, dose: Dose) -> bool:
         """ "5 mL of 2 M KCl and 95 mL water give 100 mL of 0.1 M KCl": what was mixed."""

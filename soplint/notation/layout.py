@@ -68,6 +68,8 @@ def _settled(columns: Sequence[Column], name: Column) -> list[Column]:
             role = "NAME"
         elif role == "NAME" or (role == "WORDS" and column.index == 0 and column.heading.words):
             role = "LABEL" if column.index < name.index else "IGNORE"
+        elif role == "LABEL" and "dilution" in column.heading.words.lower():
+            role = "DILUTION" if column.index > name.index else "LABEL"
         elif role == "LABEL" and column.index > name.index:
             amounts = stats.mostly(stats.taken + stats.numbers + stats.brought)
             role = "AMOUNT" if amounts else "CONC" if stats.mostly(stats.strengths) else "IGNORE"

@@ -183,8 +183,9 @@ def _for_a_litre(sentence: Sentence) -> Sentence:
         return _made(sentence, kept, made)
     last = sentence.phrases[-1] if sentence.phrases else None
     if isinstance(last, Dose) and last.role == "per" and last.amount.dimension == "volume":
-        if last.material is None or last.material.is_water:
-            made = ToVolume(last.start, last.end, last.amount, said_final=True)
+        liquid = last.material
+        if liquid is None or liquid.match is not None or liquid.solution:
+            made = ToVolume(last.start, last.end, last.amount, liquid, said_final=True)
             return _made(sentence, sentence.phrases[:-1], made)
     return sentence
 

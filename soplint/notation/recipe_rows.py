@@ -12,7 +12,7 @@ from soplint.notation.columns import Column
 from soplint.notation.headings import unit_sample
 from soplint.notation.joined import sentence_of
 from soplint.notation.layout import Layout
-from soplint.notation.phrases import Dose, Material, Phrase, SetPH
+from soplint.notation.phrases import Claim, Dose, Material, Phrase, SetPH
 from soplint.notation.read import Reading
 from soplint.notation.row_names import Named, read_name
 from soplint.notation.row_parts import (
@@ -228,6 +228,12 @@ class Builder:
         if material is not None and not any(isinstance(p, (Dose, SetPH)) for p in phrases):
             if kind != "complement":
                 phrases[:0] = self._compositions(material, told) or [material]
+        phrases += [
+            Claim(m.start, m.end, m, material, "dilution")
+            for column, fact in told
+            for m in fact.measures
+            if column.role == "DILUTION" and m.dimension == "ratio"
+        ]
         measures = [*name.measures]
         for part in taken:
             measures += part.measures
