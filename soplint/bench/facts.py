@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
+from functools import lru_cache
 
 from soplint.notation.phrases import Material
 from soplint.quantities.model import Measure
@@ -19,6 +20,7 @@ _STOP = {
 _TOKEN = re.compile(r"[^\W_]+")
 
 
+@lru_cache(maxsize=4096)
 def tokens(words: str) -> frozenset[str]:
     """The telling words of a name, in lower case; the letter of "solution A" is one."""
     return frozenset(
@@ -62,16 +64,18 @@ class Facts:
 
     def strength(self, material: Material) -> Measure | None:
         """The strength that the reagent list prints for a liquid, if exactly one fits."""
-        found: list[Measure] = []
+        first: Measure | None = None
         for other in self.listed:
-            if same_substance(material, other):
-                found.extend(
-                    m
-                    for m in other.strengths
-                    if m.dimension in ("molarity", "fraction", "mass-concentration")
-                )
-        distinct = {(m.dimension, round(m.base, 9)) for m in found}
-        return found[0] if len(distinct) == 1 else None
+            if not other.strengths or not same_substance(material, other):
+                continue
+            for measure in other.strengths:
+                if measure.dimension not in _LISTED:
+                    continue
+                if first is None:
+                    first = measure
+                elif _distinct(measure) != _distinct(first):
+                    return None
+        return first
 
     def density(self, material: Material) -> Measure | None:
         """The density that the reagent list prints for a material."""
@@ -104,6 +108,14 @@ class Facts:
         if said and telling:
             return tuple(reversed(telling))
         return () if said else tuple(reversed(before))[:1]
+
+
+# Strengths that a reagent list prints for a liquid.
+_LISTED = ("molarity", "fraction", "mass-concentration")
+
+
+def _distinct(measure: Measure) -> tuple[str, float]:
+    return measure.dimension, round(measure.base, 9)
 
 
 # Nouns that stand for a solution named before.

@@ -97,8 +97,9 @@ def mass_gives_concentration(bench: Bench) -> Iterator[Judgement]:
 def _common(bench: Bench) -> Iterator[Judgement]:
     """Several amounts of one preparation off by one factor: one finding about all of them."""
     groups: dict[int, list[Relation]] = {}
+    grouped = common_factor(bench)
     for relation in bench.relations:
-        number = common_factor(bench).get(id(relation))
+        number = grouped.get(id(relation))
         if number is not None:
             groups.setdefault(number, []).append(relation)
     for relations in groups.values():

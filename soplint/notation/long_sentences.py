@@ -22,9 +22,10 @@ _SEPARATORS = (
     re.compile(r"[;.!?]\s+"),
     re.compile(r",\s+"),
     re.compile(r"[)\]]\s*"),
-    re.compile(r"\s+"),
-    re.compile(r"[^\w.,]"),
 )
+# Without a separator: before a quantity, with the words that lead up to it.
+_LEAD = re.compile(r"(?:\b(?:add|make|up|to|at|in|of|with|about|is|ph)\s+)*$", re.IGNORECASE)
+_LAST_RESORT = (re.compile(r"\s+"), re.compile(r"[^\w.,]"))
 
 
 def pieces(text: Text, style: NumberStyle) -> Iterator[Text]:
@@ -56,14 +57,28 @@ def _cut(chars: str, start: int, style: NumberStyle) -> int | None:
         for m in find_measures(chars[low - _OVERLAP : high + _OVERLAP], style)
     )
     for separator in _SEPARATORS:
-        last: int | None = None
-        for found in separator.finditer(chars, low, high):
-            at = found.end()
-            if not any(first < at < end for first, end in measures.meeting(at - 1, at + 1)):
-                last = at
-        if last is not None:
+        if (last := _last(separator, chars, low, high, measures)) is not None:
+            return last
+    for first, _ in measures.meeting(low + _OVERLAP, high):
+        lead = _LEAD.search(chars, first - _OVERLAP // 2, first)
+        if lead is not None and chars[lead.start() - 1].isspace():
+            return lead.start()
+    for separator in _LAST_RESORT:
+        if (last := _last(separator, chars, low, high, measures)) is not None:
             return last
     return _next_space(chars, high)
+
+
+def _last(
+    separator: re.Pattern[str], chars: str, low: int, high: int, measures: Stretches
+) -> int | None:
+    """Where the last separator ends that stands in no quantity."""
+    last: int | None = None
+    for found in separator.finditer(chars, low, high):
+        at = found.end()
+        if not any(first < at < end for first, end in measures.meeting(at - 1, at + 1)):
+            last = at
+    return last
 
 
 def _next_space(chars: str, start: int) -> int | None:
