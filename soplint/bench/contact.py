@@ -58,14 +58,16 @@ def pairs(bench: Bench) -> tuple[int, int]:
     A pair counts as assessed when a row of the table names the classes of both, whether it
     speaks or not.  Water is no partner.
     """
+    rows = {(p.first, p.second) for p in pairs_table()}
     assessed = left = 0
     for vessel in vessels(bench):
         things = {c.key: c for c in vessel.contents if not c.water}
-        for one, other in combinations(things.values(), 2):
-            if any(_of(p, one, other) or _of(p, other, one) for p in pairs_table()):
-                assessed += 1
-            else:
-                left += 1
+        both = sum(
+            any((a, b) in rows or (b, a) in rows for a in one.classes for b in other.classes)
+            for one, other in combinations([c for c in things.values() if c.classes], 2)
+        )
+        assessed += both
+        left += len(things) * (len(things) - 1) // 2 - both
     return assessed, left
 
 
@@ -80,7 +82,8 @@ def _of(pair: Pair, one: Content, other: Content) -> bool:
 
 def _contacts(vessel: Vessel) -> Iterator[Contact]:
     seen: set[tuple[str, str, str]] = set()
-    held = [c for c in vessel.contents if c.classes]
+    # the same thing added again and again meets the others once
+    held = list({(c.key, c.stream, c.origin): c for c in vessel.contents if c.classes}.values())
     present = frozenset(k for c in held for k in c.classes)
     for pair in pairs_table():
         if not {pair.first, pair.second} <= present or (pair.third and pair.third not in present):

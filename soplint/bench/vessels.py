@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator
 from dataclasses import dataclass, field
+from functools import lru_cache
 from typing import TYPE_CHECKING
 
 from soplint.bench.contents import Content, contents_of
@@ -205,9 +206,9 @@ class Walker:
         """The vessel that the sentence fills."""
         chars = sentence.text.chars
         if _JOIN.search(chars):
-            for other in self.vessels:
+            for other in self.vessels[-_MOST:]:
                 if other.section == self.section and other is not vessel:
-                    vessel.contents = other.contents + vessel.contents
+                    vessel.contents = (other.contents + vessel.contents)[:_MOST]
             return vessel
         if not vessel.contents:
             return vessel
@@ -289,8 +290,8 @@ class Walker:
         if isinstance(thing, Dose) and thing.amount.dimension == "amount":
             if thing.material is None or thing.material.match is None:
                 return  # "neutralises 2.5 mol of acid": a load, nothing that is added
-        for content in contents_of(text, thing, self.step, self.bench.facts, order):
-            vessel.contents.append(content)
+        if len(vessel.contents) < _MOST:
+            vessel.contents.extend(contents_of(text, thing, self.step, self.bench.facts, order))
 
     def _made(self, text: Text, phrase: ToVolume, vessel: Vessel, order: int) -> None:
         if phrase.volume is not None:
@@ -318,6 +319,8 @@ class Walker:
         if {"WASH", "STORE", "TITRATE"} & sentence.kinds:
             return
         text = sentence.text
+        if len(vessel.contents) >= _MOST:
+            return
         held = [(c.start, c.end) for c in vessel.contents if c.text is text]
         for content in things_in(text, 0, len(text.chars), self.step, loose=False):
             inside = any(a < content.end and content.start < b for a, b in held)
@@ -359,19 +362,20 @@ class Walker:
                     added = [c for c in added if not phrase.start <= c.start < phrase.end] + found
         if not any(c.classes for c in added):
             added.extend(self._meant(text, start, end, vessel))
-        container.contents.extend(added)
+        container.contents.extend(added[: max(0, _MOST - len(container.contents))])
 
     def _meant(self, text: Text, start: int, end: int, vessel: Vessel) -> Iterator[Content]:
         """The contents of the vessel that "the lysate" or "the residues" stand for."""
         words = text.chars[start:end].lower()
-        found = _named(words, self.vessels)
+        recent = self.vessels[-_MOST:]
+        found = _named(words, recent)
         grave = False
         if not found and _GENERIC.search(words):
             if not self.waste or vessel.contents:
-                same = [v for v in self.vessels if v.section == self.section and v.contents]
+                same = [v for v in recent if v.section == self.section and v.contents]
                 found = same
             if not found:
-                found, grave = [v for v in self.vessels if v.contents], True
+                found, grave = [v for v in recent if v.contents], True
         seen: set[str] = set()
         for number, source in enumerate(found, 1):
             neutral = source.ph is not None and source.ph >= _NEUTRAL
@@ -406,6 +410,7 @@ class Walker:
         self._open(self.heading)
 
 
+_MOST = 120  # contents of one vessel, and vessels looked back at: more is no procedure
 _NEUTRAL = 5.0  # pH from which a mixture is no acid for the waste
 _ACIDS = {"acid", "strong-acid"}
 _GRAVE = {"azide", "cyanide", "sulfide", "hypochlorite"}
@@ -424,13 +429,13 @@ _PLAIN = {
 
 def _named(words: str, vessels: list[Vessel]) -> list[Vessel]:
     """Vessels whose name shares a telling word with a text: "lysate" and "Lysis buffer"."""
-    stems = {_stem(w) for w in _STEM.findall(words) if w not in _PLAIN}
-    return [
-        v
-        for v in vessels
-        if v.contents
-        and stems & {_stem(w) for w in _STEM.findall(v.name.lower()) if w not in _PLAIN}
-    ]
+    stems = _stems(words)
+    return [v for v in vessels if v.contents and stems & _stems(v.name.lower())] if stems else []
+
+
+@lru_cache(maxsize=512)
+def _stems(words: str) -> frozenset[str]:
+    return frozenset(_stem(w) for w in _STEM.findall(words[:400]) if w not in _PLAIN)
 
 
 def _stem(word: str) -> str:

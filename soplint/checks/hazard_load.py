@@ -47,6 +47,8 @@ class Load:
 
 def loads(bench: Bench) -> Iterator[Load]:
     """Statements "210 g of hydrogen carbonate. This is the amount for 2.5 mol of acid"."""
+    if not any(_load(sentence) for read in bench.blocks for sentence in read.sentences):
+        return
     held: list[tuple[Stated, Substance, float]] = []
     open_load: tuple[Stated, str, tuple[float, ...]] | None = None
     for read in bench.blocks:
@@ -129,8 +131,10 @@ def neutraliser_meets_load(bench: Bench) -> Iterator[Judgement]:
         value = load.dose.measure.base / ratio / scale
         computed = Interval(value, load.dose.measure.unit, 0.97 * value, 1.03 * value)
         if abs(ratio - 1) <= _AGREES:
-            bench.ledger.agree(load.load, None, working, "hazards.neutraliser-meets-load")
-            bench.ledger.agree(load.dose, computed, working, "hazards.neutraliser-meets-load")
+            mol = load.load.measure.nominal * ratio
+            of_load = Interval(mol, load.load.measure.unit, 0.97 * mol, 1.03 * mol)
+            bench.ledger.agree(load.load, of_load, working)
+            bench.ledger.agree(load.dose, computed, working)
             continue
         yield _misses(load, ratio, value, working, computed)
 

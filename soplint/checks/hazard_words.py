@@ -98,6 +98,17 @@ def absence(bench: Bench, against: re.Pattern[str] | None = None) -> str:
     return "remark"
 
 
+_WHOLE = 3  # headings; a text with fewer is a recipe or an excerpt of a procedure
+
+
+def excerpt(bench: Bench) -> bool:
+    """Whether a text is too short a piece for what it leaves out to mean anything."""
+    heads = [read.block for read in bench.blocks if read.block.kind == "heading" or read.block.bold]
+    if any(_SAFETY.search(head.text.chars) for head in heads):
+        return False
+    return sum(head.kind == "heading" for head in heads) < _WHOLE
+
+
 def hazard(
     rule: str,
     severity: str,
