@@ -169,7 +169,9 @@ def _values(read: Arithmetic, result: Measure) -> tuple[list[float], list[float]
     powers = product((-1, 0, 1), repeat=len(read.conversions))
     factors = {prod(c**p for c, p in zip(read.conversions, ps, strict=True)) for ps in powers}
     strict = [plain * factor for factor in factors]
-    return strict, [value.number] if not result.unit else []
+    decimal = abs(log10(scale) - round(log10(scale))) < 1e-6
+    converts = not result.unit or (not decimal and result.dimension != "time")  # kg × 2.2 = lb
+    return strict, [value.number] if converts else []
 
 
 def _half(value: float, result: Measure) -> float:
@@ -184,6 +186,8 @@ def _doubtful(read: Arithmetic, result: Measure) -> bool:
     """Figures that need not be arithmetic: dates, ranges, numbers of documents, ratios of parts."""
     if read.tight_minus and not read.has_bracket:
         return True
+    if result.dimension in ("length", "area") and not read.has_unit:
+        return True  # "150 × 4.6" is the size of a column
     if read.has_unit or read.has_percent or any(read.places):
         return False
     numbers = read.numbers

@@ -17,7 +17,11 @@ from soplint.checks.telling import about_passage, about_ph, about_quantity
 from soplint.checks.wording import computed_text, judgement
 from soplint.findings.model import Interval
 
-_LITTLE, _MUCH = 0.002, 0.01  # adjuster as a share of the final volume (common practice, no source)
+_LITTLE, _MUCH, _GRAVE = (
+    0.002,
+    0.01,
+    0.05,
+)  # adjuster as a share of the final volume (common practice, no source)
 _CORRECTION = re.compile(
     r"\b(?:drops?|if (?:it|necessary|needed|required|the)|small|fine|final adjustment|trim|slight"
     r"|correct\w*|re-?adjust\w*|check\w*|verif\w*|confirm\w*|minor|as (?:needed|required))\b",
@@ -66,7 +70,7 @@ def ph_set_before_mark(bench: Bench) -> Iterator[Judgement]:
         if len(setting.adjusters) > 1 and shares[1] <= _MUCH:
             continue  # acid or base: the recipe is right, the last hundredths are trimmed
         least, usual = shares
-        grade = "major" if least > _MUCH else "minor"
+        grade = "major" if least > _GRAVE else "minor" if usual > _MUCH else "remark"
         percent = (
             f"{100 * least:.2g} to {100 * usual:.2g}" if least != usual else f"{100 * usual:.2g}"
         )

@@ -22,6 +22,7 @@ from soplint.intake.model import Text
 
 SILENT = 15.0  # K: below this rise the rules say nothing (issue of the hazards, no source)
 _BOILS = 80.0  # K above 20 °C
+_BURNS = 40.0  # °C above room temperature: what is touched burns (common practice, no source)
 _WATER = 18.015
 _SOLUTES = ("H2SO4", "NaOH", "KOH", "HCl")
 
@@ -101,7 +102,9 @@ def heat_of_dilution(bench: Bench) -> Iterator[Judgement]:
             if _careful(bench, vessel):
                 break
             # a list of parts states no steps: it asks for the wording only
-            grade = "major" if vessel.kind == "steps" else "remark"
+            grade = "remark"
+            if vessel.kind == "steps":
+                grade = "major" if rise >= _BURNS else "minor"
             yield at(
                 "hazards.heat-of-dilution-controlled",
                 grade,

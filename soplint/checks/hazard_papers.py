@@ -8,7 +8,16 @@ from collections.abc import Iterator
 from soplint.bench import Bench, Stated
 from soplint.bench.contents import Content
 from soplint.bench.vessels import vessels
-from soplint.checks.hazard_words import ELSEWHERE, absence, at, hazard, place, plain, protection
+from soplint.checks.hazard_words import (
+    ELSEWHERE,
+    absence,
+    at,
+    excerpt,
+    hazard,
+    place,
+    plain,
+    protection,
+)
 from soplint.checks.registry import Judgement, rule
 
 _FATAL = {"H300", "H310", "H330"}
@@ -45,7 +54,7 @@ def _strong(content: Content) -> bool:
 def protection_named(bench: Bench) -> Iterator[Judgement]:
     """A text that uses corrosive or deadly substances names protective equipment."""
     shield = protection(bench)
-    if shield.wear or ELSEWHERE.search(shield.words) or shield.hood:
+    if shield.wear or ELSEWHERE.search(shield.words) or shield.hood or excerpt(bench):
         return
     for content in _used(bench):
         substance = content.substance

@@ -9,7 +9,17 @@ from soplint.bench import Bench
 from soplint.bench.contents import Content
 from soplint.bench.streams import asides, things_in
 from soplint.bench.vessels import Vessel, vessels
-from soplint.checks.hazard_words import HOOD, absence, at, hazard, place, plain, protection
+from soplint.checks.hazard_words import (
+    HOOD,
+    absence,
+    at,
+    excerpt,
+    hazard,
+    place,
+    plain,
+    protection,
+    said,
+)
 from soplint.checks.registry import Judgement, rule
 from soplint.notation.phrases import Dose, Material, Sentence
 from soplint.substances.model import Substance
@@ -239,7 +249,8 @@ _LITTLE = 0.005  # L: less than this says nothing
 @rule("hazards.volatile-in-fume-cupboard")
 def volatile_in_cupboard(bench: Bench) -> Iterator[Judgement]:
     """Concentrated volatile acids and ammonia are handled in a fume cupboard."""
-    if HOOD.search(protection(bench).words):
+    words = protection(bench).words
+    if HOOD.search(words) or (excerpt(bench) and not said(_ON_BENCH, words)):
         return
     for vessel in vessels(bench):
         for content in vessel.contents:
