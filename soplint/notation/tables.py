@@ -15,6 +15,7 @@ from soplint.intake.model import Table, Text
 from soplint.notation.bare_units import bare_units
 from soplint.notation.cells import Cell, read_cell
 from soplint.notation.columns import columns
+from soplint.notation.composition_rows import ComposedBuilder, composed
 from soplint.notation.headings import Heading, read_heading
 from soplint.notation.joined import SEPARATOR, join, sentence_of
 from soplint.notation.layout import Layout, layout
@@ -74,7 +75,8 @@ def read_table(
         headings, first = sunk, 1
     else:
         first = 0
-    found = layout(columns(headings, cells[first:], reading), table.caption)
+    sorted_columns = columns(headings, cells[first:], reading)
+    found = composed(sorted_columns) or layout(sorted_columns, table.caption)
     if found.kind == "other":
         return _other(table, head, body, reading, block, strict)
     notes = tuple(
@@ -114,6 +116,10 @@ def _read(
     if found.kind == "prose":
         read = ProseBuilder(found, reading, block, strict)
         rows = tuple(read.row(t, c) for t, c in zip(texts, cells, strict=True))
+        return RecipeTable((), notes + rows, head, table.caption, "list")
+    if found.kind == "composed":
+        by_amount = ComposedBuilder(found, reading, block, strict)
+        rows = tuple(r for b, c in zip(body, cells, strict=True) for r in by_amount.rows(b, c))
         return RecipeTable((), notes + rows, head, table.caption, "list")
     if found.kind == "preparations" and found.name is None:
         by_row = PreparationBuilder(found, reading, block, strict, drawn_from(context, reading))
