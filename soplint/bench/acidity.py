@@ -27,7 +27,10 @@ BUFFER_SUBSTANCES = {
     *("caps", "capso", "taps", "tapso", "aces", "ada", "bis-tris", "epps", "heppso", "dipso"),
     *("ampso", "amp", "ampd", "bis-tris propane", "cacodylate", "glycylglycine"),
 }
-NO_BUFFERS = {"edta", "azide", "fluoride", "sulfate", "calcium hydroxide ion pair", "hypochlorite"}
+NO_BUFFERS = {
+    *("edta", "azide", "fluoride", "sulfate", "calcium hydroxide ion pair", "hypochlorite"),
+    *("cyanide", "sulfide"),  # kept alkaline so that no gas is set free
+}
 
 
 @dataclass(frozen=True, slots=True)

@@ -272,6 +272,8 @@ def _volumes(
         if mass is not None:
             yield FinalVolume(mass, EXACT, "weighed", None)
             return
+        if target.stated.measure.basis == "w/w" and _other_solvent(preparation):
+            return  # the density of the mixture is not known
     strong = volume is not None and volume.provenance not in ("weak", "sum", "heading")
     strong = strong and not any(share.taken.late for share in chosen)
     if volume is not None:
@@ -312,6 +314,19 @@ def _volumes(
             )
             if added:
                 yield replace(local, litres=local.litres + added)
+
+
+def _other_solvent(preparation: Preparation) -> bool:
+    """Whether a good part of the liquid is another solvent than water."""
+    poured = [t.dose for t in preparation.taken if t.dose.amount.dimension == "volume"]
+    total = sum(dose.amount.base for dose in poured)
+    return any(
+        dose.material is not None
+        and not dose.material.is_water
+        and any(s.state == "liquid" for s in candidates(dose.material))
+        and dose.amount.base > 0.2 * total
+        for dose in poured
+    )
 
 
 def _total_mass(preparation: Preparation) -> float | None:
