@@ -260,7 +260,7 @@ _CLOSES = re.compile(
     r"\b(?:cap|caps|capped|close|closed|closing|seal|sealed|stopper|stoppered)\b"
     r"[^.;]{0,40}?\b(?:tight|tightly|firmly|hermetically|it|bottle|vessel|flask|tube|vial|jar|cap|lid)\b"
     r"|\b(?:and|then)\s+(?:cap|close|seal|stopper)\s*(?=[.,;]|$)"
-    r"|\btightly (?:closed|capped|sealed)\b|\bclosed (?:bottle|flask|tube|vessel|container)\b",
+    r"|\bcrimp\w*\b|\btightly (?:closed|capped|sealed)\b|\bclosed (?:bottle|flask|tube|vessel|container)\b",
     re.IGNORECASE,
 )
 _VENTS = re.compile(

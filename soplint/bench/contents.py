@@ -88,7 +88,8 @@ def contents_of(
         dose.start,
         dose.end,
         material.words,
-        classes_of(substance) if substance is not None else _by_words(material.words),
+        (classes_of(substance) if substance is not None else _by_words(material.words))
+        | _by_ph(material),
         substance,
         best.moles if best is not None else None,
         grams,
@@ -99,6 +100,15 @@ def contents_of(
 
 
 _LABEL = re.compile(r"\bHF-|-HF\b")  # a catalogue number, no acid
+
+
+_ACID_LABEL = 5.5  # label pH below which a buffer counts as an acid
+
+
+def _by_ph(material: Material) -> frozenset[str]:
+    """ "Acetate buffer pH 4.5" is an acid to what is added."""
+    sour = material.ph is not None and material.ph.nominal < _ACID_LABEL
+    return frozenset({"acid"} if sour else ())
 
 
 def _by_words(words: str) -> frozenset[str]:

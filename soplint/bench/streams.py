@@ -48,7 +48,7 @@ _DISCARDS = re.compile(r"\b(?:discard|collect|empt|dispos|tip|pour)\w*", re.IGNO
 _WASTE = re.compile(r"\bwaste|\bcan\b|\bdrum\b|\bbin\b|\bstream\b", re.IGNORECASE)
 # A clause that warns, forbids or keeps apart is no action.
 _WARNS = re.compile(
-    r"\b(?:never|not|don't|cannot|without|avoid|no|nothing|none|neither|nor|away|apart|separate(?:ly)?"
+    r"\b(?:never|not|don't|cannot|without|avoid|no|nothing|none|neither|nor|away from|kept? away|stay away|apart|separate(?:ly)?"
     r"|instead of|rather than|free of|keep .{0,40}\bout\b|forbidden|prohibited|different|opposite"
     r"|other side|far from|sets free|instead|otherwise|nie|kein\w*|nicht)\b",
     re.IGNORECASE,

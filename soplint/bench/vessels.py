@@ -234,6 +234,10 @@ class Walker:
     ) -> None:
         chars = sentence.text.chars
         commanded = bool(_BRINGS & sentence.kinds) or bool(_BY_HAND.search(chars))
+        step = read.block.ordered or read.block.number is not None
+        if step and "USE" in sentence.kinds and not {"WASH", "STORE", "TITRATE"} & sentence.kinds:
+            # "Collect the medium in the tub with 500 mL of bleach": the liquid waits in it
+            commanded = commanded or any(d.role in ("with", "in") for d in _doses(sentence))
         recipe = read.block.kind == "item" and not read.block.ordered and bool(_doses(sentence))
         if recipe and not commanded:
             vessel.kind = "list"
@@ -290,6 +294,9 @@ class Walker:
         if isinstance(thing, Dose) and thing.amount.dimension == "amount":
             if thing.material is None or thing.material.match is None:
                 return  # "neutralises 2.5 mol of acid": a load, nothing that is added
+        material = thing.material if isinstance(thing, Dose) else thing
+        if vessel.ph is None and isinstance(thing, Dose) and material is not None and material.ph:
+            vessel.ph = material.ph.nominal  # the label pH of a buffer
         if len(vessel.contents) < _MOST:
             vessel.contents.extend(contents_of(text, thing, self.step, self.bench.facts, order))
 

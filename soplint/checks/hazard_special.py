@@ -6,8 +6,8 @@ import re
 from collections.abc import Iterator
 
 from soplint.bench import Bench
-from soplint.bench.contents import Content
 from soplint.bench.contact import HOT
+from soplint.bench.contents import Content
 from soplint.bench.hazard_tables import classes_of
 from soplint.bench.streams import asides
 from soplint.bench.vessels import Vessel, vessels
