@@ -56,11 +56,11 @@ def _read_block(text: Text, reading: Reading, index: int, strict: bool) -> Itera
 
     pieces = [piece for sentence in sentences(text) for piece in cut(sentence, reading.style)]
     for number, piece in enumerate(pieces):
-        both = led(piece, read)
+        sentence = read(piece, number == 0)
+        both = led(sentence, read)
         if both is not None:
             yield from both
             continue
-        sentence = read(piece, number == 0)
         if number + 1 < len(pieces) and opens_batch(sentence, pieces[number + 1]):
             sentence = replace(sentence, leads=True)
         yield sentence

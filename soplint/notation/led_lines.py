@@ -36,29 +36,30 @@ _PER = re.compile(r",?\s*\b(?:per|/)\s*(?:1\s*)?(l|litre|liter)\b[\s.;)]*$", re.
 _BATCH = re.compile(r"(?:for|per|to make)(?: (?!of\b)[^\s:]{1,15}){1,3}:", re.IGNORECASE)
 _PARTS = re.compile(r";\s+(?=\S)")
 _AIMS = frozenset({"PREPARE", "DILUTE"})
+_DOSED = ("mass", "volume", "amount", "count")
 _TAKEN = ("mass", "volume", "amount")
 
 
-def led(text: Text, read: Read) -> list[Sentence] | None:
+def led(whole: Sentence, read: Read) -> list[Sentence] | None:
     """The title and the recipe of a line, or of each part of it between semicolons.
 
     Args:
-        text: one sentence of the document.
+        whole: one sentence of the document, read as it stands.
         read: reads a text into a sentence.
 
     Returns:
         Sentences of which those that ``lead`` are titles of the sentences behind them; None for a
         line that is no such recipe.
     """
-    if len(text.chars) < 8 or not any(c.isdigit() for c in text.chars):
+    text = whole.text
+    if len(whole.measures) < 2:
         return None
     cuts = [0, *(match.end() for match in _PARTS.finditer(text.chars)), len(text.chars)]
     if 2 < len(cuts) <= 12:
-        parts = [text.piece(a, b) for a, b in zip(cuts, cuts[1:], strict=False)]
-        found = [_led(part, read) for part in parts]
+        found = [_led(whole, a, b, read) for a, b in zip(cuts, cuts[1:], strict=False)]
         if all(pair is not None for pair in found):
             return [sentence for pair in found for sentence in pair or ()]
-    return _led(text, read)
+    return _led(whole, 0, len(text.chars), read)
 
 
 def opens_batch(first: Sentence, second: Text) -> bool:
@@ -67,9 +68,10 @@ def opens_batch(first: Sentence, second: Text) -> bool:
     return _BATCH.match(second.chars) is not None and not told and _is_title(first)
 
 
-def _led(text: Text, read: Read) -> list[Sentence] | None:
+def _led(whole: Sentence, start: int, end: int, read: Read) -> list[Sentence] | None:
+    text = whole.text.piece(start, end)
     for before, body in _divisions(text):
-        if not any(c.isdigit() for c in before.chars) or len(before.chars) > _TITLE:
+        if not _may_divide(whole, start, start + len(before.chars), end):
             continue
         title = _for_a_litre(read(before))
         if not _is_title(title):
@@ -78,6 +80,19 @@ def _led(text: Text, read: Read) -> list[Sentence] | None:
         if _is_recipe(recipe) or (_has_volume(title) and _takes_any(recipe)):
             return [replace(title, leads=True), _named_after(title, recipe)]
     return None
+
+
+def _may_divide(whole: Sentence, start: int, cut: int, end: int) -> bool:
+    """Whether quantities and commands leave it open that a title ends at ``cut``: a quick test."""
+    if cut - start > _TITLE:
+        return False
+    aims = any(start <= m.start and m.end <= cut for m in whole.measures)
+    taken = any(cut <= m.start and m.end <= end and m.dimension in _DOSED for m in whole.measures)
+    done = any(
+        isinstance(p, Command) and p.kind not in _AIMS and start <= p.start and p.end <= cut
+        for p in whole.phrases
+    )
+    return aims and taken and not done
 
 
 def _named_after(title: Sentence, recipe: Sentence) -> Sentence:
