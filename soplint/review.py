@@ -12,7 +12,6 @@ from soplint.intake import Document, read_bytes
 from soplint.notation.document import read_document
 from soplint.settings import Settings
 
-
 DEFAULT = Settings()
 
 

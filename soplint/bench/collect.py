@@ -304,14 +304,16 @@ class Collector:
         """ "..., 0.5 mg/mL; 5.0 mL of this to 50.0 mL": the solution just made is diluted."""
         if dose.amount.dimension != "volume" or self.closed:
             return False
-        if not any(taken.solvent for taken in self.current.taken):
-            return False
         if dose.material is None:
-            this = _OF_THIS.match(sentence.text.chars, dose.amount.end)
-            return this is not None and bool(self.current.claimed)
-        weighed = any(t.dose.amount.dimension == "mass" for t in self.current.taken)
-        the_stock = dose.material.solution and not tokens(dose.material.words)
-        return weighed and the_stock and command == "DILUTE"
+            if not self.current.claimed or not _OF_THIS.match(sentence.text.chars, dose.amount.end):
+                return False
+        else:
+            the_stock = dose.material.solution and not tokens(dose.material.words)
+            if command != "DILUTE" or not the_stock:
+                return False
+            if not any(t.dose.amount.dimension == "mass" for t in self.current.taken):
+                return False
+        return any(taken.solvent for taken in self.current.taken)
 
     def _already_taken(self, sentence: Sentence) -> bool:
         """Whether this sentence has taken something: what it "obtains" is the result."""

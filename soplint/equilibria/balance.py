@@ -61,6 +61,8 @@ def _newton(problem: Problem, x: float, strength: float) -> Root | None:
         root = sqrt(strength)
         bottom = 1.0 + ION_SIZE * root
         p, n, s, px, nx, sx, pd, nd, sd = plain_sums(problem, x, problem.slope * root / bottom)
+        if p <= 0.0 or n <= 0.0:
+            return None
         f = log(p / n)
         r = 0.5 * s - strength
         by_strength = 0.5 * problem.slope / (root * bottom * bottom) * LN10

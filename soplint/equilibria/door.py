@@ -113,6 +113,10 @@ def henry_co2(temperature: float) -> float:
     return float(10.0 ** (exponent + 669365.0 / kelvin**2))
 
 
+# mol/L; twelve orders below the ions of water, so no pH shows it, and logarithms stay finite.
+_NOTHING = 1e-20
+
+
 def solve_systems(
     totals: Mapping[str, float],
     strong: Mapping[str, float],
@@ -142,8 +146,8 @@ def solve_systems(
         if ion not in charges:
             raise EquilibriumError(f"no strong ion named {ion!r}", ion)
     scale = 1.0 / density(temperature) if basis == "mol/L" else 1.0
-    totals = {name: scale * value for name, value in totals.items() if value > 0.0}
-    strong = {ion: scale * value for ion, value in strong.items() if value > 0.0}
+    totals = {name: scale * value for name, value in totals.items() if value > _NOTHING}
+    strong = {ion: scale * value for ion, value in strong.items() if value > _NOTHING}
     held = None
     if co2_pressure is not None:
         held = {"carbonate": henry_co2(temperature) * check_amount("CO2", co2_pressure)}

@@ -326,8 +326,7 @@ READINGS = {
         "## Potassium hydroxide, 1.00 mol/L\n\nDissolve 66.0 g of potassium hydroxide (85 %) and make up to 1 L.\n",
         "66.0 g", "agrees", None),
 }  # fmt: skip
-READINGS_OPEN = {
-}
+READINGS_OPEN = {}
 
 
 def named(cases, reasons):

@@ -70,10 +70,8 @@ LEAKS = {name: body for (name, kind), body in cases("leaks.txt") if kind == "vol
 STRENGTH_LEAKS = {name: body for (name, kind), body in cases("leaks.txt") if kind == "strength"}
 
 # Layouts that do not come out yet: which of the three tests below fail, and why.
-OPEN: dict[str, tuple[str, frozenset[str]]] = {
-}
-OPEN_LEAKS = {
-}
+OPEN: dict[str, tuple[str, frozenset[str]]] = {}
+OPEN_LEAKS = {}
 
 
 def _marks(name: str, *tests: str):

@@ -154,9 +154,6 @@ def test_enormous_and_odd_numbers(number, pattern):
     reviewed(PATTERNS[pattern].replace("{n}", number), "a.sop")
 
 
-@pytest.mark.xfail(
-    strict=True, raises=ZeroDivisionError, reason="facts._fits divides by the fold of a solution"
-)
 def test_fold_of_nothing():
     reviewed(
         "## 0x buffer, 100 mL\n\n- 5 g of NaCl\n\n## 1x buffer, 1 L\n\n"

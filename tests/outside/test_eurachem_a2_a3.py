@@ -132,10 +132,6 @@ def test_review_finds_a_wrong_worked_example(review, found_at):
     assert found_at(review(A2.format(**{**A2_RIGHT, "c": "0.12014"})), LINES["c"])
 
 
-@pytest.mark.xfail(
-    strict=True,
-    reason="the titrant of a sentence with 'consumes' is taken as a dose of the flask's contents",
-)
 def test_the_titrant_consumed_is_no_ingredient(review, grave):
     reviewed = review(
         "## Titration\n\n"
