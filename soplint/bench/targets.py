@@ -64,7 +64,24 @@ def _speaks_of_results(chars: str) -> bool:
 def _title_counts(preparation: Preparation) -> bool:
     """A document's title speaks of a preparation only where there is just one."""
     assert preparation.title is not None
+    if _uses_the_titled(preparation):
+        return False
     return preparation.title.source != "document" or preparation.sole
+
+
+def _uses_the_titled(preparation: Preparation) -> bool:
+    """ "Stock of each acid, 20 mL: ..., 1 mL of each stock to 25 mL": the second is no stock."""
+    title, volume = preparation.title, preparation.volume
+    if title is None or title.volume is None or volume is None or volume.provenance != "made-up":
+        return False
+    batch = title.volume.measure.base
+    if not batch or abs(volume.litres / batch - 1) < 0.03:
+        return False
+    named = [t.dose.material for t in preparation.taken if t.dose.material is not None]
+    return any(
+        m.solution and m.match is None and m.words and m.words.lower() in title.words.lower()
+        for m in named
+    )
 
 
 def _finals(taken: Taken) -> Iterator[Target]:
