@@ -83,6 +83,7 @@ _TITRATED = re.compile(
     r"\b(?:consumes?|is consumed by|uses up|(?:is )?neutrali[sz](?:es|ed by))\s+(?:about\s+)?\d",
     re.IGNORECASE,
 )
+_AT_FOLD = re.compile(r"\W*(?:final\s+|at\s+)?\d+(?:\.\d+)?\s?[x×X]\s*(?:[:=]|is\b)", re.IGNORECASE)
 _CLAUSE = re.compile(r"[;:(]|\.\s")
 _AT = re.compile(r"\W*(?:at|in|for|@)\s+(?:the\s+)?$", re.IGNORECASE)
 
@@ -214,6 +215,8 @@ class Collector:
             self.equivalents.append((sentence, phrase))
         elif isinstance(phrase, Material):
             self._mention(phrase)
+            if self._at_a_fold(sentence, phrase):
+                return
             if command == "PREPARE" and self._already_taken(sentence):
                 self._obtained(text, phrase)
                 return
@@ -289,6 +292,19 @@ class Collector:
             self._begin_after_make_up(taken, command)
         else:
             self.pending.append(taken)
+
+    def _at_a_fold(self, sentence: Sentence, material: Material) -> bool:
+        """ "1x = 25 mM Tris, 192 mM glycine": what the solution holds when it is diluted."""
+        if not _AT_FOLD.match(sentence.text.chars) or material.match is None:
+            return False
+        folds = [m for m in sentence.measures if m.dimension == "fold"]
+        if len(folds) != 1 or any(isinstance(p, (Dose, ToVolume)) for p in sentence.phrases):
+            return False
+        for strength in material.strengths:
+            if strength.dimension != "fold":
+                claim = Claim(strength.start, material.end, strength, material)
+                self.current.claimed.append(Claimed(sentence.text, claim, self.step, folds[0]))
+        return True
 
     def _is_the_batch(self, dose: Dose) -> bool:
         """ "(250 mL): 45.4 g ... in 180 mL water, HCl to 8.8, then 250 mL": the volume it is for."""

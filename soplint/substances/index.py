@@ -27,6 +27,17 @@ from .words import Line, Names
 _BEFORE = {
     "anhydrous": "anhydrous",
     "anhyd": "anhydrous",
+    **dict.fromkeys(
+        (
+            "wasserfrei",
+            "wasserfreie",
+            "wasserfreies",
+            "wasserfreier",
+            "wasserfreien",
+            "wasserfreiem",
+        ),
+        "anhydrous",
+    ),
     "conc": "concentrated",
     "concd": "concentrated",
     "concentrated": "concentrated",
