@@ -6,9 +6,10 @@ from collections.abc import Iterator
 from dataclasses import replace
 
 from soplint.bench import Bench, Relation
-from soplint.bench.acidity import exchanged_ph, reach_of
+from soplint.bench.acidity import exchanged_ph, mixtures, reach_of
 from soplint.bench.numbers import shown
-from soplint.bench.preparation import Stated
+from soplint.bench.preparation import Preparation, Stated
+from soplint.bench.remedies import amounts_for, pairs_in_range, systems_of
 from soplint.causes import Cause
 from soplint.checks.registry import Disagreement, Judgement, rule
 from soplint.checks.wording import judgement
@@ -108,6 +109,7 @@ def _judgement(
     finding = replace(
         made.finding,
         computed=f"pH {worst.computed.value:.2f}",
+        working=f"{made.finding.working}{_amounts(bench, worst)}",
         related=also + made.finding.related,
     )
     more = tuple(Disagreement(r.tested, r.computed, r.working) for r in others)
@@ -117,6 +119,37 @@ def _judgement(
 def _reached(bench: Bench, stated: Stated) -> bool:
     """Whether the contents give the pH that is stated: a reference buffer need not hold much."""
     return any(r.kind == "ph" and r.agrees and r.tested.key == stated.key for r in bench.relations)
+
+
+def _amounts(bench: Bench, relation: Relation) -> str:
+    """The amounts of the pair that give the stated pH at the strength that is there."""
+    preparation = relation.preparation
+    if preparation is None or preparation.volume is None:
+        return ""
+    order = bench.preparations.index(preparation)
+    for mixture in mixtures(preparation, bench.facts, order):
+        systems = systems_of(mixture.contents)
+        if len(systems) != 1:
+            return ""
+        system, strength = next(iter(systems.items()))
+        ph, litres = relation.tested.measure.nominal, preparation.volume.litres
+        amounts = amounts_for(system, ph, strength, litres, 25.0)
+        return f"; for pH {ph:g} at this strength: {amounts}" if amounts else ""
+    return ""
+
+
+def _instead(preparation: Preparation, ph: float, degrees: float) -> str:
+    """Pairs in range of a pH, with the amounts for the stated strength."""
+    title, volume = preparation.title, preparation.volume
+    molar = [
+        t.stated.measure.base
+        for t in (title.targets if title is not None else ())
+        if t.stated.measure.dimension == "molarity"
+    ]
+    if not molar or volume is None:
+        return ""
+    pairs = pairs_in_range(ph, molar[0], volume.litres, degrees)
+    return f"; in range of pH {ph:g}: {pairs}" if pairs else ""
 
 
 @rule("buffers.target-near-pka")
@@ -135,6 +168,7 @@ def target_near_pka(bench: Bench) -> Iterator[Judgement]:
             f"pKa' of {reach.system} = {reach.pka:.2f} at {reach.temperature:g} °C and ionic strength"
             f" {reach.strength:.2g} mol/kg; |{measure.nominal:g} − {reach.pka:.2f}|"
             f" = {reach.distance:.2f}; base : acid = {share:.3g} : 1"
+            f"{_instead(preparation, measure.nominal, reach.temperature)}"
         )
         low, high = reach.pka - _RANGE, reach.pka + _RANGE
         finding = Finding(
