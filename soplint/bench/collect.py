@@ -83,6 +83,18 @@ _TITRATED = re.compile(
     r"\b(?:consumes?|is consumed by|uses up|(?:is )?neutrali[sz](?:es|ed by))\s+(?:about\s+)?\d",
     re.IGNORECASE,
 )
+
+
+def _diluted_for_use(sentence: Sentence, claim: Claim) -> bool:
+    """Whether a dilution stands before a claim in a sentence that takes nothing itself."""
+    if any(isinstance(p, (Dose, ToVolume)) for p in sentence.phrases):
+        return False
+    return any(
+        m.dimension == "ratio" and len(m.parts) == 2 and m.end <= claim.measure.start
+        for m in sentence.measures
+    )
+
+
 _AT_FOLD = re.compile(r"\W*(?:final\s+|at\s+)?\d+(?:\.\d+)?\s?[x×X]\s*(?:[:=]|is\b)", re.IGNORECASE)
 _CLAUSE = re.compile(r"[;:(]|\.\s")
 _AT = re.compile(r"\W*(?:at|in|for|@)\s+(?:the\s+)?$", re.IGNORECASE)
@@ -202,6 +214,8 @@ class Collector:
             self.current.adjusted.append(Adjusted(text, phrase, self.step, self.closed))
         elif isinstance(phrase, Claim) and self._of_another(sentence, command):
             pass  # "for use dilute 1:5 to 50 mM" speaks of another solution
+        elif isinstance(phrase, Claim) and _diluted_for_use(sentence, phrase):
+            pass  # "Use 1:1000 (final 100 µg/mL)" as well
         elif isinstance(phrase, Claim):
             fold = _fold_of(text.chars, self.folds, phrase)
             self.current.claimed.append(Claimed(text, phrase, self.step, fold))

@@ -34,7 +34,7 @@ def targets_of(preparation: Preparation) -> Iterator[Target]:
             yield from _finals(replace(taken, dose=other))
     for claimed in preparation.claimed:
         claim = claimed.claim
-        if not _claim_counts(claimed):
+        if not _claim_counts(claimed) or _in_use(preparation, claimed):
             continue
         if claim.kind == "strength" and claim.measure.dimension in _STRENGTHS:
             yield Target(Stated(claimed.text, claim.measure), claim.material, "claim", claimed.fold)
@@ -59,6 +59,22 @@ def _claim_counts(claimed: Claimed) -> bool:
 def _speaks_of_results(chars: str) -> bool:
     """Whether a sentence is one of a measurement; a sentence of many claims is searched once."""
     return _MEASURED.search(chars) is not None
+
+
+_USE = re.compile(r"\b(?:use[ds]?|add|induce|working|supplement|dose|spike)\b", re.IGNORECASE)
+
+
+def _in_use(preparation: Preparation, claimed: Claimed) -> bool:
+    """ "IPTG 0.5 M: 1.19 g in 10 mL; add 1 µL per mL of culture for 0.5 mM": not of the stock."""
+    title, measure = preparation.title, claimed.claim.measure
+    if title is None or preparation.kind != "line" or not measure.base:
+        return False
+    labels = [t.stated.measure for t in title.targets]
+    labels = [m for m in labels if m.dimension == measure.dimension and m.base]
+    if not labels or all(m.base < 5 * measure.base for m in labels):
+        return False
+    before = claimed.text.chars[: measure.start]
+    return bool(_USE.search(re.split(r"[;.]\s", before)[-1]))
 
 
 def _title_counts(preparation: Preparation) -> bool:
