@@ -335,15 +335,20 @@ class Collector:
         if dose.amount.dimension != "volume" or self.closed:
             return False
         if dose.material is None:
-            if not self.current.claimed or not _OF_THIS.match(sentence.text.chars, dose.amount.end):
+            if not self.current.claimed:
+                return False
+            if command == "DILUTE" and dose.role is None and self._weighed():
+                return True  # "219.5 mg KH2PO4/L = 50 mg/L P; dilute 50 mL to 1 L"
+            if not _OF_THIS.match(sentence.text.chars, dose.amount.end):
                 return False
         else:
             the_stock = dose.material.solution and not tokens(dose.material.words)
-            if command != "DILUTE" or not the_stock:
-                return False
-            if not any(t.dose.amount.dimension == "mass" for t in self.current.taken):
+            if command != "DILUTE" or not the_stock or not self._weighed():
                 return False
         return any(taken.solvent for taken in self.current.taken)
+
+    def _weighed(self) -> bool:
+        return any(taken.dose.amount.dimension == "mass" for taken in self.current.taken)
 
     def _already_taken(self, sentence: Sentence) -> bool:
         """Whether this sentence has taken something: what it "obtains" is the result."""

@@ -138,16 +138,36 @@ def _rest_follows(relation: Relation) -> bool:
     return 0 < relation.deviation <= _REST
 
 
+_MORE = 0.5
+
+
+def _excess(relation: Relation) -> float:
+    """How many times too large the amount is for the volume, from either side of the balance."""
+    factor = 1 + relation.deviation
+    about_strength = relation.target is not None and relation.tested.key == relation.target.key
+    return 1 / factor if about_strength and factor > 0 else factor
+
+
 def _all_for_more(bench: Bench, relation: Relation) -> bool:
     """Whether several amounts are too large by one factor: the sample comes to the mix later."""
-    return _rest_follows(relation) and any(
-        other.preparation is relation.preparation
-        and other.kind in ("stock", "fold", "mass")
+    volume = relation.volume
+    if volume is None or volume.provenance not in ("total", "sum", "weak"):
+        return False
+    excess = _excess(relation)
+    if not 1 < excess <= 1 + _MORE:
+        return False
+    alike = [
+        other
+        for other in bench.relations
+        if other.kind in ("stock", "fold", "mass")
         and other.tested.key != relation.tested.key
         and not other.agrees
-        and abs((1 + other.deviation) / (1 + relation.deviation) - 1) < 0.01
-        for other in bench.relations
-    )
+        and abs(_excess(other) / excess - 1) < 0.01
+    ]
+    own = [other for other in alike if other.preparation is relation.preparation]
+    rows = [o for o in alike if o.preparation is not None and o.preparation.kind == "row"]
+    of_row = relation.preparation is not None and relation.preparation.kind == "row"
+    return bool(own) or (of_row and len(rows) > 1)
 
 
 @rule("amounts.mass-fits-named-form")
