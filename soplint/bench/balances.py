@@ -151,9 +151,18 @@ def _test(
         if target.source == "maybe" and target.fold is None:
             return None  # "10 mL of NaF (0.5 mol/l)": the strength of what is taken
         return _solid_by_volume(preparation, target, volume, facts, order, scale)
-    if not sure or target.source == "maybe":
+    if not sure or target.source == "maybe" or _of_other_sentences(preparation, first):
         return None
     return _other_digits(preparation, first, ways) or _relation(preparation, first, ways)
+
+
+def _of_other_sentences(preparation: Preparation, balance: Balance) -> bool:
+    """Whether a claim stands with doses of its own, none of which is among those compared."""
+    if balance.target.source != "claim":
+        return False
+    text = balance.target.stated.text
+    own = [t for t in preparation.taken if t.text is text and not t.solvent]
+    return bool(own) and all(share.taken.text is not text for share in balance.chosen)
 
 
 def _other_digits(preparation: Preparation, balance: Balance, ways: int) -> Relation | None:

@@ -9,6 +9,7 @@ from soplint.bench.facts import Facts, tokens
 from soplint.bench.numbers import ALIQUOT, EXACT, relative, shown
 from soplint.bench.preparation import FinalVolume, Preparation, Stated, Taken
 from soplint.bench.relation import Relation
+from soplint.bench.volumes import running_text
 from soplint.findings.model import Interval
 from soplint.notation.phrases import Material
 from soplint.quantities.model import Measure
@@ -132,18 +133,12 @@ def sum_relations(preparation: Preparation) -> Iterator[Relation]:
     complete = complete or _ends_in_total(preparation)
     if complete and all(t.dose.amount.dimension == "volume" for t in preparation.taken):
         yield _total(preparation, volume, poured, total, slack)
-    elif total > volume.litres * (1 + CONTRACTION) + slack and not _running_text(poured):
+    elif total > volume.litres * (1 + CONTRACTION) + slack and not running_text(poured):
         yield _too_much(preparation, volume, poured, total, slack)
     elif _all_poured(preparation) and abs(total / volume.litres - 1) <= 0.01:
         yield _total(preparation, volume, poured, total, slack + 0.01 * volume.litres)
     elif _complete_line(preparation) and total < volume.litres * (1 - CONTRACTION) - slack:
         yield _too_much(preparation, volume, poured, total, slack)
-
-
-def _running_text(poured: Sequence[Taken]) -> bool:
-    """Whether the parts stand in several sentences of one paragraph: not all go into one vessel."""
-    sentences = {(taken.block, taken.step) for taken in poured if taken.block >= 0}
-    return len(sentences) > len({block for block, _ in sentences})
 
 
 def _ends_in_total(preparation: Preparation) -> bool:

@@ -409,8 +409,14 @@ class Walker:
             return
         vessel = self._open(self.heading)
         vessel.kind = "table"
+        made_up = [
+            any(isinstance(p, ToVolume) for p in r.sentence.phrases) for r in read.table.rows
+        ]
         for row in read.table.rows:
             self.step += 1
+            if sum(made_up) > 1:  # each row is a solution of its own
+                vessel = self._open(row.text.chars.partition(" | ")[0])
+                vessel.kind = "table"
             dose = row.doses[0] if row.doses else None
             if dose is not None:
                 self._add(row.text, dose, vessel, 10**6)

@@ -6,8 +6,10 @@ volume of the solvent.  The volume that a recipe starts in never counts when a m
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from soplint.bench.numbers import ALIQUOT, EXACT, relative
-from soplint.bench.preparation import FinalVolume, Made, Preparation, Stated
+from soplint.bench.preparation import FinalVolume, Made, Preparation, Stated, Taken
 from soplint.notation.phrases import Material
 from soplint.quantities.model import Measure
 
@@ -80,12 +82,18 @@ def _sum(preparation: Preparation) -> FinalVolume | None:
     liquids = [t for t in preparation.taken if t.dose.amount.dimension == "volume"]
     if len(volumes) < 2 or total <= 0:
         return None
-    if all(t.solvent for t in liquids):
+    if all(t.solvent for t in liquids) or running_text(liquids):
         return None
     if grams * SOLID_ML_PER_G / 1000 > 0.02 * total:
         return FinalVolume(total, 0.05, "weak", None)
     half = sum(m.base * relative(m, ALIQUOT) for m in volumes) / total
     return FinalVolume(total, half, "sum", None)
+
+
+def running_text(poured: Sequence[Taken]) -> bool:
+    """Whether the parts stand in several sentences of one paragraph: not all go into one vessel."""
+    sentences = {(taken.block, taken.step) for taken in poured if taken.block >= 0}
+    return len(sentences) > len({block for block, _ in sentences})
 
 
 def _weak(preparation: Preparation) -> FinalVolume | None:
